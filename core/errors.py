@@ -35,9 +35,9 @@ class RigidsheetError(Exception):
         text = f"`{self.argument}` must be {self.rule}" if self.argument else self.rule
         if self.value is not None:
             text += f"; got {quote(self.value)}"
-        text = text.rstrip(".") + "."
+        text = stopped(text)
         if self.remedy:
-            text += f" {self.remedy.rstrip('.')}."
+            text += f" {stopped(self.remedy)}"
         if self.where:
             text += f" ({self.where})"
         return text
@@ -57,6 +57,12 @@ class PhysicsError(RigidsheetError, ValueError):
 
 class AbsentError(RigidsheetError, ValueError):
     """A question about something that is not there: an unknown function or result name."""
+
+
+def stopped(text: str) -> str:
+    """Return a sentence with exactly one mark at its end."""
+    text = text.rstrip(".")
+    return text if text.endswith(("?", "!")) else text + "."
 
 
 def quote(value: object) -> str:

@@ -1,0 +1,41 @@
+"""The one explicit list of all cell functions."""
+
+from __future__ import annotations
+
+import functools
+from types import MappingProxyType
+from typing import Final
+
+from ..core.errors import AbsentError
+from .compiling import Compiled
+from .declaration import CellFunction
+from .functions import asking, motion, units
+from .words import hint
+
+
+@functools.cache
+def find(name: str) -> Compiled:
+    """Return the function called `name`, compiled; AbsentError when there is none."""
+    f = FUNCTIONS.get(name) or FUNCTIONS.get(name.strip().upper())
+    if f is None:
+        raise AbsentError("", f"There is no function {name}", remedy=hint(name, FUNCTIONS))
+    return Compiled(f)
+
+
+FUNCTIONS: Final = MappingProxyType(
+    {
+        f.name: f
+        for f in (
+            *units.FUNCTIONS,
+            *motion.FUNCTIONS,
+            *asking.functions(find),
+        )
+    }
+)
+
+GROUPS: Final = tuple(dict.fromkeys(f.group for f in FUNCTIONS.values()))
+
+
+def function(name: str) -> CellFunction:
+    """Return the declaration of a function."""
+    return find(name).function

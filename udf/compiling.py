@@ -1,0 +1,180 @@
+"""From a declaration to a function ready to be called: readers compiled once, errors turned into refusals."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from types import MappingProxyType
+from typing import Any, Final
+
+import numpy as np
+
+from ..core.errors import AbsentError, InputError, KindError, PhysicsError, RigidsheetError
+from . import frame, results
+from .cells import OMITTED, Answer, Cell, CellError, Omitted, Refusal
+from .declaration import WHAT, Arg, CellFunction, Reader
+from .words import Choice, Rest, Text
+
+# One table from error class to what the cell shows.
+CELL_ERRORS: Final = MappingProxyType(
+    {InputError: "#VALUE!", KindError: "#VALUE!", PhysicsError: "#NUM!", AbsentError: "#N/A"}
+)
+
+UNIT_HELP: Final = "unit of the result; SI when omitted"
+
+
+def arguments_of(f: CellFunction) -> tuple[Arg, ...]:
+    """Return every argument in order, the derived `what` and `unit` included."""
+    return tuple(a for a, _ in placed_arguments(f))
+
+
+def placed_arguments(f: CellFunction) -> list[tuple[Arg, bool]]:
+    """Return every argument in order, each with whether the kernel takes it (else it is derived)."""
+    out: list[tuple[Arg, bool]] = []
+    what = what_argument(f)
+    for a in f.args:
+        if isinstance(a, Arg):
+            out.append((a, True))
+        elif what is not None:
+            out.append((what, False))
+            what = None
+    if what is not None:
+        out.append((what, False))
+    if results.has_unit(f.result):
+        out.append((Arg("unit", Text(example=results.sample_unit(f.result)), UNIT_HELP, default=None), False))
+    return out
+
+
+def what_argument(f: CellFunction) -> Arg | None:
+    """Return the derived argument that chooses one result, or None where there is only one."""
+    names = results.names(f.result)
+    if f.result.open:
+        return Arg(
+            WHAT, Text(example=names[0]), "which result, by its label; all rows when omitted", default=None
+        )
+    if len(names) == 1:
+        return None
+    given = f.result.default or results.ALL
+    return Arg(WHAT, Choice((*names, results.ALL)), f"which result; {given} when omitted", default=None)
+
+
+class Compiled:
+    """A function ready to be called: readers compiled once, positions of vectors known."""
+
+    def __init__(self, f: CellFunction) -> None:
+        self.function = f
+        placed = placed_arguments(f)
+        self.arguments = tuple(a for a, _ in placed)
+        self.readers: tuple[Reader, ...] = tuple(a.shape.reader(a.name, a.limit) for a in self.arguments)
+        self.rest = bool(self.arguments) and isinstance(self.arguments[-1].shape, Rest)
+        self.own = tuple(i for i, (_, own) in enumerate(placed) if own)
+        self.frame = frame.Frame(tuple(a for a in f.args if isinstance(a, Arg)))
+        self.express = results.Expression(f.result)
+        derived = {a.name: i for i, (a, own) in enumerate(placed) if not own}
+        self._what = derived.get(WHAT)
+        self._unit = derived.get("unit")
+
+    def read(self, cells: Sequence[Cell]) -> list[Any]:
+        """Return what the readers make of the cells, defaults filled in."""
+        arguments, readers = self.arguments, self.readers
+        if self.rest:
+            last = len(arguments) - 1
+            if len(cells) > last:
+                passed: Any = [list(cells[last:])]
+                cells = [*cells[:last], passed]
+        elif len(cells) > len(arguments):
+            raise InputError(
+                "", f"{self.function.name} takes at most {len(arguments)} arguments; got {len(cells)}"
+            )
+        values: list[Any] = []
+        for i, a in enumerate(arguments):
+            cell = cells[i] if i < len(cells) else OMITTED
+            if type(cell) is Omitted:
+                if not a.optional:
+                    raise InputError(a.name, f"given: {a.help}; the argument is missing"[:200])
+                values.append(a.default)
+            else:
+                values.append(readers[i](cell))
+        return values
+
+    def answer(self, cells: Sequence[Cell]) -> Answer:
+        """Return the answer, or raise one of the project's errors."""
+        values = self.read(cells)
+        what = values[self._what] if self._what is not None else None
+        unit = values[self._unit] if self._unit is not None else None
+        own, planar = self.frame.align([values[i] for i in self.own])
+        self.express.check(what, unit, own)
+        return self.express(self.function.kernel(*own), what, unit, planar)
+
+    def working(self, cells: Sequence[Cell]) -> list[str]:
+        """Return the lines of the working, or raise as `answer` does."""
+        values = self.read(cells)
+        own, _ = self.frame.align([values[i] for i in self.own])
+        own, rows = self.frame.first_row(own)
+        lines = list(self.function.working(tuple(own), self.function.kernel(*own)))
+        if rows > 1:
+            lines.append(f"Row 1 of {rows}; the other rows go the same way.")
+        return lines
+
+
+def entering_error(cells: Sequence[Cell]) -> tuple[int, CellError] | None:
+    """Return the first spreadsheet error among the cells and the position of its argument."""
+    for i, c in enumerate(cells):
+        t = type(c)
+        if t is CellError:
+            return i, c  # type: ignore[return-value]
+        if t is list:
+            for row in c:  # type: ignore[union-attr]
+                if CellError in map(type, row):
+                    return i, next(v for v in row if type(v) is CellError)
+    return None
+
+
+def refusal_of(error: RigidsheetError) -> Refusal:
+    """Turn an error into what the cell shows and the sentence."""
+    for kind, text in CELL_ERRORS.items():
+        if isinstance(error, kind):
+            return Refusal(text, short(str(error)))
+    return Refusal("#VALUE!", short(str(error)))
+
+
+def short(text: str, most: int = 255) -> str:
+    """Cut a text to what every host can show in a cell of an array."""
+    return text if len(text) <= most else text[: most - 3] + "..."
+
+
+def guarded(compiled: Compiled, act: Callable[[Sequence[Cell]], Any], cells: Sequence[Cell]) -> Any:
+    """Run `act`, turning errors that enter and errors that are raised into refusals."""
+    try:
+        if not compiled.rest:
+            entering = entering_error(cells)
+            if entering is not None:
+                position, error = entering
+                names = [a.name for a in compiled.arguments]
+                where = f"`{names[position]}`" if position < len(names) else "an argument"
+                return Refusal(error.text, f"{where} holds the error {error.text}, which passes through.")
+        with np.errstate(all="ignore"):  # the gate in results.py judges what came out
+            return act(cells)
+    except RigidsheetError as error:
+        return refusal_of(error)
+    except (
+        ArithmeticError,
+        ValueError,
+        TypeError,
+        IndexError,
+        KeyError,
+        MemoryError,
+        np.linalg.LinAlgError,
+    ) as error:
+        text = f"{compiled.function.name} could not answer these cells ({type(error).__name__}: {error})."
+        return Refusal("#VALUE!", short(text))
+
+
+def answered(ready: Compiled, cells: Sequence[Cell]) -> Answer | Refusal:
+    """Return the answer to one call, or its refusal. Never raises."""
+    return guarded(ready, ready.answer, cells)  # type: ignore[no-any-return]
+
+
+def worked(ready: Compiled, cells: Sequence[Cell]) -> list[str] | Refusal:
+    """Return the lines of the working, each of at most 255 characters, or the refusal. Never raises."""
+    lines = guarded(ready, ready.working, cells)
+    return lines if isinstance(lines, Refusal) else [short(x) for x in lines]

@@ -1,0 +1,1 @@
+"""The declared cell functions, one module a subject, each with a FUNCTIONS tuple."""

@@ -1,0 +1,413 @@
+"""Readers for tables with a header and for records of label, value and unit."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Callable, Mapping, Sequence
+from dataclasses import dataclass, field
+from typing import Any, Final
+
+import numpy as np
+from numpy.typing import NDArray
+
+from ..core.errors import InputError, RigidsheetError
+from .arguments import (
+    asked,
+    check_limit,
+    is_unit_text,
+    quantity,
+    shown,
+    unit_factor,
+    wrong,
+)
+from .cells import Block, Cell, Value
+from .declaration import Reader, Role, Shape
+from .kinds import Kind
+from .limits import Limit
+from .words import folded, hint, nearest
+
+HEADER: Final = re.compile(r"\s*(.*?)\s*(?:\[\s*(.*?)\s*\])?\s*\Z")
+TOTAL: Final = re.compile(r"(grand |sub)?-?\s*(total|sum)s?\b[\s:=]*\Z", re.IGNORECASE)
+
+
+@dataclass(frozen=True, slots=True)
+class Column:
+    """A column of a table: found by its label, whatever the order.
+
+    `kind` None means text. A blank in an optional number column is given as NaN, in a text column as ''.
+    """
+
+    label: str
+    kind: Kind | None
+    help: str
+    also: tuple[str, ...] = ()
+    required: bool = False
+    limit: Limit | None = None
+    blanks: bool = True
+
+
+@dataclass(frozen=True, slots=True)
+class TableData:
+    """A table as read: one array (numbers, SI) or list (texts) a column that was there, and row names."""
+
+    columns: Mapping[str, Any]
+    rows: tuple[int, ...]  # row of the block (header is row 1) of each line
+    labels: tuple[str, ...]  # text of the naming column, '' where there is none
+
+    def __len__(self) -> int:
+        return len(self.rows)
+
+    def where(self, index: int) -> str:
+        """Name a line in a refusal: its row of the block and what it is called."""
+        label = self.labels[index] if self.labels else ""
+        return f"row {self.rows[index]}" + (f", '{label}'" if label else "")
+
+    def numbers(self, label: str) -> NDArray[np.float64]:
+        """Return a number column, NaN where blank or when the column is not there."""
+        found = self.columns.get(label)
+        if found is None:
+            return np.full(len(self.rows), np.nan)
+        return found  # type: ignore[no-any-return]
+
+    def texts(self, label: str) -> Sequence[str]:
+        """Return a text column, '' where blank or when the column is not there."""
+        found = self.columns.get(label)
+        if found is None:
+            return [""] * len(self.rows)
+        return found  # type: ignore[no-any-return]
+
+
+@dataclass(frozen=True, slots=True)
+class Table:
+    """Rows under a header; the first column of `columns` names the rows."""
+
+    columns: tuple[Column, ...]
+    what: str  # 'parts list', 'loads', ...
+    example: tuple[tuple[Value, ...], ...]
+    none_word: bool = False  # the word 'none' stands for no rows
+    role: Role = Role.OTHER
+
+    def reader(self, argument: str, limit: Limit | None) -> Reader:
+        known = {folded(n): c for c in self.columns for n in (c.label, *c.also)}
+        empty = TableData({}, (), ())
+
+        def read(cell: Cell) -> TableData:
+            if self.none_word and type(cell) is str and folded(cell) == "none":
+                return empty
+            if type(cell) is not list or len(cell) < 2:
+                none = ", or the word 'none'" if self.none_word else ""
+                raise wrong(argument, f"a {self.what}: a header row and rows below it{none}", cell)
+            return self._table(argument, cell, known)
+
+        return read
+
+    def _table(self, argument: str, cell: Block, known: Mapping[str, Column]) -> TableData:
+        heads = self._heads(argument, cell[0], known)
+        body = cell[1:]
+        first = 2
+        if body and any(is_unit_text(c) for c in body[0]) and all(type(c) is not float for c in body[0]):
+            united = {j for j, (c, u) in heads.items() if c.kind is not None and u is None}
+            if united and all(j in united or body[0][j] in (None, "") for j in range(len(body[0]))):
+                heads = {
+                    j: (c, str(body[0][j]) if j in united and body[0][j] else u)
+                    for j, (c, u) in heads.items()
+                }
+                body, first = body[1:], 3
+        used = [i for i, row in enumerate(body) if not all(c is None or c == "" for c in row)]
+        if not used:
+            raise InputError(argument, f"a {self.what} with rows; only the header is filled in")
+        rows = [body[i] for i in used]
+        where = tuple(i + first for i in used)
+        naming = next((j for j, (c, _) in heads.items() if c is self.columns[0]), None)
+        labels = (
+            tuple(str(r[naming]).strip() if r[naming] is not None else "" for r in rows)
+            if naming is not None
+            else ()
+        )
+        for i, text in enumerate(labels):
+            if TOTAL.match(text):
+                raise InputError(
+                    argument,
+                    f"a {self.what} without a total row; it would be counted as one more entry",
+                    remedy="End the range above the total",
+                    where=f"row {where[i]}, '{text}'",
+                )
+        out: dict[str, Any] = {}
+        data = TableData(out, where, labels)
+        transposed = list(zip(*rows, strict=True))
+        for j, (c, unit) in heads.items():
+            out[c.label] = self._column(argument, c, unit, transposed[j], data)
+        return data
+
+    def _heads(
+        self, argument: str, header: Sequence[Value], known: Mapping[str, Column]
+    ) -> dict[int, tuple[Column, str | None]]:
+        heads: dict[int, tuple[Column, str | None]] = {}
+        taken: dict[str, str] = {}
+        for j, head in enumerate(header):
+            if head is None or head == "":
+                continue
+            if type(head) is not str:
+                raise InputError(
+                    argument,
+                    f"a {self.what} whose first row is the header; got {shown(head)} in it",
+                    where="row 1",
+                )
+            label, unit = HEADER.match(head).groups()  # type: ignore[union-attr]
+            c = known.get(folded(label))
+            if c is None:
+                close = nearest(label, [n for k in self.columns for n in (k.label, *k.also)])
+                if close is not None:
+                    raise InputError(
+                        argument,
+                        f"a {self.what} with known columns; got {shown(head)}",
+                        remedy=f"Did you mean '{close}'?",
+                        where="row 1",
+                    )
+                continue
+            if c.label in taken:
+                raise InputError(
+                    argument,
+                    f"a {self.what} with each column once; got '{taken[c.label]}' and '{head}'",
+                    where="row 1",
+                )
+            taken[c.label] = head
+            heads[j] = (c, unit)
+        missing = [c.label for c in self.columns if c.required and c.label not in taken]
+        if missing:
+            raise InputError(
+                argument,
+                f"a {self.what} with a column '{missing[0]}'",
+                remedy=hint("?", [header_of(c) for c in self.columns]),
+                where="row 1",
+            )
+        return heads
+
+    def _column(
+        self, argument: str, c: Column, unit: str | None, cells: Sequence[Value], data: TableData
+    ) -> Any:
+        if c.kind is None:
+            return self._texts(argument, c, cells, data)
+        dimensionless = c.kind.si in ("", "-", "1")
+        f = 1.0
+        if unit:
+            f = unit_factor(argument, c.kind, unit, f"column '{c.label}'")
+        types = set(map(type, cells))
+        if types == {float} and (unit or dimensionless):
+            values: NDArray[np.float64] = np.array(cells, dtype=float)
+            if not np.isfinite(values).all():
+                raise InputError(argument, "finite numbers", where=f"column '{c.label}'")
+            values = values * f
+        else:
+            values = np.empty(len(cells))
+            for i, v in enumerate(cells):
+                values[i] = self._number(argument, c, unit, f, v, data.where(i))
+        self._limited(argument, c, values, data)
+        return values
+
+    def _number(self, argument: str, c: Column, unit: str | None, f: float, v: Value, row: str) -> float:
+        place = f"{row}, column '{c.label}'"
+        kind = c.kind
+        assert kind is not None
+        if v is None or v == "":
+            if c.required or not c.blanks:
+                raise wrong(argument, asked(kind), v, where=place)
+            return float("nan")
+        if type(v) is float and v - v == 0.0:
+            if unit or kind.si in ("", "-", "1"):
+                return v * f
+            raise InputError(
+                argument,
+                f"a {self.what} with units; column '{c.label}' has none",
+                remedy=f"Write the header as '{header_of(c)}'",
+                where=row,
+            )
+        if type(v) is str and unit:
+            value = quantity(argument, kind, v, place)
+            if v.strip()[-1] in "0123456789.":  # a number kept as text: in the column's unit
+                value *= f
+            return value
+        return quantity(argument, kind, v, place)
+
+    def _limited(self, argument: str, c: Column, values: NDArray[np.float64], data: TableData) -> None:
+        if c.limit is None:
+            return
+        there = values[~np.isnan(values)]
+        if not there.size or (c.limit.allows(float(there.min())) and c.limit.allows(float(there.max()))):
+            return  # a limit is an interval (zero apart, which no table column excludes)
+        for i in np.flatnonzero(~np.isnan(values)):
+            if not c.limit.allows(float(values[i])):
+                assert c.kind is not None
+                check_limit(
+                    argument, c.kind, c.limit, float(values[i]), f"{data.where(int(i))}, column '{c.label}'"
+                )
+
+    def _texts(self, argument: str, c: Column, cells: Sequence[Value], data: TableData) -> list[str]:
+        out = []
+        for i, v in enumerate(cells):
+            if v is None:
+                v = ""
+            if type(v) is float:
+                v = f"{v:.10g}"
+            if type(v) is not str:
+                raise wrong(argument, f"a text in column '{c.label}'", v, where=data.where(i))
+            if c.required and not v.strip():
+                raise wrong(argument, f"a text in column '{c.label}'", v, where=data.where(i))
+            out.append(v.strip())
+        return out
+
+    def words(self) -> str:
+        return f"{self.what}: columns " + ", ".join(header_of(c) for c in self.columns if c.required)
+
+    def sample(self) -> Cell:
+        return [list(row) for row in self.example]
+
+
+def header_of(c: Column) -> str:
+    """Return the header cell of a column, with its SI unit."""
+    if c.kind is None or c.kind.si in ("", "-", "1"):
+        return c.label
+    return f"{c.label} [{c.kind.si}]"
+
+
+@dataclass(frozen=True, slots=True)
+class Entry:
+    """A line of a record: a label, what its value may look like, or one of some words."""
+
+    label: str
+    shape: Shape | None
+    help: str
+    also: tuple[str, ...] = ()
+    limit: Limit | None = None
+    words: tuple[str, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class Record:
+    """Rows of label, value and unit, or one text like 'OD 114.3 mm; L 520 mm'.
+
+    Gives a dict from label to what the entry's reader returns. `finish` turns it into what a kernel takes.
+    """
+
+    entries: tuple[Entry, ...]
+    what: str
+    example: tuple[tuple[Value, ...], ...]
+    finish: Callable[[str, dict[str, Any]], Any] | None = None
+    role: Role = Role.OTHER
+    readers: Mapping[str, Reader] = field(default_factory=dict)
+
+    def reader(self, argument: str, limit: Limit | None) -> Reader:
+        known = {folded(n): e for e in self.entries for n in (e.label, *e.also)}
+        readers = {
+            e.label: e.shape.reader(argument, e.limit) if e.shape is not None else None for e in self.entries
+        }
+
+        def read(cell: Cell) -> Any:
+            if type(cell) is str and cell.strip():
+                lines = text_lines(argument, cell, self.what, known)
+            elif type(cell) is list and len(cell[0]) >= 2:
+                lines = block_lines(argument, cell, self.what)
+            else:
+                raise wrong(argument, f"a {self.what}: rows of label, value and unit", cell)
+            out: dict[str, Any] = {}
+            for label, value, where in lines:
+                e = known.get(folded(label))
+                if e is None:
+                    raise InputError(
+                        argument,
+                        f"a {self.what} with known labels; got {shown(label)}",
+                        remedy=hint(label, [x.label for x in self.entries]),
+                        where=where,
+                    )
+                if e.label in out:
+                    raise InputError(
+                        argument, f"a {self.what} with each label once; '{e.label}' stands twice", where=where
+                    )
+                out[e.label] = entry_value(argument, e, readers[e.label], value, where)
+            return out if self.finish is None else self.finish(argument, out)
+
+        return read
+
+    def words(self) -> str:
+        return f"{self.what}: label, value, unit (" + ", ".join(e.label for e in self.entries[:8]) + ")"
+
+    def sample(self) -> Cell:
+        return [list(row) for row in self.example]
+
+
+def entry_value(argument: str, e: Entry, reader: Reader | None, value: Cell, where: str) -> Any:
+    """Read the value of one record line, naming the label in a refusal."""
+    if type(value) is str and e.words:
+        word = {folded(w): w for w in e.words}.get(folded(value))
+        if word is not None:
+            return word
+    if reader is None:
+        raise wrong(
+            argument, f"one of {', '.join(repr(w) for w in e.words)} for '{e.label}'", value, where=where
+        )
+    try:
+        return reader(value)
+    except RigidsheetError as refused:
+        place = f"'{e.label}'" + (f", {where}" if where else "")
+        raise type(refused)(
+            refused.argument, refused.rule, refused.value, remedy=refused.remedy, where=place
+        ) from None
+
+
+def block_lines(argument: str, cell: Block, what: str) -> list[tuple[str, Cell, str]]:
+    """Return (label, value cell or block, where) of each filled row; a header row 'label | value' is passed over."""
+    out: list[tuple[str, Cell, str]] = []
+    for i, row in enumerate(cell, 1):
+        filled = [j for j, c in enumerate(row) if c is not None and c != ""]
+        if not filled:
+            continue
+        label = row[0]
+        where = f"row {i}"
+        if type(label) is not str or not label.strip():
+            raise InputError(
+                argument, f"a {what} with the label in the first column; got {shown(label)}", where=where
+            )
+        label, unit = HEADER.match(label).groups()  # type: ignore[union-attr]
+        if i == 1 and folded(label) in ("label", "item", "name") and type(row[1]) is str:
+            continue
+        values = list(row[1 : filled[-1] + 1])
+        if not values:
+            values = [row[1]]
+        if unit:  # 'omega [rpm] | 30': the unit stands with the label
+            if len(values) > 1 and is_unit_text(values[-1]):
+                raise InputError(
+                    argument,
+                    f"a {what} with one unit a row; got '{unit}' and {shown(values[-1])}",
+                    where=where,
+                )
+            values.append(unit)
+        out.append((label, values[0] if len(values) == 1 else [values], where))
+    if not out:
+        raise InputError(argument, f"a {what}: rows of label, value and unit; all cells are blank")
+    return out
+
+
+def text_lines(
+    argument: str, text: str, what: str, known: Mapping[str, Entry]
+) -> list[tuple[str, Cell, str]]:
+    """Split 'OD 114.3 mm; L 520 mm' into lines, the label being the longest known one that leads."""
+    out: list[tuple[str, Cell, str]] = []
+    for piece in text.split(";"):
+        piece = piece.strip()
+        if not piece:
+            continue
+        tokens = piece.replace("=", " ", 1).split()
+        for n in range(len(tokens) - 1, 0, -1):
+            label = " ".join(tokens[:n])
+            if folded(label) in known:
+                break
+        else:
+            n = next((k for k, t in enumerate(tokens) if not t[0].isalpha()), min(1, len(tokens) - 1)) or 1
+            label = " ".join(tokens[:n])
+        value = " ".join(tokens[n:])
+        if not value:
+            raise InputError(
+                argument, f"a {what} like 'OD 114.3 mm; L 520 mm'; got {shown(piece)} without a value"
+            )
+        out.append((label, value, ""))
+    return out

@@ -1,0 +1,164 @@
+"""Readers for words: choices, free text, quantities of any kind, and the cells of another call."""
+
+from __future__ import annotations
+
+import difflib
+from collections.abc import Iterable, Mapping
+from dataclasses import dataclass, field
+from typing import Any
+
+from ..core.errors import InputError
+from .arguments import shown, wrong
+from .cells import Cell
+from .declaration import Reader, Role
+from .limits import Limit
+from .numbers import split_quantity
+
+
+def folded(word: str) -> str:
+    """Return a word as it is compared: lower case, single blanks, US spelling, no bracketed tail."""
+    return " ".join(word.replace("_", " ").split()).casefold().replace("centre", "center")
+
+
+def nearest(word: str, known: Iterable[str]) -> str | None:
+    """Return the known word a typing slip probably meant, or None."""
+    table = {folded(k): k for k in known}
+    hits = difflib.get_close_matches(folded(word), list(table), n=1, cutoff=0.75)
+    return table[hits[0]] if hits else None
+
+
+def hint(word: str, known: Iterable[str]) -> str:
+    """Return 'Did you mean ...?' or the list of what is known."""
+    known = list(known)
+    close = nearest(word, known)
+    if close is not None:
+        return f"Did you mean '{close}'?"
+    text = "Known: " + ", ".join(known)
+    return text if len(text) <= 150 else text[: text.rfind(",", 0, 140)] + ", ..."
+
+
+@dataclass(frozen=True, slots=True)
+class Choice:
+    """One of a few words; `also` maps further spellings to them."""
+
+    options: tuple[str, ...]
+    also: Mapping[str, str] = field(default_factory=dict)
+    role: Role = Role.OTHER
+
+    def reader(self, argument: str, limit: Limit | None) -> Reader:
+        table = {folded(o): o for o in self.options}
+        table.update({folded(a): o for a, o in self.also.items()})
+        rule = "one of the words " + ", ".join(f"'{o}'" for o in self.options)
+        options = self.options
+
+        def read(cell: Cell) -> str:
+            if type(cell) is str:
+                found = table.get(cell) or table.get(folded(cell))
+                if found is not None:
+                    return found
+                if cell.strip():
+                    if len(rule) > 120:
+                        raise InputError(argument, "a known word", cell, remedy=hint(cell, options))
+                    raise wrong(argument, rule, cell)
+            raise wrong(argument, rule if len(rule) <= 120 else "a known word", cell)
+
+        return read
+
+    def words(self) -> str:
+        return " / ".join(self.options)
+
+    def sample(self) -> Cell:
+        return self.options[0]
+
+
+@dataclass(frozen=True, slots=True)
+class Text:
+    """Any text that is not empty."""
+
+    role: Role = Role.OTHER
+    example: str = "arm"
+
+    def reader(self, argument: str, limit: Limit | None) -> Reader:
+        def read(cell: Cell) -> str:
+            if type(cell) is str and cell.strip():
+                return cell.strip()
+            raise wrong(argument, "a text", cell)
+
+        return read
+
+    def words(self) -> str:
+        return "text"
+
+    def sample(self) -> Cell:
+        return self.example
+
+
+@dataclass(frozen=True, slots=True)
+class Amount:
+    """A quantity of whatever kind: the number as written and its unit text, '' when it came without.
+
+    Numbers that came without a unit stay as they are; what the unit means is settled by the function.
+    """
+
+    number: float
+    unit: str
+
+
+@dataclass(frozen=True, slots=True)
+class AnyQuantity:
+    """One quantity of whatever kind."""
+
+    role: Role = Role.OTHER
+    column: bool = False
+
+    def reader(self, argument: str, limit: Limit | None) -> Reader:
+        rule = "a number with its unit, as '400 mm' or in two cells"
+
+        def one(cell: Any, where: str = "") -> Amount:
+            if type(cell) is float and cell - cell == 0.0:
+                return Amount(cell, "")
+            if type(cell) is str and cell.strip():
+                try:
+                    return Amount(*split_quantity(cell))
+                except InputError as refused:
+                    raise InputError(
+                        argument, f"{rule}; got {shown(cell)}", remedy=refused.remedy, where=where
+                    ) from None
+            raise wrong(argument, rule, cell, where=where)
+
+        def read(cell: Cell) -> Amount:
+            if type(cell) is not list:
+                return one(cell)
+            flat = [c for row in cell for c in row]
+            if len(flat) == 2 and type(flat[1]) is str:
+                amount = one(flat[0])
+                if not flat[1].strip():
+                    raise InputError(argument, f"{rule}; the unit cell beside {shown(flat[0])} is blank")
+                if amount.unit:
+                    raise InputError(argument, f"{rule}; got two units, '{amount.unit}' and '{flat[1]}'")
+                return Amount(amount.number, flat[1].strip())
+            raise wrong(argument, rule, cell)
+
+        return read
+
+    def words(self) -> str:
+        return "number with its unit"
+
+    def sample(self) -> Cell:
+        return "400 mm"
+
+
+@dataclass(frozen=True, slots=True)
+class Rest:
+    """The arguments of another function, passed on as they are (always the last argument)."""
+
+    role: Role = Role.OTHER
+
+    def reader(self, argument: str, limit: Limit | None) -> Reader:
+        return lambda cell: cell
+
+    def words(self) -> str:
+        return "the same arguments"
+
+    def sample(self) -> Cell:
+        return 1.0
