@@ -9,7 +9,7 @@ from typing import Final
 from ..core.errors import AbsentError
 from .compiling import Compiled
 from .declaration import CellFunction
-from .functions import asking, motion, units
+from .functions import asking, forces, motion, review, units
 from .words import hint
 
 
@@ -28,6 +28,8 @@ FUNCTIONS: Final = MappingProxyType(
         for f in (
             *units.FUNCTIONS,
             *motion.FUNCTIONS,
+            *forces.FUNCTIONS,
+            *review.FUNCTIONS,
             *asking.functions(find),
         )
     }

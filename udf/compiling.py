@@ -116,17 +116,47 @@ class Compiled:
         return lines
 
 
-def entering_error(cells: Sequence[Cell]) -> tuple[int, CellError] | None:
-    """Return the first spreadsheet error among the cells and the position of its argument."""
+PLAIN: Final = frozenset({float, str, bool, type(None), Omitted})
+
+
+def settled(cells: Sequence[Cell]) -> tuple[Sequence[Cell], tuple[int, CellError] | None]:
+    """Return the cells with whole numbers as floats and 1 x 1 blocks collapsed, and the first error among them.
+
+    One pass over the types: what a careful host hands over comes back untouched.
+    """
+    out: list[Any] | None = None
     for i, c in enumerate(cells):
         t = type(c)
+        if t in PLAIN:
+            continue
         if t is CellError:
-            return i, c  # type: ignore[return-value]
-        if t is list:
-            for row in c:  # type: ignore[union-attr]
-                if CellError in map(type, row):
-                    return i, next(v for v in row if type(v) is CellError)
-    return None
+            return cells, (i, c)  # type: ignore[return-value]
+        if t is list and c:
+            types = set().union(*(map(type, row) for row in c))  # type: ignore[union-attr]
+            if CellError in types:
+                return cells, (i, next(v for row in c for v in row if type(v) is CellError))  # type: ignore[union-attr]
+            if types <= PLAIN and (len(c) > 1 or len(c[0]) > 1):  # type: ignore[arg-type,index]
+                continue
+        out = list(cells) if out is None else out
+        out[i] = plain(c)
+    return cells if out is None else out, None
+
+
+def plain(cell: Any) -> Any:
+    """Return what a careless host handed over as a cell: ints as floats, tuples as lists, 1 x 1 collapsed."""
+    if isinstance(cell, (list, tuple, np.ndarray)):
+        rows = [
+            [plain(v) for v in row] if isinstance(row, (list, tuple, np.ndarray)) else [plain(row)]
+            for row in cell
+        ]
+        if not rows or not rows[0] or len({len(r) for r in rows}) != 1:
+            raise InputError("", "A block of cells must be rectangular and not empty")
+        return rows[0][0] if len(rows) == 1 and len(rows[0]) == 1 else rows
+    if isinstance(cell, (bool, str, CellError, Omitted)) or cell is None:
+        return cell
+    if isinstance(cell, (int, float, np.number)):
+        return float(cell)
+    return cell
 
 
 def refusal_of(error: RigidsheetError) -> Refusal:
@@ -146,7 +176,7 @@ def guarded(compiled: Compiled, act: Callable[[Sequence[Cell]], Any], cells: Seq
     """Run `act`, turning errors that enter and errors that are raised into refusals."""
     try:
         if not compiled.rest:
-            entering = entering_error(cells)
+            cells, entering = settled(cells)
             if entering is not None:
                 position, error = entering
                 names = [a.name for a in compiled.arguments]

@@ -102,9 +102,9 @@ def express(value: Any, form: Form, planar: bool) -> Answer:
             return finite(float(array))
         return block(array.reshape(-1, 1))
     if form is Form.TEXT:
-        return str(value)
+        return value if isinstance(value, str) else [[str(t)] for t in value]
     if form is Form.TEXTS:
-        return [[str(t)] for t in value]
+        return [[str(t)] for t in value] if len(value) > 1 else str(value[0])
     if form is Form.TABLE:
         return gate_rows(value)
     array = np.asarray(value, dtype=float)

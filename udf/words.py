@@ -5,11 +5,13 @@ from __future__ import annotations
 import difflib
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
-from typing import Any
+from typing import Any, Final
+
+import numpy as np
 
 from ..core.errors import InputError
-from .arguments import shown, wrong
-from .cells import Cell
+from .arguments import is_unit_text, shown, wrong
+from .cells import Cell, Value
 from .declaration import Reader, Role
 from .limits import Limit
 from .numbers import split_quantity
@@ -95,49 +97,36 @@ class Text:
 
 @dataclass(frozen=True, slots=True)
 class Amount:
-    """A quantity of whatever kind: the number as written and its unit text, '' when it came without.
+    """A quantity of whatever kind: the number (or a column) as written and its unit text, '' without one.
 
     Numbers that came without a unit stay as they are; what the unit means is settled by the function.
     """
 
-    number: float
+    number: Any
     unit: str
 
 
 @dataclass(frozen=True, slots=True)
 class AnyQuantity:
-    """One quantity of whatever kind."""
+    """One quantity of whatever kind, or a column of numbers with one unit."""
 
     role: Role = Role.OTHER
-    column: bool = False
 
     def reader(self, argument: str, limit: Limit | None) -> Reader:
-        rule = "a number with its unit, as '400 mm' or in two cells"
-
-        def one(cell: Any, where: str = "") -> Amount:
-            if type(cell) is float and cell - cell == 0.0:
-                return Amount(cell, "")
-            if type(cell) is str and cell.strip():
-                try:
-                    return Amount(*split_quantity(cell))
-                except InputError as refused:
-                    raise InputError(
-                        argument, f"{rule}; got {shown(cell)}", remedy=refused.remedy, where=where
-                    ) from None
-            raise wrong(argument, rule, cell, where=where)
-
         def read(cell: Cell) -> Amount:
             if type(cell) is not list:
-                return one(cell)
+                return one_amount(argument, cell)
             flat = [c for row in cell for c in row]
-            if len(flat) == 2 and type(flat[1]) is str:
-                amount = one(flat[0])
-                if not flat[1].strip():
-                    raise InputError(argument, f"{rule}; the unit cell beside {shown(flat[0])} is blank")
+            if len(flat) == 2 and is_unit_text(flat[1]):
+                amount = one_amount(argument, flat[0])
                 if amount.unit:
-                    raise InputError(argument, f"{rule}; got two units, '{amount.unit}' and '{flat[1]}'")
-                return Amount(amount.number, flat[1].strip())
-            raise wrong(argument, rule, cell)
+                    raise InputError(argument, f"{AMOUNT}; got two units, '{amount.unit}' and '{flat[1]}'")
+                return Amount(amount.number, str(flat[1]).strip())
+            if len(flat) == 2 and len(cell) == 1 and flat[1] in (None, ""):
+                raise InputError(argument, f"{AMOUNT}; the unit cell beside {shown(flat[0])} is blank")
+            if len(cell[0]) == 1:
+                return amounts(argument, flat)
+            raise wrong(argument, AMOUNT, cell)
 
         return read
 
@@ -146,6 +135,37 @@ class AnyQuantity:
 
     def sample(self) -> Cell:
         return "400 mm"
+
+
+AMOUNT: Final = "a number with its unit, as '400 mm' or in two cells"
+
+
+def one_amount(argument: str, cell: Any, where: str = "") -> Amount:
+    """Read one cell as a number and the unit text behind it."""
+    if type(cell) is float and cell - cell == 0.0:
+        return Amount(cell, "")
+    if type(cell) is str and cell.strip():
+        try:
+            return Amount(*split_quantity(cell))
+        except InputError as refused:
+            raise InputError(
+                argument, f"{AMOUNT}; got {shown(cell)}", remedy=refused.remedy, where=where
+            ) from None
+    raise wrong(argument, AMOUNT, cell, where=where)
+
+
+def amounts(argument: str, cells: list[Value]) -> Amount:
+    """Read a column: numbers with the unit first or last, or texts that all carry the same unit."""
+    unit, start = "", 1
+    if is_unit_text(cells[-1]):
+        unit, cells = str(cells[-1]).strip(), cells[:-1]
+    elif is_unit_text(cells[0]):
+        unit, cells, start = str(cells[0]).strip(), cells[1:], 2
+    read = [one_amount(argument, c, f"row {i}") for i, c in enumerate(cells, start)]
+    units = {a.unit for a in read}
+    if len(units) > 1 or (unit and units != {""}):
+        raise InputError(argument, "a column in one unit", remedy="Write the unit once, below the numbers")
+    return Amount(np.array([a.number for a in read]), unit or units.pop())
 
 
 @dataclass(frozen=True, slots=True)

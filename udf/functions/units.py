@@ -4,7 +4,10 @@ from __future__ import annotations
 
 from typing import Any
 
-from ...core.errors import InputError, KindError
+import numpy as np
+
+from ...core.errors import InputError
+from ..amounts import kinds_text, shared_kind
 from ..arguments import asked
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..kinds import Kind
@@ -15,53 +18,29 @@ from ..working import num
 GROUP = "Units"
 
 
-def common_kinds(first: str, second: str) -> list[tuple[Kind, float, float]]:
-    """Return the kinds both unit texts can be, with the factor to SI of each."""
-    other = {kind.name: f for kind, f in readings(second)}
-    return [(kind, f, other[kind.name]) for kind, f in readings(first) if kind.name in other]
-
-
-def kinds_text(unit: str) -> str:
-    """Word what a unit text can be: 'mass or force'."""
-    return " or ".join(dict.fromkeys(kind.name for kind, _ in readings(unit)))
-
-
 def conversion(quantity: Amount, unit: str) -> tuple[Kind, float, float]:
     """Return kind and factors of a conversion, refusing what does not fit or is ambiguous."""
     if not quantity.unit:
         raise InputError(
-            "quantity",
-            f"a number with its unit; got {num(quantity.number)} alone",
-            remedy="Write it like '400 mm'",
+            "quantity", "a number with its unit; got a bare number", remedy="Write it like '400 mm'"
         )
-    common = common_kinds(quantity.unit, unit)
-    if not common:
-        raise KindError(
-            "unit",
-            f"a unit of {kinds_text(quantity.unit)}, like '{quantity.unit}'; got '{unit}' ({kinds_text(unit)})",
-        )
-    ratios = {f"{f / g:.12g}" for _, f, g in common}
-    if len(ratios) > 1:
-        names = " or ".join(kind.name for kind, _, _ in common)
-        raise InputError("unit", f"clear about the kind; '{quantity.unit}' to '{unit}' can be {names}")
-    return common[0]
+    return shared_kind("unit", quantity.unit, unit)
 
 
-def convert(quantity: Amount, unit: str) -> float:
-    if quantity.unit == unit:
-        conversion(quantity, unit)
-        return quantity.number
+def convert(quantity: Amount, unit: str) -> Any:
     _, to_si, from_si = conversion(quantity, unit)
-    return quantity.number * (to_si / from_si)
+    return quantity.number if to_si == from_si else quantity.number * to_si / from_si
 
 
 def convert_working(values: tuple[Any, ...], answer: Any) -> list[str]:
     quantity, unit = values
+    number, rows = (quantity.number, 1) if np.ndim(quantity.number) == 0 else (quantity.number[0], 2)
+    result = answer if rows == 1 else answer[0]
     kind, to_si, from_si = conversion(quantity, unit)
     return [
         f"Conversion of {asked(kind)}",
         f"1 {quantity.unit} = {num(to_si, 10)} {kind.si}; 1 {unit} = {num(from_si, 10)} {kind.si}",
-        f"{num(quantity.number, 10)} {quantity.unit} * {num(to_si, 10)} / {num(from_si, 10)} = {num(answer, 10)} {unit}",
+        f"{num(number, 10)} {quantity.unit} * {num(to_si, 10)} / {num(from_si, 10)} = {num(result, 10)} {unit}",
     ]
 
 

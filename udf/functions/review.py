@@ -1,0 +1,172 @@
+"""Review: margins and checks of a demand against a rated capacity."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+
+from ...core.errors import InputError, PhysicsError
+from .. import kinds
+from ..amounts import pair
+from ..arguments import Scalar
+from ..declaration import WHAT, Arg, CellFunction, Example, Field, Form, Result
+from ..limits import POSITIVE
+from ..words import Amount, AnyQuantity, Choice
+from ..working import num
+
+GROUP = "Review"
+AT_MOST, AT_LEAST = "at most", "at least"
+SIGNED_MOST, SIGNED_LEAST = "signed at most", "signed at least"
+
+
+@dataclass(frozen=True, slots=True)
+class Margin:
+    """Margin [-], factor [-] and utilization [-] of a demand against a capacity."""
+
+    margin: Any
+    factor: Any
+    utilization: Any
+
+
+def compared(demand: Amount, capacity: Amount) -> tuple[Any, Any, str]:
+    """Return |demand| and capacity in one unit; a capacity must be positive."""
+    a, b, unit = pair("demand", demand, "capacity", capacity)
+    if not np.all(np.asarray(b) > 0.0):
+        raise InputError("capacity", f"greater than zero; got {num(np.min(b))} {unit}".rstrip())
+    return np.abs(a), b, unit
+
+
+def margin(demand: Amount, capacity: Amount, required_factor: Any) -> Margin:
+    a, b, _ = compared(demand, capacity)
+    if not np.all(a > 0.0):
+        raise PhysicsError("", "A demand of zero has no margin: any capacity carries it")
+    factor = b / a
+    return Margin(factor / required_factor - 1.0, factor, required_factor / factor)
+
+
+def margin_working(values: tuple[Any, ...], answer: Margin) -> list[str]:
+    demand, capacity, required = values
+    a, b, unit = compared(demand, capacity)
+    a, b, rows = np.ravel(a)[0], np.ravel(b)[0], np.size(answer.factor)
+    factor, rest, used = (np.ravel(x)[0] for x in (answer.factor, answer.margin, answer.utilization))
+    lines = [
+        "Margin of a demand against a capacity, by magnitude",
+        f"factor = capacity / |demand| = {num(b)} / {num(a)} {unit} = {num(factor)}".replace("  ", " "),
+        f"margin = factor / required - 1 = {num(factor)} / {num(np.ravel(required)[0])} - 1 = {num(rest)}",
+        f"utilization = required / factor = {num(used)}",
+    ]
+    return lines if rows == 1 else [*lines, f"Row 1 of {rows}; the other rows go the same way."]
+
+
+def holds(demand: Amount, limit: Amount, sense: str, required_factor: Any) -> Any:
+    """Return whether the check holds, for one demand or a column."""
+    a, b, unit = pair("demand", demand, "limit", limit)
+    if sense in (SIGNED_MOST, SIGNED_LEAST):
+        if required_factor is not None:
+            raise InputError("required_factor", "left out when the sense is signed; apply it to the limit")
+        return a <= b if sense == SIGNED_MOST else a >= b
+    if not np.all(np.asarray(b) > 0.0):
+        raise InputError(
+            "limit",
+            f"greater than zero; got {num(np.min(b))} {unit}".rstrip(),
+            remedy=f"A limit with a sign needs the sense '{SIGNED_MOST}' or '{SIGNED_LEAST}'",
+        )
+    required = 1.0 if required_factor is None else required_factor
+    return np.abs(a) * required <= b if sense == AT_MOST else np.abs(a) >= b * required
+
+
+def check(demand: Amount, limit: Amount, sense: str, required_factor: Any) -> Any:
+    good = np.asarray(holds(demand, limit, sense, required_factor))
+    words = np.where(good, "OK", "FAIL")
+    return str(words) if words.ndim == 0 else [str(w) for w in words]
+
+
+def check_working(values: tuple[Any, ...], answer: Any) -> list[str]:
+    demand, limit, sense, required_factor = values
+    a, b, unit = pair("demand", demand, "limit", limit)
+    x, y = np.ravel(a)[0], np.ravel(b)[0]
+    verdict = answer if isinstance(answer, str) else answer[0]
+    required = 1.0 if required_factor is None else np.ravel(required_factor)[0]
+    signed = sense in (SIGNED_MOST, SIGNED_LEAST)
+    shown = num(x) if signed else num(abs(x))
+    if sense in (AT_MOST, SIGNED_MOST):
+        text = f"{shown} * {num(required)} <= {num(y)}" if required != 1.0 else f"{shown} <= {num(y)}"
+    else:
+        text = f"{shown} >= {num(y)} * {num(required)}" if required != 1.0 else f"{shown} >= {num(y)}"
+    lines = [
+        f"Check: {'demand' if signed else '|demand|'} {sense.removeprefix('signed ')} the limit",
+        f"{text} {unit}: {verdict}".replace(" :", ":"),
+    ]
+    return (
+        lines
+        if isinstance(answer, str)
+        else [*lines, f"Row 1 of {len(answer)}; the other rows go the same way."]
+    )
+
+
+REQUIRED_FACTOR = "factor the standard or the project asks for"
+COMMON = "Common practice of strength checks: factor of safety and margin of safety"
+
+FUNCTIONS = (
+    CellFunction(
+        name="RB_MARGIN",
+        group=GROUP,
+        line="Margin of a rated capacity over a demand, by magnitude: capacity / (required |demand|) - 1.",
+        args=(
+            Arg("demand", AnyQuantity(), "what is asked, with its unit"),
+            Arg("capacity", AnyQuantity(), "what is rated, with its unit"),
+            Arg(
+                "required_factor",
+                Scalar(kinds.RATIO),
+                REQUIRED_FACTOR + "; 1 when omitted",
+                POSITIVE,
+                default=1.0,
+            ),
+            WHAT,
+        ),
+        result=Result(
+            (
+                Field("margin", None, "capacity / (required |demand|) - 1; negative fails"),
+                Field("factor", None, "capacity / |demand|"),
+                Field("utilization", None, "required |demand| / capacity; above 1 fails"),
+            ),
+            default="margin",
+        ),
+        kernel=margin,
+        working=margin_working,
+        source=COMMON,
+        examples=(
+            Example(
+                '=RB_MARGIN("-212 N*m", "340 N*m", 1.5)',
+                "Margin of the tipper's gearmotor with a factor of 1.5.",
+            ),
+        ),
+    ),
+    CellFunction(
+        name="RB_CHECK",
+        group=GROUP,
+        line="OK or FAIL: a demand against a limit, by magnitude unless the sense says signed.",
+        args=(
+            Arg("demand", AnyQuantity(), "what is asked, with its unit"),
+            Arg("limit", AnyQuantity(), "what is allowed, with its unit"),
+            Arg(
+                "sense",
+                Choice((AT_MOST, AT_LEAST, SIGNED_MOST, SIGNED_LEAST), {"<=": AT_MOST, ">=": AT_LEAST}),
+                "at most when omitted",
+                default=AT_MOST,
+            ),
+            Arg("required_factor", Scalar(kinds.RATIO), REQUIRED_FACTOR, POSITIVE, default=None),
+        ),
+        result=Result((Field("verdict", None, "OK or FAIL", Form.TEXT),)),
+        kernel=check,
+        working=check_working,
+        source=COMMON,
+        examples=(
+            Example(
+                '=RB_CHECK("6.2 kN", "15 kN", "at most", 2)', "Whether the hinge pin carries twice its load."
+            ),
+        ),
+    ),
+)
