@@ -66,7 +66,7 @@ class RigidBody:
 
         References
         ----------
-        L. D. Landau, E. M. Lifshitz, Mechanics, 3rd ed., section 32 (no moment exceeds the sum of the others).
+        L. D. Landau, E. M. Lifshitz, Mechanics, 3rd ed., section 32 (moments against the sum of others).
         """
         number = float(mass)
         if not (np.isfinite(number) and number > 0.0):

@@ -338,7 +338,7 @@ def tensor_problem(inertia: ArrayLike, tolerance: float = PRINTED_ROUNDING) -> s
 
     References
     ----------
-    L. D. Landau, E. M. Lifshitz, Mechanics, 3rd ed., section 32 (no moment exceeds the sum of the others).
+    L. D. Landau, E. M. Lifshitz, Mechanics, 3rd ed., section 32 (moments against the sum of others).
     """
     tensor = np.asarray(inertia, dtype=float)
     if tensor.shape != (3, 3):
