@@ -279,7 +279,7 @@ def moment_sum_planar(
 
 
 def _plane_parts(vector: Array) -> tuple[Number, Number]:
-    """Return x and y of a vector or of many; of one vector as plain floats, which are several times quicker."""
+    """Return x and y of a vector or of many; of one vector as plain floats, several times quicker."""
     if vector.ndim == 1:
         return float(vector[0]), float(vector[1])
     return vector[..., 0], vector[..., 1]
