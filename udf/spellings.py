@@ -24,6 +24,8 @@ Powers: TypeAlias = tuple[int, int, int, int]
 
 LONGEST_UNIT: Final = 60
 LARGEST_POWER: Final = 9
+# Of all powers in one text together; keeps every factor far inside the range of a float.
+LARGEST_POWER_SUM: Final = 12
 
 
 class Measure(NamedTuple):
@@ -89,7 +91,7 @@ def _symbols() -> dict[str, Readings]:
     add_prefixed("g", MASS, "u m k M", Fraction(1, 1000))
     add_prefixed("s", TIME, "n u m")
     add_prefixed("N", FORCE, "u m c d da h k M")
-    # A torque is often run together; the power on it is refused, see `units`.
+    # A torque is often run together; a power on it would have two meanings and is refused.
     add_prefixed("Nm", ENERGY, "u m c d da k M")
     add_prefixed("J", ENERGY, "u m k M G")
     add_prefixed("W", POWER, "u m k M G")
@@ -111,7 +113,6 @@ def _symbols() -> dict[str, Readings]:
     add("thou mil mils", _measure(INCH / 1000, LENGTH))
     add("uin", _measure(INCH / 1_000_000, LENGTH))
     add("micron microns", _measure("1e-6", LENGTH))
-    add("acre acres", Measure(*_measure(43560 * FOOT**2, LENGTH)[:3], (0, 2, 0, 0)))
 
     add("lb lbs pound pounds", _measure(POUND, MASS), _measure(POUND_FORCE, FORCE))
     add("oz ounce ounces", _measure(OUNCE, MASS), _measure(OUNCE * GRAVITY, FORCE))
@@ -219,8 +220,8 @@ def canonical(text: str) -> str:
     Outer brackets go; superscripts, `m2`, `m**2` become `m^2`; `·`, `×`, `.`, a hyphen between symbols
     and a space become `*`; full stops of abbreviations go. No meaning is judged here.
     """
-    unit = unicodedata.normalize("NFKC", text.translate(_DEGREES)).translate(_SIGNS).strip()
-    unit = _without_brackets(unit).replace("**", "^")
+    unit = unicodedata.normalize("NFKC", text.translate(_DEGREES)).translate(_SIGNS)
+    unit = _without_brackets(" ".join(unit.split())).replace("**", "^")
     unit = _PER.sub("/", unit)
     unit = _FULL_STOP.sub("", unit)
     unit = _DOT_PRODUCT.sub("*", unit)
@@ -243,6 +244,7 @@ def _without_brackets(unit: str) -> str:
 Terms: TypeAlias = tuple[tuple[str, int], ...]
 
 _FACTOR = re.compile(r"([^\W\d]+|[°%‰])(?:\^(-?[0-9]{1,3}))?")
+_RUN_TOGETHER = re.compile(r"(?:[umcdkM]|da)?(?:Nm|Wh)|k?Nmm|Ncm|ftlb|lbft|inlb|lbin|ozin|inoz")
 _ROOMS: Final = {"sq": 2, "cu": 3}
 
 
@@ -266,6 +268,8 @@ def terms_of(unit: str) -> Terms:
                 remedy=f"Write /({divided}*{rest}) or move {rest} before the slash",
             )
         terms += _product(part[1:-1] if bracketed else part, -1 if place else 1, unit)
+    if sum(abs(power) for _, power in terms) > LARGEST_POWER_SUM:
+        raise InputError("", "Too many powers for a unit", unit)
     return tuple(terms)
 
 
@@ -287,6 +291,8 @@ def _product(part: str, sign: int, unit: str) -> list[tuple[str, int]]:
         found = _FACTOR.fullmatch(piece)
         if found is None:
             raise InputError("", "Not a unit", unit, remedy=_remedy_for(piece))
+        if found[2] and _RUN_TOGETHER.fullmatch(found[1]):
+            raise InputError("", "Not a unit", unit, remedy="Put a * between the symbols, as in N*m^2")
         name, power = found[1], int(found[2] or 1)
         if name in _ROOMS and found[2] is None and room == 1:
             room = _ROOMS[name]
@@ -305,7 +311,9 @@ def _remedy_for(piece: str) -> str:
     """Return what to write instead of a piece that is no symbol with a power."""
     if "'" in piece or '"' in piece or "\N{PRIME}" in piece:
         return "Write ft or in; for an angle arcmin or arcsec"
-    if piece == "1" or piece[:1].isdigit():
+    if piece[:1] == "°":
+        return "Temperature is not used here"
+    if piece[:1].isdigit():
         return "A unit holds no number of its own but a leading 1/"
     if "^" in piece or "." in piece:
         return "Powers are whole numbers, as in m^2"

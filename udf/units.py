@@ -7,13 +7,25 @@ from it: its short names and its physical constants are not what a machine desig
 from __future__ import annotations
 
 import re
+from dataclasses import dataclass
 from difflib import get_close_matches
+from fractions import Fraction
 from functools import lru_cache
 from typing import Any, Final
 
 from ..core.errors import InputError, KindError
-from .kinds import KINDS, Kind
-from .spellings import NOTHING, SYMBOLS, Measure, Readings, canonical, measures, terms_of
+from .kinds import COUNT, KINDS, Kind
+from .spellings import (
+    LONGEST_UNIT,
+    NOTHING,
+    SYMBOLS,
+    Measure,
+    Powers,
+    Readings,
+    canonical,
+    measures,
+    terms_of,
+)
 
 __all__ = ["canonical", "factor", "is_si", "readings", "shown"]
 
@@ -62,31 +74,44 @@ def readings(unit: str) -> list[tuple[Kind, float]]:
     InputError
         When the text cannot be a unit at all.
     """
-    text = canonical(unit)
-    found = _readings(text)
-    if not found:
-        unknown = _unknown(text)
-        if unknown is not None:
-            raise _error("unit", "a known unit", unit, "not a known unit", unknown)
-        raise KindError("unit", "a unit of a known kind of quantity", _quoted(unit))
-    return found
+    text = _canonical_of(unit, "unit")
+    try:
+        found = _readings(text)
+        remedy = "" if found else _unknown(text)
+    except InputError as wrong:
+        raise _syntax(wrong, unit, "unit") from None
+    if found:
+        return found
+    if remedy is None:
+        raise KindError("unit", "a unit of a known kind of quantity", Found(unit))
+    raise KindError("unit", "a known unit", Found(unit), remedy=remedy)
 
 
 def _readings(text: str) -> list[tuple[Kind, float]]:
     """Return the kinds that a canonical unit text can mean; empty when there are none."""
     try:
         found = measures(terms_of(text), _readings_of_symbol) if text not in _NO_SYMBOLS else ()
-        _refuse_power_on_run_together(text)
     except _Unknown:
+        found = ()
+    except InputError:
+        if not any(text in kind.spellings for kind in KINDS):
+            raise
         found = ()
     answer: list[tuple[Kind, float]] = []
     for kind in KINDS:
         value = kind.spellings.get(text)
-        if value is None and text not in kind.hints:
-            value = next((one.factor() for one in found if one.powers == kind.powers != NOTHING), None)
+        if value is None and text not in kind.hints and kind is not COUNT:
+            value = next((one.factor() for one in found if one.powers == kind.powers), None)
         if value is not None:
             answer.append((kind, value))
     return answer
+
+
+def _canonical_of(unit: str, argument: str) -> str:
+    """Return the canonical form; a text too long for any unit is refused before any work is done on it."""
+    if len(unit) > 2 * LONGEST_UNIT:
+        raise InputError(argument, "a unit", Found(unit), remedy="Such a long text is no unit")
+    return canonical(unit)
 
 
 _NO_SYMBOLS: Final = ("", "-", "1")
@@ -94,7 +119,7 @@ _NO_SYMBOLS: Final = ("", "-", "1")
 
 def _resolve(unit: str, kind: Kind, argument: str) -> float:
     """Return the factor of a unit text that was not seen before."""
-    text = canonical(unit)
+    text = _canonical_of(unit, argument)
     known = kind.spellings.get(text)
     if known is not None:
         return known
@@ -104,39 +129,54 @@ def _resolve(unit: str, kind: Kind, argument: str) -> float:
     if text in _NO_SYMBOLS:
         raise _error(argument, kind.phrase, unit, "no unit", f"Its SI unit is {kind.si}")
     try:
-        _refuse_power_on_run_together(text)
         found = measures(terms_of(text), _readings_of_symbol)
     except _Unknown as unknown:
-        raise _error(argument, kind.phrase, unit, "not a known unit", unknown.remedy) from None
+        raise _error(argument, kind.phrase, unit, _described(text), unknown.remedy) from None
     except InputError as wrong:
-        rule = "a unit text with one meaning" if "two ways" in wrong.rule else "a unit"
-        raise InputError(argument, rule, unit, remedy=wrong.remedy) from None
+        raise _syntax(wrong, unit, argument) from None
     fitting = [one.factor() for one in found if one.powers == kind.powers]
-    if not fitting or kind.powers == NOTHING:
+    if not fitting or kind is COUNT:
         raise _error(argument, kind.phrase, unit, _described(text), _weight_remedy(text, kind))
+    # Readings of one dimension have one factor: what a weight adds, a weight divided by takes away.
     return fitting[0]
 
 
-def _error(argument: str, rule: str, unit: str, what: str, remedy: str) -> KindError:
-    """Return the refusal of a unit: rule, the text as typed, what it is, the remedy."""
-    if argument == "unit":
-        rule = f"a unit of {rule.split(' ', 1)[1]}" if not rule.startswith("a known") else rule
-    return KindError(argument, rule, f"{_quoted(unit)} ({what})" if what else _quoted(unit), remedy=remedy)
+@dataclass(frozen=True)
+class Found:
+    """A refused unit as it is quoted in a message: the text as typed and what it is."""
+
+    unit: str
+    what: str = ""
+
+    def __str__(self) -> str:
+        what = f" ({self.what})" if self.what else ""
+        room = max(50 - len(what), 10)
+        return f"'{self.unit if len(self.unit) <= room else self.unit[: room - 3] + '...'}'{what}"
 
 
-def _quoted(unit: str) -> str:
-    return f"'{unit}'" if len(unit) <= 40 else f"'{unit[:37]}...'"
+def _error(argument: str, phrase: str, unit: str, what: str, remedy: str) -> KindError:
+    """Return the refusal of a unit: which kind it must be, what it is, the remedy."""
+    rule = f"a unit of {phrase.split(' ', 1)[1]}" if argument == "unit" else phrase
+    return KindError(argument, rule, Found(unit, what), remedy=remedy)
+
+
+def _syntax(wrong: InputError, unit: str, argument: str) -> InputError:
+    """Return the refusal of a text that cannot be a unit, naming the argument and the text as typed."""
+    rule = "a unit with one meaning" if "two ways" in wrong.rule else "a unit"
+    return InputError(argument, rule, Found(unit), remedy=wrong.remedy)
 
 
 def _described(text: str) -> str:
-    """Return the kinds that a text does mean, for a message."""
+    """Return the kinds that a canonical text does mean, for a message."""
     try:
         names = [kind.name for kind, _ in _readings(text)]
+        if not names:
+            return "not a known unit" if _unknown(text) is not None else "of no kind used here"
     except InputError:
-        names = []
-    if len(names) > 3:
-        names = names[:3]
-    return " or ".join(names) if names else "not a kind of quantity used here"
+        return "not a unit"
+    if names == ["GD2"]:
+        return "a weight times a length squared"
+    return " or ".join(names) if len(" or ".join(names)) <= 36 else names[0]
 
 
 # A mass typed where its weight is meant, or the other way round.
@@ -183,23 +223,11 @@ def _unknown(text: str) -> str | None:
     return None
 
 
-# Several symbols without a sign between them: a power on them has two meanings.
-_RUN_TOGETHER = re.compile(
-    r"(?<![A-Za-z_])(?:[mucdk]|da|M)?(?:Nm|Nmm|Ncm|ftlb|lbft|inlb|lbin|ozin|inoz|Wh)\^-?[0-9]"
-)
-
-
-def _refuse_power_on_run_together(text: str) -> None:
-    if _RUN_TOGETHER.search(text):
-        raise InputError("", "a unit", text, remedy="Put a * between the symbols, as in N*m^2")
-
-
 # What these mean differs between countries or trades, or from what pint takes them for.
 _REMEDIES: Final = {
     **dict.fromkeys(("ton", "tons"), "Write t (1000 kg), short_ton or long_ton"),
     "tonf": "Write tf, kip or kN",
     **dict.fromkeys(("gal", "gallon", "gallons"), "Write US_gal, UK_gal or l"),
-    "mm_": "Write mm",
     **dict.fromkeys(("MM", "Mm"), "Write mm"),
     "M": "Write m; a capital letter is another unit",
     "S": "Write s",
@@ -214,13 +242,13 @@ _REMEDIES: Final = {
     "c": "Write m/s",
     "r": "Write rev or rad; r/min is read",
     "k": "Write kN, kg or kip",
-    "lbs_f": "Write lbf",
     "NM": "Write Nm or N*m",
     "MPA": "Write MPa",
     "mpa": "Write MPa",
     "Mpa": "Write MPa",
     "kts": "Write knot",
     "klb": "Write kip",
+    "US": "Write us",
     "C": "Temperature is not used here",
     "F": "Temperature is not used here",
     "K": "Temperature is not used here",
@@ -258,22 +286,36 @@ def _readings_of_symbol(name: str) -> Readings:
         return meanings.pop()
     if alike:
         raise _Unknown(f"Write {' or '.join(alike)}: capital and small letters differ")
-    measure = _from_pint(name)
+    measure = _from_pint(name) or _from_pint(name.lower(), spelled_out=True)
     if measure is None:
-        near = get_close_matches(name, SYMBOLS, 1, 0.75) if len(name) > 2 else []
+        near = get_close_matches(name, _NEAR, 1, 0.8) if len(name) > 3 else []
         raise _Unknown(f"Did you mean {near[0]}?" if near else "")
     return (measure,)
 
 
+def _names(text: str) -> frozenset[str]:
+    return frozenset(text.split())
+
+
 # The whole names that are taken from pint, by its own names; those in _SCALED also with a decimal prefix.
-_SCALED: Final = frozenset(
-    ["meter", "gram", "second", "newton", "joule", "watt", "pascal", "hertz", "liter", "bar", "dyne", "erg", "force_gram", "watt_hour", "metric_ton"]
+_SCALED: Final = _names(
+    "meter gram second newton joule watt pascal hertz liter bar dyne erg force_gram watt_hour"
 )
-_WHOLE: Final = frozenset(
-    ["inch", "foot", "yard", "mile", "nautical_mile", "furlong", "fathom", "rod", "chain", "hand", "angstrom", "micron", "week", "fortnight", "year", "carat", "stone", "slug", "slinch", "force_pound", "force_ounce", "force_kilogram", "force_metric_ton", "poundal", "kip", "horsepower", "metric_horsepower", "foot_pound", "pound_force_per_square_inch", "kip_per_square_inch", "standard_atmosphere", "technical_atmosphere", "torr", "inch_Hg", "mile_per_hour", "kilometer_per_hour", "kilometer_per_second", "foot_per_second", "standard_gravity", "galileo", "acre", "hectare", "cubic_centimeter", "centimeter_H2O"]
+_WHOLE: Final = _names(
+    "inch foot yard mile nautical_mile angstrom micron week carat stone slug slinch metric_ton "
+    "force_pound force_ounce force_kilogram force_metric_ton poundal kip horsepower metric_horsepower "
+    "foot_pound standard_atmosphere technical_atmosphere torr inch_Hg standard_gravity hectare"
+)
+_PREFIXES: Final = _names("nano micro milli centi deci deca hecto kilo mega giga") | {""}
+_NEAR: Final = (
+    *(name for name in SYMBOLS if len(name) > 3),
+    "meter",
+    "millimeter",
+    "kilogram",
+    "newton",
+    "radian",
 )
 _NAME = re.compile(r"[A-Za-z_]{3,40}")
-_UNLIKELY_ENDINGS: Final = frozenset({"s"})
 
 
 @lru_cache(maxsize=1)
@@ -285,8 +327,11 @@ def _registry() -> Any:
 
 
 @lru_cache(maxsize=1024)
-def _from_pint(name: str) -> Measure | None:
-    """Return pint's reading of a whole name on the allowed lists, None for everything else."""
+def _from_pint(name: str, spelled_out: bool = False) -> Measure | None:
+    """Return pint's reading of a whole name on the allowed lists, None for everything else.
+
+    A name that was typed in capitals must be `spelled_out`: MBARS says neither milli nor mega.
+    """
     if not _NAME.fullmatch(name):
         return None
     registry = _registry()
@@ -294,15 +339,22 @@ def _from_pint(name: str) -> Measure | None:
     if not choices:
         return None
     prefix, unit, suffix = choices[0]
-    if unit not in (_SCALED if prefix else _SCALED | _WHOLE):
+    if prefix not in _PREFIXES or unit not in (_SCALED if prefix else _SCALED | _WHOLE):
+        return None
+    if spelled_out and not name.startswith((prefix + unit)[:5]):
         return None
     if suffix and len(name) <= 4:
+        return None  # a symbol with an s is more likely a product with a second left unmarked
+    root = registry.Quantity(1.0, name).to_root_units()
+    powers = {str(one): int(power) for one, power in root.unit_items()}
+    grams = powers.pop("gram", 0)
+    dimension = (grams, powers.pop("meter", 0), powers.pop("second", 0), 0)
+    if powers or dimension == NOTHING:
         return None
-    size, base = registry.get_root_units(name)
-    powers = {str(one): int(power) for one, power in base._units.items()}
-    if not powers or not set(powers) <= {"gram", "meter", "second"}:
-        return None
-    top, bottom = float(size).as_integer_ratio()
-    grams = powers.get("gram", 0)
-    top, bottom = (top, bottom * 1000**grams) if grams >= 0 else (top * 1000**-grams, bottom)
-    return Measure(top, bottom, 0, (grams, powers.get("meter", 0), powers.get("second", 0), 0))
+    return _exact(float(root.magnitude), grams, dimension)
+
+
+def _exact(size: float, grams: int, dimension: Powers) -> Measure:
+    """Return pint's size, which counts in grams, as an exact measure in kilograms."""
+    exact = Fraction(size) / Fraction(1000) ** grams
+    return Measure(exact.numerator, exact.denominator, 0, dimension)
