@@ -191,7 +191,7 @@ FLAT_SOLIDS: Final = (
             replace(ALONG_Z, help="height of the prism along z"),
         ),
         dimension="solid",
-        datum="Right triangular prism. Datum at the right-angled corner of its bottom; all of it at +x, +y, +z.",
+        datum="Right triangular prism. Datum at the right-angled corner, bottom face; all at +x, +y, +z.",
         working=(
             "V = L*W*H/2",
             "xc = L/3",

@@ -195,11 +195,15 @@ def complete_sizes(shape: Shape, given: Mapping[str, ArrayLike]) -> dict[str, Ar
     _add_missing(shape, found)
     problem = shape.problem(found)
     if problem:
-        values = ", ".join(
-            f"{label} {np.asarray(value):.4g}" for label, value in given.items() if not np.ndim(value)
-        )
-        raise InputError("sizes", f"sizes that a {shape.name} can have", values or None, remedy=problem)
+        raise InputError("sizes", f"possible for a {shape.name}", _as_typed(given), remedy=problem)
     return found
+
+
+def _as_typed(given: Mapping[str, ArrayLike]) -> str | None:
+    """Return the sizes of one shape as a short text in SI; None for columns."""
+    if any(np.ndim(value) for value in given.values()):
+        return None
+    return ", ".join(f"{label} {float(np.asarray(value)):.4g}" for label, value in given.items())
 
 
 def _check_values(label: str, size: Size, values: Array) -> None:
@@ -230,7 +234,7 @@ def _add_missing(shape: Shape, found: dict[str, Array]) -> None:
     options = "; or ".join(", ".join(_typed_as(shape, label) for label in way.labels) for way in ways)
     missing = [_typed_as(shape, label) for label in best.labels if label not in labels]
     got = ", ".join(found) or "no size"
-    rule = f"{options} of a {shape.name}"
+    rule = f"given, for a {shape.name}, as {options}"
     if missing:
         raise InputError("sizes", rule, f"no {' and no '.join(missing)}" if found else got)
     surplus = sorted(labels - set(best.labels))
