@@ -260,6 +260,6 @@ def _remedy(text: str) -> str:
         found = pattern.fullmatch(text)
         if found:
             return worded(found)
-    if any(one.isdigit() and not one.isascii() for one in text):
+    if any(one.isnumeric() and not one.isascii() for one in text):
         return "Write the digits 0 to 9"
     return ""
