@@ -1,0 +1,157 @@
+"""The Calc add-in: runs in the Python of the office and hands every call to the worker process."""
+
+from __future__ import annotations
+
+import json
+import os
+import struct
+from typing import Any
+
+import unohelper
+from com.sun.star.lang import XServiceInfo, XServiceName
+from com.sun.star.task import XJob
+from org.rigidsheet.cells import XFunctions
+from rigidsheet_channel import Channel, WorkerLost
+from rigidsheet_repair import repair
+
+with open(os.path.join(os.path.dirname(os.path.abspath(__file__)), "config.json"), encoding="utf-8") as _file:
+    CONFIG: dict[str, Any] = json.load(_file)
+
+REMEMBERED = 1000  # lost calls whose reason is kept for RB_WHY
+
+
+def error_number(code: int) -> float:
+    """Return the number that Calc reads as an error: its code in the low word of a quiet NaN."""
+    return struct.unpack("<d", struct.pack("<Q", 0x7FF8000000000000 | code))[0]  # type: ignore[no-any-return]
+
+
+ERRORS = {
+    text: ((error_number(code),),)
+    for text, code in (
+        ("#VALUE!", 519),
+        ("#NUM!", 503),
+        ("#N/A", 32767),
+        ("#DIV/0!", 532),
+        ("#REF!", 524),
+        ("#NAME?", 525),
+        ("#NULL!", 521),
+    )
+}
+
+CHANNEL = Channel(
+    [os.environ.get("RIGIDSHEET_PYTHON") or CONFIG["python"], *CONFIG["arguments"]],
+    CONFIG["fingerprint"],
+    float(os.environ.get("RIGIDSHEET_TIMEOUT") or CONFIG["timeout"]),
+)
+
+# What was lost with the worker, by function and arguments: asking the worker would only lose it again.
+LOST: dict[Any, str] = {}
+
+
+def answer(name: str, arguments: tuple[Any, ...]) -> Any:
+    """Return what the cell shows: rows of numbers and texts, or an error."""
+    if name == "RB_WHY" and LOST:
+        reason = LOST.get(asked_about(arguments))
+        if reason is not None:
+            return ((reason,),)
+    try:
+        reply = CHANNEL.ask((name, arguments))
+    except WorkerLost as lost:
+        if name == "RB_WHY":
+            return ((str(lost)[:255],),)
+        while len(LOST) >= REMEMBERED:
+            del LOST[next(iter(LOST))]
+        LOST[(name, arguments)] = str(lost)[:255]
+        return ERRORS["#VALUE!"]
+    if LOST:
+        LOST.pop((name, arguments), None)
+    return reply if type(reply) is tuple else ERRORS.get(reply, ERRORS["#VALUE!"])
+
+
+def asked_about(arguments: tuple[Any, ...]) -> tuple[str, tuple[Any, ...]]:
+    """Return the call that the arguments of RB_WHY speak of."""
+    first = arguments[0] if arguments else ""
+    while isinstance(first, tuple) and first:
+        first = first[0]
+    return str(first).strip().upper(), arguments[1:]
+
+
+class Functions(unohelper.Base, XFunctions, XServiceInfo, XServiceName):
+    """The service whose methods are the functions; they are added below from the configuration."""
+
+    def __init__(self, context: Any) -> None:
+        self.context = context
+
+    def getServiceName(self) -> str:
+        return CONFIG["service"]  # type: ignore[no-any-return]
+
+    def getImplementationName(self) -> str:
+        return CONFIG["service"]  # type: ignore[no-any-return]
+
+    def supportsService(self, name: str) -> bool:
+        return name in self.getSupportedServiceNames()
+
+    def getSupportedServiceNames(self) -> tuple[str, ...]:
+        return (CONFIG["service"], "com.sun.star.sheet.AddIn")
+
+
+def plain_method(name: str) -> Any:
+    """Return the method of a function with a fixed number of arguments; the omitted end is dropped."""
+
+    def method(self: Functions, *arguments: Any) -> Any:
+        while arguments and arguments[-1] is None:
+            arguments = arguments[:-1]
+        return answer(name, arguments)
+
+    return method
+
+
+def rest_method(name: str) -> Any:
+    """Return the method of a function whose last argument takes any number of cells."""
+
+    def method(self: Functions, *arguments: Any) -> Any:
+        return answer(name, arguments[:-1] + tuple(arguments[-1]))
+
+    return method
+
+
+for _name, (_method, _rest) in CONFIG["functions"].items():
+    setattr(Functions, _method, rest_method(_name) if _rest else plain_method(_name))
+
+NAMES = frozenset(name.lower() for name in CONFIG["functions"]) | frozenset(
+    f"{CONFIG['service']}.{method}".lower() for method, _ in CONFIG["functions"].values()
+)
+
+
+class Loaded(unohelper.Base, XJob, XServiceInfo):
+    """The job that runs when a document has been loaded."""
+
+    def __init__(self, context: Any) -> None:
+        self.context = context
+
+    def getImplementationName(self) -> str:
+        return CONFIG["job"]  # type: ignore[no-any-return]
+
+    def supportsService(self, name: str) -> bool:
+        return bool(name == CONFIG["job"])
+
+    def getSupportedServiceNames(self) -> tuple[str, ...]:
+        return (CONFIG["job"],)
+
+    def execute(self, arguments: Any) -> None:
+        document = None
+        for argument in arguments:
+            if argument.Name == "Environment":
+                document = next((v.Value for v in argument.Value if v.Name == "Model"), None)
+        if document is None or not document.supportsService("com.sun.star.sheet.SpreadsheetDocument"):
+            return
+        repair(document, NAMES)
+        if os.environ.get("RIGIDSHEET_RECALCULATE"):  # set for an office that only converts
+            document.calculateAll()
+
+
+g_ImplementationHelper = unohelper.ImplementationHelper()
+g_ImplementationHelper.addImplementation(
+    Functions, CONFIG["service"], (CONFIG["service"], "com.sun.star.sheet.AddIn")
+)
+g_ImplementationHelper.addImplementation(Loaded, CONFIG["job"], (CONFIG["job"],))
