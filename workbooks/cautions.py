@@ -1,0 +1,180 @@
+"""Warnings: what is allowed but looks like a slip, always with the cells it is about."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+from functools import lru_cache
+from typing import Final
+
+from .addresses import Area, cell_name, size
+from .errors import address
+from .formulas import Argument, Call
+from .quantities import is_si_unit, quantity
+from .reading import Reading
+from .sheetxml import FormulaCell
+
+CELLS: Final = 100_000  # cells of one range that are looked at
+
+
+@dataclass(frozen=True)
+class Caution:
+    """A warning: its kind in a word or two, the sentence, and the cells as (sheet, address)."""
+
+    kind: str
+    sentence: str
+    cells: tuple[tuple[str, str], ...] = ()
+
+    def __str__(self) -> str:
+        return self.sentence
+
+
+def cautions(reading: Reading, *, signed: bool = False) -> tuple[Caution, ...]:
+    """Return every warning about a recalculated workbook."""
+    found = list(_Search(reading).run())
+    if signed:
+        found.append(Caution("signature", "The digital signature of the file no longer holds for the copy."))
+    return tuple(found)
+
+
+class _Search:
+    def __init__(self, reading: Reading) -> None:
+        self.reading = reading
+        self.prepared = reading.prepared
+        self.tabs = [sheet.name for sheet in reading.prepared.sheets]
+        self.units: dict[tuple[int, str], str] = {}  # cells whose number is in a unit that is not SI
+
+    def run(self) -> Iterator[Caution]:
+        self._non_si_results()
+        seen: set[tuple[int, Area]] = set()
+        dates = bool(self.reading.date_styles)
+        for number, sheet, formula in self.prepared.formulas():
+            ref = formula.ref
+            if not formula.text:
+                ref = self.prepared.masters[number, formula.rule.get("si", "")]
+            master = self.prepared.analyses[number, ref]
+            calls = bool(master.calls)
+            if calls and (self.units or dates or master.nested):
+                yield from self._calls(number, sheet.name, formula, dates)
+            if master.collected:
+                yield from self._skipped(number, sheet.name, formula, seen)
+
+    def _non_si_results(self) -> None:
+        for number, _, formula in self.prepared.formulas():
+            if formula.text:
+                whole = self.prepared.analyses[number, formula.ref].whole
+            else:
+                master = self.prepared.masters[number, formula.rule.get("si", "")]
+                whole = self.prepared.analyses[number, master].whole
+                if whole is not None and unit_position(whole.name) is not None:
+                    whole = self.reading.formula(number, formula)[1].whole
+            unit = self._unit(number, whole) if whole is not None else ""
+            if unit and isinstance(self.reading.results[number, formula.ref], float):
+                self.units[number, formula.ref] = unit
+
+    def _unit(self, number: int, call: Call) -> str:
+        """Return the unit that a call asks its result in, when it is not SI."""
+        position = unit_position(call.name)
+        if position is None or position >= len(call.arguments):
+            return ""
+        unit = call.arguments[position]
+        text = unit.text if unit.kind == "text" else self._held(number, unit)
+        return text if text and not is_si_unit(text) else ""
+
+    def _held(self, number: int, argument: Argument) -> str:
+        cell = self._cell(number, argument)
+        value = self.reading.value(*cell) if cell is not None else None
+        return value if isinstance(value, str) else ""
+
+    def _cell(self, number: int, argument: Argument) -> tuple[int, str] | None:
+        """Return the single cell that an argument refers to."""
+        if argument.kind not in ("ref", "name"):
+            return None
+        place = self.reading.place_of(number, argument.kind, argument.where, argument.text)
+        if place is None or size(place[1]) != (1, 1):
+            return None
+        return place[0], cell_name(place[1][0], place[1][1])
+
+    def _calls(self, number: int, sheet: str, formula: FormulaCell, dates: bool) -> Iterator[Caution]:
+        analysis = self.reading.formula(number, formula)[1]
+        here = sheet, formula.ref
+        for outer in (*analysis.calls, *(inner for _, _, inner in analysis.nested)):
+            crossed: list[tuple[str, Argument, tuple[str, str]]] = []
+            for position, argument in enumerate(outer.arguments):
+                if position == unit_position(outer.name):
+                    continue
+                if argument.kind == "call" and argument.call is not None:
+                    unit, source = self._unit(number, argument.call), here
+                else:
+                    cell = self._cell(number, argument)
+                    if cell is None:
+                        continue
+                    source = self.tabs[cell[0]], cell[1]
+                    unit = self.units.get(cell, "")
+                    if dates and self.reading.has_date_format(*cell):
+                        if isinstance(self.reading.value(*cell), float):
+                            yield self._date(outer, here, source)
+                if unit:
+                    crossed.append((unit, argument, source))
+            yield from self._crossings(outer, here, crossed)
+
+    def _crossings(
+        self, outer: Call, here: tuple[str, str], crossed: list[tuple[str, Argument, tuple[str, str]]]
+    ) -> Iterator[Caution]:
+        """Warn of bare numbers in a unit that is not SI; two numbers in one unit may be compared."""
+        compares = outer.name in ("RB_MARGIN", "RB_CHECK")
+        if compares and len(crossed) == 2 and crossed[0][0] == crossed[1][0]:
+            return
+        for unit, argument, source in crossed:
+            inner = (
+                f"{argument.call.name} in the same cell" if argument.call is not None else address(*source)
+            )
+            yield Caution(
+                "unit",
+                f"{address(*here)} hands a number in {unit} from {inner} to {outer.name} as if it were SI. "
+                "Leave the unit out there, or hand over the value and its unit cell together.",
+                (here, source),
+            )
+
+    def _date(self, outer: Call, here: tuple[str, str], source: tuple[str, str]) -> Caution:
+        return Caution(
+            "date",
+            f"{address(*here)} hands the date in {address(*source)} to {outer.name} as a plain number.",
+            (here, source),
+        )
+
+    def _skipped(
+        self, number: int, sheet: str, formula: FormulaCell, seen: set[tuple[int, Area]]
+    ) -> Iterator[Caution]:
+        for where, text in self.reading.formula(number, formula)[1].collected:
+            kind = "ref" if ":" in text or text.startswith("$") or any(c.isdigit() for c in text) else "name"
+            place = self.reading.place_of(number, kind, where, text)
+            if place is None and kind == "ref":
+                place = self.reading.place_of(number, "name", where, text)
+            if place is None or place in seen:
+                continue
+            seen.add(place)
+            for count, (ref, value) in enumerate(self.reading.cells_in(*place)):
+                if count >= CELLS:
+                    break
+                if isinstance(value, str) and quantity(value) is not None:
+                    source = self.tabs[place[0]], ref
+                    yield Caution(
+                        "text",
+                        f"{address(sheet, formula.ref)} skips {address(*source)}: '{value[:40]}' is a text, "
+                        "not a number.",
+                        ((sheet, formula.ref), source),
+                    )
+
+
+@lru_cache(maxsize=512)
+def unit_position(name: str) -> int | None:
+    """Return the place of the `unit` argument of one of our functions; None when it has none."""
+    from rigidsheet.core.errors import RigidsheetError
+    from rigidsheet.udf.catalogue import find
+
+    try:
+        arguments = find(name).arguments
+    except RigidsheetError:
+        return None
+    return next((i for i, argument in enumerate(arguments) if argument.name == "unit"), None)

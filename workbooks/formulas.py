@@ -1,0 +1,356 @@
+"""Formula text: tokens, the functions and names it uses, and its rewriting for the engine."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass, field
+from typing import Final, TypeAlias
+
+from .addresses import COLUMNS, ROWS, column_letters, column_number
+from .builtins import ARRAY_FUNCTIONS, ELEMENT_FUNCTIONS, PASSING_FUNCTIONS
+
+# A function name as the file spells it -> the name of one of our functions, or None.
+Resolver: TypeAlias = Callable[[str], str | None]
+
+OMITTED_MARK: Final = "\ue0f7omitted\ue0f7"  # private-use characters: no text in a cell looks like this
+NAME_MARK: Final = "\x02"  # round a defined name, which is replaced by what it stands for
+SHEET_MARK: Final = "\x00"  # where the number of the calling sheet belongs
+PREFIXES: Final = ("_XLFN.", "_XLWS.", "_XLUDF.", "_XLL.", "_XLPM.")
+
+_CELL: Final = r"\$?[A-Za-z]{1,3}\$?[1-9][0-9]{0,6}"
+_TOKEN: Final = re.compile(
+    r"""
+    (?P<string>"(?:[^"]|"")*")
+  | (?P<space>\s+)
+  | (?P<where>'(?:[^']|'')*'!|\[[^\]]*\][^\s'!(),;+\-*/&=<>^"{}]*!|[\w.?\\]+(?::[\w.?\\]+)?!)?
+    (?: (?P<ref>%(cell)s(?::%(cell)s)?(?![\w.(\\?])
+          |\$?[A-Za-z]{1,3}:\$?[A-Za-z]{1,3}(?![\w.(\\?])
+          |\$?[1-9][0-9]*:\$?[1-9][0-9]*(?![\w.]))
+      | (?P<call>[A-Za-z_\\\u00a1-\U0010ffff][\w.\\?]*)(?P<gap>\s*)\(
+      | (?P<name>[A-Za-z_\\\u00a1-\U0010ffff][\w.\\?]*)
+      | (?P<error>\#(?:N/A|[A-Za-z0-9_/]+[!?]?)) )
+  | (?P<number>[0-9]+(?:\.[0-9]*)?(?:[eE][+-]?[0-9]+)?|\.[0-9]+(?:[eE][+-]?[0-9]+)?)
+  | (?P<array>\{(?:[^{}"]|"(?:[^"]|"")*")*\})
+  | (?P<op><=|>=|<>|.)
+    """
+    % {"cell": _CELL},
+    re.VERBOSE | re.DOTALL,
+)
+
+
+@dataclass(slots=True)
+class Argument:
+    """One argument of one of our functions, as far as the text alone tells what it is."""
+
+    kind: str = "omitted"  # omitted, ref, name, call, text, other
+    text: str = ""
+    where: str = ""
+    call: Call | None = None
+
+
+@dataclass(slots=True)
+class Call:
+    """A call of one of our functions inside a formula."""
+
+    name: str
+    arguments: list[Argument] = field(default_factory=list)
+
+
+@dataclass(slots=True)
+class Analysis:
+    """What one formula text uses."""
+
+    functions: list[str] = field(default_factory=list)  # built-in or unknown names, upper case, no prefix
+    names: list[tuple[str, str, bool]] = field(default_factory=list)  # sheet prefix, name, used as scalar
+    references: list[tuple[str, str, bool]] = field(default_factory=list)  # the same with the address
+    collected: list[tuple[str, str]] = field(default_factory=list)  # ranges inside SUM and its like
+    calls: list[Call] = field(default_factory=list)  # outermost calls of our functions
+    nested: list[tuple[Call, int, Call]] = field(default_factory=list)  # outer call, argument, inner call
+    whole: Call | None = None  # the formula is exactly this call
+    refusal: str = ""
+    engine: str = ""  # the text for the engine, still with the marks of names and of the calling sheet
+
+
+@dataclass(slots=True)
+class _Frame:
+    """An open parenthesis: of a function, or a plain one."""
+
+    function: str
+    ours: Call | None
+    arrays: bool  # ranges are worked out as whole arrays in here
+    scalar: bool  # a range standing alone as an argument is used as a single value
+    outer: str  # the function whose argument this is, parentheses and IF left out
+    index: int = 0  # number of the current argument
+    pieces: int = 0  # tokens of the current argument
+
+
+def canonical(name: str) -> str:
+    """Return the upper-case name without the prefixes that files put before newer or loaded functions."""
+    upper = name.upper()
+    while upper.startswith(PREFIXES):
+        upper = upper.partition(".")[2]
+    return upper
+
+
+def resolver(names: Iterator[str] | tuple[str, ...]) -> Resolver:
+    """Return a reader of function names: any case, the prefixes of files, the long names of Calc."""
+    known = {name.upper(): name for name in names}
+    tight = {name.replace("_", ""): known[name] for name in known}
+
+    def resolve(name: str) -> str | None:
+        upper = canonical(name)
+        found = known.get(upper)
+        if found is None and "." in upper:
+            last = upper.rpartition(".")[2]
+            found = known.get(last) or tight.get(last.replace("_", ""))
+        return found
+
+    return resolve
+
+
+class _Reader:
+    """One walk over the tokens of a formula."""
+
+    def __init__(self, resolve: Resolver) -> None:
+        self.resolve = resolve
+        self.result = Analysis()
+        self.output: list[str] = []
+        self.frames = [_Frame("", None, False, True, "")]
+        self.value = False  # the token before ends a value
+        self.operator = False  # the token before is an operator that takes single values
+        self.last_block: tuple[list[tuple[str, str, bool]], int] | None = None
+
+    def read(self, text: str) -> Analysis:
+        for token in _TOKEN.finditer(text):
+            kind = token.lastgroup
+            if kind == "space":
+                self.output.append(token[0])
+            elif kind == "op":
+                self._operator(token[0])
+            elif token["call"]:
+                self._open_call(token)
+            else:
+                self._operand(kind or "", token)
+        if len(self.frames) != 1:
+            self._refuse("the formula has an open parenthesis too many")
+        self.result.engine = "".join(self.output)
+        top = self.frames[0]
+        if top.pieces == 1 and len(self.result.calls) == 1:
+            self.result.whole = self.result.calls[0]
+        return self.result
+
+    def _refuse(self, reason: str) -> None:
+        self.result.refusal = self.result.refusal or reason
+
+    def _argument(self, kind: str, text: str = "", where: str = "", call: Call | None = None) -> None:
+        """Note a token of the current argument of one of our functions."""
+        frame = self.frames[-1]
+        frame.pieces += 1
+        if frame.ours is not None:
+            single = frame.pieces == 1
+            frame.ours.arguments[-1] = Argument(kind, text, where, call) if single else Argument("other")
+
+    def _open_call(self, token: re.Match[str]) -> None:
+        name, where = token["call"], token["where"] or ""
+        self._start_value()
+        ours = self.resolve(name)
+        outer = self.frames[-1]
+        function = ours or canonical(name)
+        call = Call(ours) if ours else None
+        if call is not None:
+            self._note_call(call)
+        else:
+            self.result.functions.append(function)
+        self._argument("call", function, where, call)
+        if call is not None:
+            call.arguments.append(Argument())
+        passes = function in PASSING_FUNCTIONS
+        self.frames.append(
+            _Frame(
+                function,
+                call,
+                outer.arrays or function in ARRAY_FUNCTIONS,
+                outer.scalar if passes else function in ELEMENT_FUNCTIONS,
+                outer.outer if passes else function,
+            )
+        )
+        self.output.append(f"{function}({SHEET_MARK},ROW(),COLUMN()" if ours else f"{function}(")
+        self.operator = self.value = False
+        self.last_block = None
+
+    def _note_call(self, call: Call) -> None:
+        for frame in reversed(self.frames):
+            if frame.ours is not None:
+                self.result.nested.append((frame.ours, len(frame.ours.arguments) - 1, call))
+                return
+        self.result.calls.append(call)
+
+    def _operand(self, kind: str, token: re.Match[str]) -> None:
+        text, where = token[0], token["where"] or ""
+        frame = self.frames[-1]
+        self._start_value()
+        block = None
+        if kind == "ref" or kind == "name":
+            target = token[kind]
+            if where == "[0]!":
+                where, text = "", target
+            elif where:
+                self._check_where(where)
+            entry = (where, target, self._scalar_use())
+            if kind == "ref":
+                self.result.references.append(entry)
+                block = (self.result.references, len(self.result.references) - 1)
+                self._argument("ref", target, where)
+            elif target.upper() in ("TRUE", "FALSE") and not where:
+                self._argument("other")
+            elif target[:6].lower() == "_xlpm.":
+                self._argument("other")
+                text = target[6:]
+            else:
+                self.result.names.append(entry)
+                text = f"{NAME_MARK}{where}{NAME_MARK}{target}{NAME_MARK}"
+                block = (self.result.names, len(self.result.names) - 1)
+                self._argument("name", target, where)
+            if block is not None and frame.outer in _COLLECTING:
+                self.result.collected.append((where, target))
+        elif kind == "string":
+            self._argument("text", text[1:-1].replace('""', '"'))
+        else:
+            self._argument("other")
+            if kind == "error" and where:
+                text = token["error"]
+        self.output.append(text)
+        self.last_block = block
+        self.operator = False
+        self.value = True
+
+    def _scalar_use(self) -> bool:
+        frame = self.frames[-1]
+        if frame.arrays:
+            return False
+        chooses = frame.index == 0 and frame.function in _CHOOSING
+        return self.operator or frame.scalar or chooses
+
+    def _check_where(self, where: str) -> None:
+        inner = where[:-1].strip("'")
+        if "[" in inner:
+            self._refuse("the formula refers to another workbook")
+        elif ":" in inner:
+            self._refuse("the formula refers to the same cell of several sheets")
+
+    def _start_value(self) -> None:
+        if self.value:
+            self._refuse("the formula has two values side by side with no operator between them")
+        self._start_argument()
+
+    def _start_argument(self) -> None:
+        """Write the comma after the calling cell when the first argument of our function begins."""
+        frame = self.frames[-1]
+        if frame.ours is not None and len(frame.ours.arguments) == 1 and frame.pieces == 0:
+            self.output.append(",")
+
+    def _operator(self, sign: str) -> None:
+        frame = self.frames[-1]
+        if sign == "(":
+            self._start_value()
+            self._argument("other")
+            self.frames.append(_Frame("", None, frame.arrays, frame.scalar, frame.outer))
+            self.output.append(sign)
+            self.last_block = None
+            return
+        if sign == ")":
+            self._close()
+            return
+        if sign == ",":
+            self._comma()
+            return
+        if sign in "[]@":
+            self._refuse(
+                "the formula refers to a table by its column names"
+                if sign != "@"
+                else "the formula holds an @ sign, which files do not use"
+            )
+        elif sign == "#":
+            self._refuse("the formula refers to the whole result of a dynamic array (#)")
+        elif sign in '"{}':
+            self._refuse("the formula has a quotation mark or brace that is not closed")
+        elif sign == ";":
+            self._refuse("the formula separates arguments by semicolons, which files do not use")
+        elif sign == ":":
+            self._refuse("the formula builds a range with a colon between parts that are not plain addresses")
+        self._start_argument()
+        self._argument("other")
+        if not frame.arrays and self.last_block is not None:
+            entries, index = self.last_block
+            entries[index] = (*entries[index][:2], True)
+        self.output.append(sign)
+        self.operator = sign != "%"
+        self.value = sign == "%"
+        self.last_block = None
+
+    def _comma(self) -> None:
+        frame = self.frames[-1]
+        if frame.ours is not None:
+            if frame.pieces == 0:
+                lead = "," if len(frame.ours.arguments) == 1 else ""
+                self.output.append(f'{lead}"{OMITTED_MARK}"')
+            frame.ours.arguments.append(Argument())
+        elif not frame.function:
+            self._refuse("the formula joins several areas into one reference")
+        frame.pieces = 0
+        frame.index += 1
+        self.output.append(",")
+        self.operator = self.value = False
+        self.last_block = None
+
+    def _close(self) -> None:
+        if len(self.frames) == 1:
+            self._refuse("the formula has a closing parenthesis too many")
+            return
+        frame = self.frames.pop()
+        if frame.ours is not None:
+            if frame.pieces == 0 and len(frame.ours.arguments) > 1:
+                self.output.append(f'"{OMITTED_MARK}"')
+            elif frame.pieces == 0:
+                frame.ours.arguments.clear()
+        self.output.append(")")
+        if frame.function:
+            self.last_block = None
+        self.operator = False
+        self.value = True
+
+
+_COLLECTING: Final = frozenset({"SUM", "AVERAGE", "MAX", "MIN", "PRODUCT", "SUMSQ", "SUBTOTAL"})
+_CHOOSING: Final = frozenset({"IF", "IFS", "SWITCH", "CHOOSE"})
+
+
+def analyse(text: str, resolve: Resolver) -> Analysis:
+    """Read one formula, without the leading equals sign."""
+    return _Reader(resolve).read(text)
+
+
+def shifted(text: str, rows: int, columns: int) -> str:
+    """Return the formula as it reads in a cell that many rows down and columns to the right."""
+
+    def one(token: re.Match[str]) -> str:
+        reference = token["ref"]
+        if reference is None:
+            return token[0]
+        return (token["where"] or "") + _PIECE.sub(lambda piece: _moved(piece, rows, columns), reference)
+
+    return _TOKEN.sub(one, text)
+
+
+_PIECE: Final = re.compile(r"(\$?)([A-Za-z]{1,3})?(?:(\$?)([1-9][0-9]*))?(?=:|$)")
+
+
+def _moved(piece: re.Match[str], rows: int, columns: int) -> str:
+    letters, digits = piece[2] or "", piece[4] or ""
+    fixed_column, fixed_row = piece[1], piece[3] or ""
+    if letters and not fixed_column:
+        letters = column_letters((column_number(letters) + columns - 1) % COLUMNS + 1)
+    row_is_fixed = fixed_row if letters else fixed_column
+    if digits and not row_is_fixed:
+        digits = str((int(digits) + rows - 1) % ROWS + 1)
+    return fixed_column + letters + fixed_row + digits

@@ -1,0 +1,175 @@
+"""What the cells of a file hold, read straight from the sheet parts."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator
+from functools import cached_property
+from typing import Final
+
+from rigidsheet.udf.cells import CellError, Value
+
+from .addresses import Area, area, row_column
+from .book import Book
+from .cellxml import plain_text
+from .enginecopy import Prepared, sheet_of, target_of
+from .formulas import Analysis, Resolver, analyse, shifted
+from .sheetxml import FormulaCell, Sheet, element_end, tag_end, unescape
+from .writeback import cached_text
+from .xmlparts import elements
+
+_DATES: Final = frozenset([*range(14, 23), *range(27, 37), *range(45, 48), *range(50, 59)])
+_NOT_CODE: Final = re.compile(r'"[^"]*"|\\.|_.|\*.|\[(?!h+\]|m+\]|s+\])[^\]]*\]', re.IGNORECASE)
+
+# Sheet number, row, column.
+Place = tuple[int, int, int]
+
+
+class Reading:
+    """Values of any cell: the results of the run where there are some, else what the file holds."""
+
+    def __init__(self, prepared: Prepared, results: dict[tuple[int, str], Value], resolve: Resolver) -> None:
+        self.prepared = prepared
+        self.book: Book = prepared.book
+        self.results = results
+        self.numbers = {sheet.name.lower(): i for i, sheet in enumerate(prepared.sheets)}
+        self._resolve = resolve
+        self._shifted: dict[tuple[int, str], tuple[str, Analysis]] = {}
+
+    def value(self, number: int, ref: str) -> Value:
+        """Return what a cell holds, None when it is blank or not there."""
+        if (number, ref) in self.results:
+            return self.results[number, ref]
+        sheet = self.prepared.sheets[number]
+        found = sheet.cell(ref)
+        return None if found is None else self._raw(sheet, *found)
+
+    def _raw(self, sheet: Sheet, start: int, attributes: dict[str, str]) -> Value:
+        data, prefix = sheet.data, sheet.prefix
+        inner = tag_end(data, start)
+        if data[inner - 2 : inner] == b"/>":
+            return None
+        stop = data.find(b"</" + prefix + b"c", inner)
+        kind = attributes.get("t", "n")
+        if kind == "inlineStr":
+            fragment = data[inner:stop]
+            texts = re.findall(rb"<(?:[\w.-]+:)?t(?:\s[^>]*)?>([^<]*)<", fragment)
+            return plain_text("".join(unescape(text) for text in texts))
+        v_start = data.find(b"<" + prefix + b"v", inner, stop)
+        if v_start < 0:
+            return None
+        text = cached_text(data, v_start, element_end(data, v_start, prefix, b"v"))
+        return self._typed(kind, text)
+
+    def _typed(self, kind: str, text: str) -> Value:
+        if kind == "s":
+            number = int(text) if text.strip().isdigit() else -1
+            return self.strings[number] if 0 <= number < len(self.strings) else None
+        if kind == "e":
+            return CellError(text)
+        if kind == "b":
+            return text.strip() in ("1", "true")
+        if kind in ("str", "d"):
+            return plain_text(text)
+        try:
+            return float(text) if text.strip() else None
+        except ValueError:
+            return None
+
+    @cached_property
+    def strings(self) -> list[str]:
+        """The shared strings, without phonetic hints."""
+        data = self.book.shared_strings
+        texts: list[list[str]] = []
+        phonetic = False
+        for tag, _, text, depth in elements(data, "xl/sharedStrings.xml") if data else ():
+            if tag == "si":
+                texts.append([])
+            elif depth == 2:
+                phonetic = tag == "rPh"
+            if tag == "t" and texts and not (phonetic and depth == 3):
+                texts[-1].append(text)
+        return [plain_text("".join(pieces)) for pieces in texts]
+
+    @cached_property
+    def date_styles(self) -> frozenset[str]:
+        """The style numbers, as texts, whose cells show their number as a date or a time."""
+        data = self.book.styles
+        if data is None:
+            return frozenset()
+        own: set[int] = set()
+        styles: set[str] = set()
+        in_cells = False
+        count = 0
+        for tag, attributes, _, depth in elements(data, "xl/styles.xml"):
+            if depth == 1:
+                in_cells = tag == "cellXfs"
+            elif tag == "numFmt" and shows_date(attributes.get("formatCode", "")):
+                own.add(int(attributes.get("numFmtId", "0")))
+            elif tag == "xf" and in_cells and depth == 2:
+                number = int(attributes.get("numFmtId", "0"))
+                if number in own or number in _DATES:
+                    styles.add(str(count))
+                count += 1
+        return frozenset(styles)
+
+    def has_date_format(self, number: int, ref: str) -> bool:
+        """Tell whether a cell shows its number as a date or a time."""
+        found = self.prepared.sheets[number].cell(ref)
+        return found is not None and found[1].get("s", "0") in self.date_styles
+
+    def cells_in(self, number: int, block: Area) -> Iterator[tuple[str, Value]]:
+        """Yield the cells of an area that the sheet holds, with their values."""
+        top, left, bottom, right = block
+        sheet = self.prepared.sheets[number]
+        if (bottom - top + 1) * (right - left + 1) < len(sheet.cells):
+            from .enginecopy import frame_cells
+
+            for ref in frame_cells(block):
+                if sheet.cell(ref) is not None:
+                    yield ref, self.value(number, ref)
+            return
+        for _, attributes in sheet.cells:
+            place = row_column(attributes["r"])
+            if place and top <= place[0] <= bottom and left <= place[1] <= right:
+                yield attributes["r"], self.value(number, attributes["r"])
+
+    def formula(self, number: int, cell: FormulaCell) -> tuple[str, Analysis]:
+        """Return the formula text of a cell and what it uses; shared formulas are moved to their cell."""
+        key = number, cell.ref
+        if cell.text:
+            return cell.text, self.prepared.analyses[key]
+        found = self._shifted.get(key)
+        if found is None:
+            sheet = self.prepared.sheets[number]
+            master_ref = self.prepared.masters[number, cell.rule.get("si", "")]
+            master = self._formulas_of(sheet)[master_ref]
+            text = shifted(master.text, cell.row - master.row, cell.column - master.column)
+            found = self._shifted[key] = text, analyse(text, self._resolve)
+        return found
+
+    def _formulas_of(self, sheet: Sheet) -> dict[str, FormulaCell]:
+        if not hasattr(self, "_by_ref"):
+            self._by_ref: dict[str, dict[str, FormulaCell]] = {}
+        if sheet.part not in self._by_ref:
+            self._by_ref[sheet.part] = {formula.ref: formula for formula in sheet.formulas}
+        return self._by_ref[sheet.part]
+
+    def place_of(self, number: int, kind: str, where: str, text: str) -> tuple[int, Area] | None:
+        """Return the sheet number and area that a reference or a name in a formula stands for."""
+        if kind == "ref":
+            block = area(text)
+            other = self.numbers.get(sheet_of(where).lower()) if where else number
+            return (other, block) if block is not None and other is not None else None
+        name = self.book.named(text, sheet_of(where) if where else self.prepared.sheets[number].name)
+        target = target_of(name) if name is not None else None
+        if target is None:
+            return None
+        other = self.numbers.get(target[0].lower())
+        return (other, target[1]) if other is not None else None
+
+
+def shows_date(code: str) -> bool:
+    """Tell whether a number format shows a date or a time."""
+    bare = _NOT_CODE.sub("", code.partition(";")[0])
+    return bare.strip().lower() != "general" and re.search("[dmyhs]", bare, re.IGNORECASE) is not None

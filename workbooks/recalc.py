@@ -1,0 +1,277 @@
+"""Headless recalculation: a workbook in, every formula worked out, the values written back."""
+
+from __future__ import annotations
+
+import os
+import signal
+import threading
+from collections.abc import Callable, Collection, Iterator, Mapping
+from contextlib import contextmanager
+from dataclasses import dataclass
+from functools import partial
+from pathlib import Path
+from types import FrameType, MappingProxyType
+from typing import Any, Final
+
+from rigidsheet.udf.cells import CellError, Value
+
+from . import package as packages
+from . import saving
+from .addresses import size
+from .book import describe
+from .calls import TEXT_LIMIT, Calls, Function
+from .cautions import Caution, cautions
+from .engine import Engine, Formualizer, Sheets
+from .enginecopy import Preparation, Prepared, frame_cells
+from .errors import FileRefused, FormulaRefused
+from .formulas import resolver
+from .inputs import with_inputs
+from .reading import Reading
+from .report import CellFailure, Check, NamedResult, Report
+from .sheetxml import FormulaCell, Sheet, scan
+from .writeback import written
+
+_NONE: Final[Mapping[str, object]] = MappingProxyType({})
+
+
+@dataclass(frozen=True)
+class Recalculation:
+    """A recalculated workbook.
+
+    Parameters
+    ----------
+    values : Mapping[tuple[str, str], float | str | bool | CellError]
+        What every formula cell holds now, by sheet name and address; cells of array formulas included.
+    errors : tuple of CellFailure
+        Formula cells that show an error, each with its reason.
+    results : tuple of NamedResult
+        Formula cells that have a name, with the unit that stands beside them.
+    checks : tuple of Check
+        Cells with a verdict, OK or FAIL.
+    warnings : tuple of Caution
+        What is allowed but looks like a slip.
+    package : bytes
+        The whole new file; the very bytes of the old one when nothing changed.
+    changed : bool
+        Whether the new file differs from the old one.
+    path : Path or None
+        Where the file was written; None when it was not.
+    """
+
+    values: Mapping[tuple[str, str], Value]
+    errors: tuple[CellFailure, ...]
+    results: tuple[NamedResult, ...]
+    checks: tuple[Check, ...]
+    warnings: tuple[Caution, ...]
+    package: bytes
+    changed: bool
+    path: Path | None = None
+
+    @property
+    def holds(self) -> bool:
+        """Whether no cell shows an error and every check says OK."""
+        return not self.errors and all(check.verdict == "OK" for check in self.checks)
+
+
+def recalculate(
+    source: str | os.PathLike[str] | bytes,
+    *,
+    inputs: Mapping[str, object] = _NONE,
+    to: str | os.PathLike[str] | None = None,
+    write: bool | None = None,
+    functions: Mapping[str, Function] | None = None,
+    engine: Engine | None = None,
+) -> Recalculation:
+    """Work out every formula of an .xlsx or .xlsm workbook and write the values into the file.
+
+    Parameters
+    ----------
+    source : path or bytes
+        The workbook.
+    inputs : Mapping[str, object]
+        New contents of input cells, by defined name or by address such as ``Inputs!B3``. A number is in the
+        unit of its cell; a text such as ``400 mm`` is converted to the unit that stands beside the cell.
+    to : path, optional
+        Another file to write to; the source then stays as it is.
+    write : bool, optional
+        Whether to write; when omitted, written when there is a path to write to.
+    functions : Mapping[str, Callable], optional
+        The cell functions that formulas may call; those of Rigidsheet when omitted.
+    engine : Engine, optional
+        What works the formulas out.
+
+    Returns
+    -------
+    Recalculation
+        Values, errors with reasons, named results, checks, warnings and the new file.
+
+    Raises
+    ------
+    FileRefused
+        When the file cannot be read, worked out or written without risk; it is then left untouched.
+    InputRefused
+        When an input cannot be set.
+    """
+    seen = None if isinstance(source, bytes) else saving.load(Path(source))
+    data = source if isinstance(source, bytes) else (seen.data if seen is not None else b"")
+    with _located(seen):
+        target = Path(to) if to is not None else (seen.path if seen is not None else None)
+        writes = (target is not None) if write is None else write
+        if writes and target is None:
+            raise FileRefused("there is no path to write to", remedy="Give one with `to`")
+        run = _Run(data, inputs, functions, engine)
+        in_place = writes and seen is not None and target is not None and _same_file(target, seen.path)
+        if run.prepared.book.package.signed and in_place:
+            raise FileRefused("the file carries a digital signature, which writing would break",
+                              remedy="Write to another file")  # fmt: skip
+        result = run.result()
+        if writes and target is not None:
+            saving.save(result.package, target, seen)
+        path = target if writes else None
+    return Recalculation(**{**result.__dict__, "path": path})
+
+
+def _same_file(one: Path, other: Path) -> bool:
+    return os.path.realpath(one) == os.path.realpath(other)
+
+
+@contextmanager
+def _located(seen: saving.Seen | None) -> Iterator[None]:
+    """Add the file's name to a refusal that does not say where."""
+    try:
+        yield
+    except FileRefused as refusal:
+        if seen is not None and not refusal.where:
+            refusal.where = seen.path.name
+            refusal.args = (refusal.sentence(),)
+        raise
+
+
+class _Run:
+    """One recalculation in memory."""
+
+    def __init__(
+        self,
+        data: bytes,
+        inputs: Mapping[str, object],
+        functions: Mapping[str, Function] | None,
+        engine: Engine | None,
+    ) -> None:
+        self.source = data
+        self.functions, names = _own_functions() if functions is None else (functions.get, functions.keys())
+        self.resolve = resolver(tuple(names))
+        self.engine = engine if engine is not None else Formualizer()
+        book = describe(packages.read(data))
+        sheets = tuple(scan(tab.name, tab.part, book.package.parts[tab.part]) for tab in book.sheets)
+        if inputs:
+            sheets = with_inputs(book, sheets, inputs, self.resolve)
+        self.prepared: Prepared = Preparation(book, sheets, self.engine, self.resolve, list(names)).run()
+        self.calls = Calls()
+        self.results: dict[tuple[int, str], Value] = {}
+
+    def result(self) -> Recalculation:
+        """Run the engine, collect, and make the new file."""
+        used = {name: function for name in self.prepared.used if (function := self.functions(name))}
+        loaded = self.engine.open(
+            self.prepared.engine_package, self.calls.bind(used), date1904=self.prepared.book.date1904
+        )
+        with _interrupts_kept(self.calls):
+            loaded.run()
+        if self.calls.interrupted is not None:
+            raise self.calls.interrupted
+        for number, sheet, formula in self.prepared.formulas():
+            self._collect(loaded, number, sheet, formula)
+        new = written(self.prepared, self.results)
+        reading = Reading(self.prepared, self.results, self.resolve)
+        report = Report(reading, self.calls.reasons)
+        names = [sheet.name for sheet in self.prepared.sheets]
+        values = {(names[number], ref): value for (number, ref), value in self.results.items()}
+        return Recalculation(
+            MappingProxyType(values),
+            report.errors(),
+            report.results(),
+            report.checks(),
+            cautions(reading, signed=self.prepared.book.package.signed),
+            new,
+            new != self.source,
+        )
+
+    def _collect(self, loaded: Sheets, number: int, sheet: Sheet, formula: FormulaCell) -> None:
+        frame = formula.array
+        if frame is None:
+            value = loaded.value(sheet.name, formula.row, formula.column)
+            self.results[number, formula.ref] = self._lawful(sheet, formula, value)
+            return
+        found = self.calls.sizes.get((number, formula.row, formula.column), size(frame))
+        if formula.dynamic and found != size(frame):
+            raise FormulaRefused(
+                f"the result has changed its size to {found[0]} x {found[1]} cells, and only a spreadsheet"
+                " program can move it",
+                sheet=sheet.name, cell=formula.ref, formula=formula.text,
+                remedy="Open and save the file there, or use an array formula with a fixed frame",
+            )  # fmt: skip
+        top, left, _, _ = frame
+        columns = size(frame)[1]
+        for i, ref in enumerate(frame_cells(frame)):
+            value = loaded.value(sheet.name, top + i // columns, left + i % columns)
+            self.results[number, ref] = self._lawful(sheet, formula, value)
+
+    def _lawful(self, sheet: Sheet, formula: FormulaCell, value: Value) -> Value:
+        if type(value) is float:
+            return value if value - value == 0.0 else CellError("#NUM!")
+        reason = ""
+        if value is None:
+            reason = "the engine gave no value for this formula"
+        elif isinstance(value, CellError) and value.text.startswith("?"):
+            reason = _UNLAWFUL.get(value.text[1:], f"the engine cannot work this out ({value.text[1:]})")
+        elif isinstance(value, str) and len(value) > TEXT_LIMIT:
+            reason = "the text is longer than a cell can hold"
+        if reason:
+            raise FormulaRefused(reason, sheet=sheet.name, cell=formula.ref, formula=formula.text)
+        return value
+
+
+_UNLAWFUL: Final = {
+    "Circ": "the formula depends on its own result (circular reference)",
+    "Spill": "the result is a block that does not fit into its place",
+    "Array": "the result is a block in a single cell",
+    "Error": "the formula cannot be read",
+    "NImpl": "the engine does not offer this form of a function",
+    "Calc": "the result is an empty block",
+    "Cancelled": "the calculation was stopped",
+}
+
+
+def _own_functions() -> tuple[Callable[[str], Function | None], Collection[str]]:
+    """Return our cell functions, as positional callables, and their names."""
+    from rigidsheet.udf import calling
+
+    def find(name: str) -> Function:
+        return partial(_call, calling.call, name)
+
+    return find, calling.names()
+
+
+def _call(call: Callable[[str, tuple[Any, ...]], Any], name: str, *cells: Any) -> Any:
+    return call(name, cells)
+
+
+@contextmanager
+def _interrupts_kept(calls: Calls) -> Iterator[None]:
+    """Keep Ctrl-C until the engine has returned: raised inside it, it would become one wrong cell."""
+    if threading.current_thread() is not threading.main_thread():
+        yield
+        return
+    before = signal.getsignal(signal.SIGINT)
+
+    def keep(number: int, frame: FrameType | None) -> None:
+        calls.interrupted = calls.interrupted or KeyboardInterrupt()
+
+    if before is signal.SIG_IGN or before is None:
+        yield
+        return
+    signal.signal(signal.SIGINT, keep)
+    try:
+        yield
+    finally:
+        signal.signal(signal.SIGINT, before)

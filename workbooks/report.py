@@ -1,0 +1,208 @@
+"""What a recalculated workbook says: errors with reasons, named results, checks."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator, Mapping
+from dataclasses import dataclass
+from functools import cached_property
+from typing import Final
+
+from rigidsheet.udf.cells import CellError, Refusal, Value
+
+from .addresses import cell_name, row_column, size
+from .enginecopy import target_of
+from .errors import address
+from .quantities import unit_in
+from .reading import Place, Reading
+from .sheetxml import FormulaCell
+
+
+@dataclass(frozen=True)
+class CellFailure:
+    """A formula cell that shows an error."""
+
+    sheet: str
+    cell: str
+    error: str
+    reason: str
+    formula: str
+    source: tuple[str, str] | None = None  # the cell that the error came from
+
+    def __str__(self) -> str:
+        return f"{address(self.sheet, self.cell)} shows {self.error}: {self.reason}"
+
+
+@dataclass(frozen=True)
+class NamedResult:
+    """A formula cell that has a name."""
+
+    name: str
+    value: Value
+    unit: str
+    sheet: str
+    cell: str
+
+
+@dataclass(frozen=True)
+class Check:
+    """A verdict, and the numbers of its row where the column headers tell which they are."""
+
+    name: str
+    verdict: str
+    sheet: str
+    cell: str
+    demand: Value = None
+    capacity: Value = None
+    margin: Value = None
+
+
+_WHY: Final = {
+    "#DIV/0!": "something is divided by zero",
+    "#N/A": "what was looked for is not there",
+    "#NUM!": "the number has no answer here or is too large",
+    "#REF!": "a reference leads nowhere",
+    "#NAME?": "a name is not known",
+    "#NULL!": "two ranges do not meet",
+    "#VALUE!": "a value is of the wrong kind",
+}
+_HEADERS: Final = {
+    "demand": re.compile(r"\s*demand\b", re.IGNORECASE),
+    "capacity": re.compile(r"\s*(capacity|limit|allowed|rated)\b", re.IGNORECASE),
+    "margin": re.compile(r"\s*margin\b", re.IGNORECASE),
+}
+_VERDICTS: Final = ("OK", "FAIL")
+
+
+class Report:
+    """Reads errors, results and checks out of a finished run."""
+
+    def __init__(self, reading: Reading, reasons: Mapping[Place, tuple[str, Refusal]]) -> None:
+        self.reading = reading
+        self.reasons = reasons
+        self.tabs = [sheet.name for sheet in reading.prepared.sheets]
+
+    def errors(self) -> tuple[CellFailure, ...]:
+        """Return every formula cell that shows an error, in the order of the sheets."""
+        return tuple(self._errors())
+
+    def _errors(self) -> Iterator[CellFailure]:
+        results = self.reading.results
+        for number, sheet, formula in self.reading.prepared.formulas():
+            value = results[number, formula.ref]
+            if isinstance(value, CellError):
+                reason, source = self._reason(number, formula, value)
+                text = self.reading.formula(number, formula)[0]
+                yield CellFailure(sheet.name, formula.ref, value.text, reason, text, source)
+
+    def _reason(
+        self, number: int, formula: FormulaCell, value: CellError
+    ) -> tuple[str, tuple[str, str] | None]:
+        known = self.reasons.get((number, formula.row, formula.column))
+        source = self._source(number, formula, value)
+        if source is not None:
+            where = self.tabs[source[0]], source[1]
+            return f"the error comes from {address(*where)}", where
+        if known is not None and known[1].error == value.text:
+            return known[1].reason, None
+        return _WHY.get(value.text, "the formula gives an error"), None
+
+    def _source(self, number: int, formula: FormulaCell, value: CellError) -> tuple[int, str] | None:
+        """Return the first cell that the formula refers to and that shows the same error."""
+        analysis = self.reading.formula(number, formula)[1]
+        entries = [("ref", *entry[:2]) for entry in analysis.references]
+        entries += [("name", *entry[:2]) for entry in analysis.names]
+        for kind, where, text in entries:
+            place = self.reading.place_of(number, kind, where, text)
+            if place is None:
+                continue
+            for ref, held in self.reading.cells_in(*place):
+                if held == value and (place[0], ref) != (number, formula.ref):
+                    return place[0], ref
+        return None
+
+    @cached_property
+    def _names(self) -> list[tuple[str, int, str]]:
+        """(name, sheet number, address) of every visible name that points to a single cell."""
+        found = []
+        for name in self.reading.book.names:
+            target = target_of(name)
+            number = self.reading.numbers.get(target[0].lower()) if target else None
+            hidden = name.hidden or name.name.lower().startswith("_xlnm.")
+            if target and number is not None and not hidden and size(target[1]) == (1, 1):
+                found.append((name.name, number, cell_name(target[1][0], target[1][1])))
+        return found
+
+    def results(self) -> tuple[NamedResult, ...]:
+        """Return every formula cell that has a name, in the order of the names."""
+        found = []
+        for name, number, ref in self._names:
+            if (number, ref) in self.reading.results:
+                value = self.reading.results[number, ref]
+                unit = self.unit_beside(number, ref) if isinstance(value, float) else ""
+                found.append(NamedResult(name, value, unit, self.tabs[number], ref))
+        return tuple(found)
+
+    def unit_beside(self, number: int, ref: str) -> str:
+        """Return the unit right of a cell, or left of it; a single letter to the left is a symbol, not a unit."""
+        place = row_column(ref)
+        assert place is not None
+        row, column = place
+        unit = unit_in(self.reading.value(number, cell_name(row, column + 1)))
+        if unit or column == 1:
+            return unit
+        left = unit_in(self.reading.value(number, cell_name(row, column - 1)))
+        return left if len(left) > 1 else ""
+
+    def checks(self) -> tuple[Check, ...]:
+        """Return every cell with a verdict."""
+        names = {(number, ref): name for name, number, ref in self._names}
+        found = []
+        for number, sheet, formula in self.reading.prepared.formulas():
+            value = self.reading.results[number, formula.ref]
+            master = self._master_call(number, formula)
+            if value in _VERDICTS or master == "RB_CHECK":
+                verdict = value.text if isinstance(value, CellError) else str(value)
+                name = names.get((number, formula.ref)) or self._label(number, formula) or formula.ref
+                numbers = self._numbers(number, formula)
+                found.append(Check(name, verdict, sheet.name, formula.ref, **numbers))
+        return tuple(found)
+
+    def _master_call(self, number: int, formula: FormulaCell) -> str:
+        """Return the function that the whole formula is a call of; the same for all of a shared formula."""
+        prepared = self.reading.prepared
+        ref = formula.ref if formula.text else prepared.masters[number, formula.rule.get("si", "")]
+        whole = prepared.analyses[number, ref].whole
+        return whole.name if whole is not None else ""
+
+    def _label(self, number: int, formula: FormulaCell) -> str:
+        """Return the first text in the row, left of the verdict."""
+        for column in range(1, formula.column):
+            value = self.reading.value(number, cell_name(formula.row, column))
+            if isinstance(value, str) and value.strip():
+                return value.strip()
+        return ""
+
+    def _numbers(self, number: int, formula: FormulaCell) -> dict[str, Value]:
+        """Return demand, capacity and margin of the row, by the nearest header above that says so."""
+        found: dict[str, Value] = {}
+        for row, column, word in self._headers(number):
+            if row < formula.row and column != formula.column:
+                value = self.reading.value(number, cell_name(formula.row, column))
+                if value is not None and not (isinstance(value, str) and value in _VERDICTS):
+                    found[word] = value  # headers come from top to bottom: the nearest wins
+        return found
+
+    def _headers(self, number: int) -> list[tuple[int, int, str]]:
+        kept: dict[int, list[tuple[int, int, str]]] = self.__dict__.setdefault("_kept_headers", {})
+        if number not in kept:
+            found = []
+            for _, attributes in self.reading.prepared.sheets[number].cells:
+                ref = attributes["r"]
+                place = row_column(ref)
+                value = self.reading.value(number, ref)
+                if place is None or not isinstance(value, str) or len(value) > 40:
+                    continue
+                found += [(*place, word) for word, pattern in _HEADERS.items() if pattern.match(value)]
+            kept[number] = sorted(found, key=lambda header: (header[0], -header[1]))
+        return kept[number]
