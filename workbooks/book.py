@@ -85,7 +85,7 @@ def describe(package: Package) -> Book:
         raise FileRefused("two sheets of the workbook have the same name")
     defined = tuple(_scoped(name, order) for name in names)
     lookup = {(name.sheet, name.name.lower()): name for name in defined}
-    by_kind = {kind: target for kind, target in relations.values()}
+    by_kind = dict(relations.values())
     return Book(
         package,
         main,
@@ -152,8 +152,7 @@ def _relations(package: Package, part: str) -> dict[str, tuple[str, str]]:
 def _main_part(package: Package) -> str:
     """Return the path of the workbook part, or name the format that this really is."""
     if "[Content_Types].xml" not in package.parts:
-        kind = package.parts.get("mimetype", b"")
-        if b"opendocument" in kind:
+        if b"opendocument" in package.parts.get("mimetype", b""):
             raise FileRefused("the file is an OpenDocument file", remedy="Save it as .xlsx")
         raise FileRefused("the file is a zip archive but not a workbook")
     for kind, target in _relations(package, "").values():

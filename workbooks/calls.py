@@ -1,4 +1,4 @@
-"""Calls from the engine into our functions: the calling cell, the reason of a refusal, the gate on results."""
+"""Calls from the engine into our functions: the calling cell, the reason of a refusal, the gate."""
 
 from __future__ import annotations
 
@@ -77,7 +77,7 @@ class Calls:
         def item(i: int, j: int) -> Value:
             i, j = (0 if found[0] == 1 else i), (0 if found[1] == 1 else j)
             cell = block[i][j] if i < found[0] and j < found[1] else none
-            return 0.0 if cell is None else cell  # type: ignore[no-any-return]
+            return 0.0 if cell is None else cell
 
         return [[item(i, j) for j in range(width)] for i in range(height)]
 

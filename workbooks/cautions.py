@@ -111,9 +111,9 @@ class _Search:
                         continue
                     source = self.tabs[cell[0]], cell[1]
                     unit = self.units.get(cell, "")
-                    if dates and self.reading.has_date_format(*cell):
-                        if isinstance(self.reading.value(*cell), float):
-                            yield self._date(outer, here, source)
+                    dated = dates and self.reading.has_date_format(*cell)
+                    if dated and isinstance(self.reading.value(*cell), float):
+                        yield self._date(outer, here, source)
                 if unit:
                     crossed.append((unit, argument, source))
             yield from self._crossings(outer, here, crossed)

@@ -61,10 +61,11 @@ def _from_engine(value: Any) -> Cell:
     if kind is list:
         if len(value) == 1 and len(value[0]) == 1:
             return _from_engine(value[0][0])
-        return [
+        block: Any = [
             [item if type(item) is float or item is None else _from_engine(item) for item in row]
             for row in value
-        ]  # type: ignore[misc]
+        ]
+        return block  # type: ignore[no-any-return]
     raise FileRefused(f"the engine gave a value of an unknown kind ({kind.__name__})")
 
 

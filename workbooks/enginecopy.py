@@ -70,8 +70,9 @@ def target_of(name: DefinedName) -> tuple[str, Area] | None:
 class Preparation:
     """Checks every formula of a workbook and writes the engine's copy."""
 
-    def __init__(self, book: Book, sheets: tuple[Sheet, ...], engine: Engine, resolve: Resolver,
-                 ours: Collection[str]) -> None:  # fmt: skip
+    def __init__(
+        self, book: Book, sheets: tuple[Sheet, ...], engine: Engine, resolve: Resolver, ours: Collection[str]
+    ) -> None:
         self.prepared = Prepared(book, sheets)
         self.book = book
         self.engine = engine
@@ -94,9 +95,7 @@ class Preparation:
     def _formula(self, number: int, sheet: Sheet, formula: FormulaCell) -> list[tuple[int, int, bytes]]:
         rule = formula.rule.get("t", "normal")
         if rule == "dataTable":
-            raise self._refused(
-                sheet, formula, "the cell belongs to a what-if data table", "Remove the table"
-            )
+            raise self._refused(sheet, formula, "a what-if data table stands here", "Remove the table")
         if rule == "shared" and formula.text:
             self.prepared.masters.setdefault((number, formula.rule.get("si", "")), formula.ref)
         if not formula.text:
@@ -116,9 +115,7 @@ class Preparation:
         else:
             rows, columns = size(frame)
             if rows * columns > 1_000_000:
-                raise self._refused(
-                    sheet, formula, "the array formula has an immense frame", "Make it smaller"
-                )
+                raise self._refused(sheet, formula, "the array formula is immense", "Make it smaller")
             text = f"{FIT}({number},ROW(),COLUMN(),{rows},{columns},{text})"
             edits = list(self._children(sheet, formula, frame))
         edits.append((formula.text_start, formula.text_end, escape(text).encode()))
@@ -153,13 +150,21 @@ class Preparation:
             if where and sheet_of(where).lower() not in self.tabs:
                 raise self._refused(sheet, formula, f"there is no sheet called {sheet_of(where)!r}")
             if plain and single and ":" in reference:
-                raise self._refused(sheet, formula, f"the range {reference} stands where one value is needed",
-                                    "Enter it as an array formula, use SUMPRODUCT, or pick one cell")  # fmt: skip
+                raise self._refused(
+                    sheet,
+                    formula,
+                    f"the range {reference} stands where one value is needed",
+                    "Pick one cell, use SUMPRODUCT or an array formula",
+                )
         for where, name, single in analysis.names:
             target = self._area_of(sheet, formula, where, name)
             if plain and single and target is not None and size(target) != (1, 1):
-                raise self._refused(sheet, formula, f"the range {name} stands where one value is needed",
-                                    "Enter it as an array formula, use SUMPRODUCT, or pick one cell")  # fmt: skip
+                raise self._refused(
+                    sheet,
+                    formula,
+                    f"the range {name} stands where one value is needed",
+                    "Pick one cell, use SUMPRODUCT or an array formula",
+                )
         for call in analysis.calls:
             self.prepared.used.add(call.name)
         for _, _, call in analysis.nested:
@@ -169,17 +174,26 @@ class Preparation:
         pool = list(self.ours) if function.startswith("RB") else [*self.ours, *_COMMON]
         close = difflib.get_close_matches(canonical(function), pool, n=1, cutoff=0.6)
         remedy = f"Did you mean {close[0]}?" if close else ""
-        return UnknownFunction(f"there is no function {function}", sheet=sheet.name, cell=formula.ref,
-                               formula=formula.text, remedy=remedy)  # fmt: skip
+        return UnknownFunction(
+            f"there is no function {function}",
+            sheet=sheet.name,
+            cell=formula.ref,
+            formula=formula.text,
+            remedy=remedy,
+        )
 
     def _find(self, sheet: Sheet, formula: FormulaCell, where: str, name: str) -> DefinedName:
         found = self.book.named(name, sheet_of(where) if where else sheet.name)
         if found is None:
             known = [one.name for one in self.book.names if not one.name.startswith("_xlnm.")]
             close = difflib.get_close_matches(name, known, n=1, cutoff=0.6)
-            raise UnknownFunction(f"there is no cell or function named {name}", sheet=sheet.name,
-                                  cell=formula.ref, formula=formula.text,
-                                  remedy=f"Did you mean {close[0]}?" if close else "")  # fmt: skip
+            raise UnknownFunction(
+                f"there is no cell or function named {name}",
+                sheet=sheet.name,
+                cell=formula.ref,
+                formula=formula.text,
+                remedy=f"Did you mean {close[0]}?" if close else "",
+            )
         return found
 
     def _area_of(self, sheet: Sheet, formula: FormulaCell, where: str, name: str) -> Area | None:
@@ -197,14 +211,33 @@ class Preparation:
         if "#REF!" in found.text:
             return "#REF!"
         raise self._refused(
-            sheet, formula, f"the name {name} stands for a formula ({found.text[:60]})",
+            sheet,
+            formula,
+            f"the name {name} stands for a formula ({found.text[:60]})",
             "Put the formula into a cell and let the name point to that cell",
-        )  # fmt: skip
+        )
 
 
 # What people mean most often when they mistype a built-in function.
-_COMMON: Final = ("SUM", "SUMPRODUCT", "AVERAGE", "ROUND", "SQRT", "INDEX", "MATCH", "VLOOKUP", "IFERROR",
-                  "COUNT", "COUNTA", "RADIANS", "DEGREES", "CHOOSE", "CONCATENATE", "POWER", "ATAN2")  # fmt: skip
+_COMMON: Final = (
+    "SUM",
+    "SUMPRODUCT",
+    "AVERAGE",
+    "ROUND",
+    "SQRT",
+    "INDEX",
+    "MATCH",
+    "VLOOKUP",
+    "IFERROR",
+    "COUNT",
+    "COUNTA",
+    "RADIANS",
+    "DEGREES",
+    "CHOOSE",
+    "CONCATENATE",
+    "POWER",
+    "ATAN2",
+)
 
 
 def frame_cells(frame: Area) -> Iterator[str]:
@@ -229,14 +262,20 @@ def _package(prepared: Prepared, parts: list[bytes]) -> bytes:
             relations.append(_relation("strings", "sharedStrings", "sharedStrings.xml"))
             archive.writestr("xl/sharedStrings.xml", prepared.book.shared_strings)
         dates = '<workbookPr date1904="1"/>' if prepared.book.date1904 else ""
-        archive.writestr("xl/workbook.xml", f'<workbook xmlns="{SPACE}" xmlns:r="{_OFFICE}">{dates}'
-                         f"<sheets>{''.join(tabs)}</sheets></workbook>")  # fmt: skip
+        archive.writestr(
+            "xl/workbook.xml",
+            f'<workbook xmlns="{SPACE}" xmlns:r="{_OFFICE}">{dates}'
+            f"<sheets>{''.join(tabs)}</sheets></workbook>",
+        )
         archive.writestr("xl/_rels/workbook.xml.rels", _relations_text("".join(relations)))
         archive.writestr("_rels/.rels", _relations_text(_relation("w", "officeDocument", "xl/workbook.xml")))
-        archive.writestr("[Content_Types].xml", f'<Types xmlns="{_PACKAGE}/content-types">'
-                         '<Default Extension="rels" ContentType='
-                         '"application/vnd.openxmlformats-package.relationships+xml"/>'
-                         '<Default Extension="xml" ContentType="application/xml"/></Types>')  # fmt: skip
+        archive.writestr(
+            "[Content_Types].xml",
+            f'<Types xmlns="{_PACKAGE}/content-types">'
+            '<Default Extension="rels" ContentType='
+            '"application/vnd.openxmlformats-package.relationships+xml"/>'
+            '<Default Extension="xml" ContentType="application/xml"/></Types>',
+        )
     return target.getvalue()
 
 

@@ -18,13 +18,12 @@ NAME_MARK: Final = "\x02"  # round a defined name, which is replaced by what it 
 SHEET_MARK: Final = "\x00"  # where the number of the calling sheet belongs
 PREFIXES: Final = ("_XLFN.", "_XLWS.", "_XLUDF.", "_XLL.", "_XLPM.")
 
-_CELL: Final = r"\$?[A-Za-z]{1,3}\$?[1-9][0-9]{0,6}"
 _TOKEN: Final = re.compile(
     r"""
     (?P<string>"(?:[^"]|"")*")
   | (?P<space>\s+)
   | (?P<where>'(?:[^']|'')*'!|\[[^\]]*\][^\s'!(),;+\-*/&=<>^"{}]*!|[\w.?\\]+(?::[\w.?\\]+)?!)?
-    (?: (?P<ref>%(cell)s(?::%(cell)s)?(?![\w.(\\?])
+    (?: (?P<ref>\$?[A-Za-z]{1,3}\$?[1-9][0-9]{0,6}(?::\$?[A-Za-z]{1,3}\$?[1-9][0-9]{0,6})?(?![\w.(\\?])
           |\$?[A-Za-z]{1,3}:\$?[A-Za-z]{1,3}(?![\w.(\\?])
           |\$?[1-9][0-9]*:\$?[1-9][0-9]*(?![\w.]))
       | (?P<call>[A-Za-z_\\\u00a1-\U0010ffff][\w.\\?]*)(?P<gap>\s*)\(
@@ -33,8 +32,7 @@ _TOKEN: Final = re.compile(
   | (?P<number>[0-9]+(?:\.[0-9]*)?(?:[eE][+-]?[0-9]+)?|\.[0-9]+(?:[eE][+-]?[0-9]+)?)
   | (?P<array>\{(?:[^{}"]|"(?:[^"]|"")*")*\})
   | (?P<op><=|>=|<>|.)
-    """
-    % {"cell": _CELL},
+    """,
     re.VERBOSE | re.DOTALL,
 )
 

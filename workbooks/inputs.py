@@ -69,8 +69,11 @@ def _named(reading: Reading, name: str) -> tuple[int, tuple[int, int]]:
     if found is None:
         known = [one.name for one in reading.book.names if not one.name.startswith("_xlnm.")]
         close = difflib.get_close_matches(name, known, n=1, cutoff=0.6)
-        raise InputRefused("", f"There is no cell named {name!r}",
-                           remedy=f"Did you mean {close[0]}?" if close else "Type Sheet!B3 or a name")  # fmt: skip
+        raise InputRefused(
+            "",
+            f"There is no cell named {name!r}",
+            remedy=f"Did you mean {close[0]}?" if close else "Type Sheet!B3 or a name",
+        )
     number = reading.numbers.get(target[0].lower()) if target is not None else None
     if target is None or number is None or size(target[1]) != (1, 1):
         raise InputRefused(name, "the name of a single cell", found.text[:60])
@@ -125,7 +128,7 @@ def _text_value(name: str, given: str, unit: str, now: Value) -> Value:
 
 
 def _set(sheet: Sheet, values: Mapping[str, Value]) -> Sheet:
-    edits = []
+    edits: list[tuple[int, int, bytes]] = []
     absent: dict[int, list[tuple[str, Value]]] = {}
     for ref, value in values.items():
         found = sheet.cell(ref)

@@ -122,8 +122,10 @@ def recalculate(
         run = _Run(data, inputs, functions, engine)
         in_place = writes and seen is not None and target is not None and _same_file(target, seen.path)
         if run.prepared.book.package.signed and in_place:
-            raise FileRefused("the file carries a digital signature, which writing would break",
-                              remedy="Write to another file")  # fmt: skip
+            raise FileRefused(
+                "the file carries a digital signature, which writing would break",
+                remedy="Write to another file",
+            )
         result = run.result()
         if writes and target is not None:
             saving.save(result.package, target, seen)
@@ -207,9 +209,11 @@ class _Run:
             raise FormulaRefused(
                 f"the result has changed its size to {found[0]} x {found[1]} cells, and only a spreadsheet"
                 " program can move it",
-                sheet=sheet.name, cell=formula.ref, formula=formula.text,
+                sheet=sheet.name,
+                cell=formula.ref,
+                formula=formula.text,
                 remedy="Open and save the file there, or use an array formula with a fixed frame",
-            )  # fmt: skip
+            )
         top, left, _, _ = frame
         columns = size(frame)[1]
         for i, ref in enumerate(frame_cells(frame)):

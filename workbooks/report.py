@@ -144,7 +144,7 @@ class Report:
         return tuple(found)
 
     def unit_beside(self, number: int, ref: str) -> str:
-        """Return the unit right of a cell, or left of it; a single letter to the left is a symbol, not a unit."""
+        """Return the unit right of a cell, or left of it, where a single letter is a symbol and no unit."""
         place = row_column(ref)
         assert place is not None
         row, column = place

@@ -185,11 +185,11 @@ def insertions(sheet: Sheet, row: int, cells: list[tuple[str, Value]]) -> Iterab
         yield place, place, b'<%brow r="%d">%b</%brow>' % (prefix, row, whole, prefix)
         return
     start = sheet.rows[at][1]
-    tag = tag_end(sheet.data, start)
+    inside = tag_end(sheet.data, start)
     limit = sheet.rows[at + 1][1] if at + 1 < len(numbers) else sheet.end
-    if sheet.data[tag - 2 : tag] == b"/>":
+    if sheet.data[inside - 2 : inside] == b"/>":
         inner = b"".join(piece for _, piece in made)
-        yield tag - 2, tag, b">" + inner + b"</" + prefix + b"row>"
+        yield inside - 2, inside, b">" + inner + b"</" + prefix + b"row>"
         return
     close = sheet.data.rfind(b"</" + prefix + b"row", start, limit)
     left = bisect_right(sheet.cells, start, key=lambda cell: cell[0])
