@@ -33,8 +33,8 @@ class Kind:
     name: str
     si: str
     powers: Powers
-    spellings: Mapping[str, float]
-    hints: Mapping[str, str]
+    spellings: Mapping[str, float] = field(repr=False)
+    hints: Mapping[str, str] = field(repr=False)
     # Texts as users typed them, each resolved once; `units.factor` fills it and keeps it bounded.
     seen: dict[str, float] = field(init=False, repr=False)
 

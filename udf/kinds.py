@@ -31,11 +31,11 @@ LENGTH: Final = make_kind(
         '"': "Write in",
     },
 )
-AREA: Final = make_kind("area", "m^2", "mm^2 cm^2 dm^2 in^2 ft^2 yd^2 sq*in sq*ft sq*mm")
+AREA: Final = make_kind("area", "m^2", "mm^2 cm^2 dm^2 in^2 ft^2 yd^2")
 VOLUME: Final = make_kind(
     "volume",
     "m^3",
-    "mm^3 cm^3 dm^3 l L ml mL cc in^3 ft^3 yd^3 cu*in cu*ft",
+    "mm^3 cm^3 dm^3 l L ml mL cc in^3 ft^3 yd^3",
     {"gal": "Write US_gal or UK_gal"},
 )
 MASS: Final = make_kind(

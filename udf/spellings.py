@@ -139,6 +139,7 @@ def _symbols() -> dict[str, Readings]:
     add("h hr hrs hour hours", _measure(3600, TIME))
     add("day days", _measure(86400, TIME))
 
+    add("rads radian radians", _measure(1, ANGLE))
     add("deg degs degree degrees °", _measure(Fraction(1, 180), ANGLE, 1))
     add("arcmin", _measure(Fraction(1, 10800), ANGLE, 1))
     add("arcsec", _measure(Fraction(1, 648000), ANGLE, 1))
@@ -205,10 +206,11 @@ _SIGNS: Final = str.maketrans(
 _DEGREES: Final = str.maketrans({"\N{MASCULINE ORDINAL INDICATOR}": "°", "\N{RING ABOVE}": "°"})
 
 _PER = re.compile(r"\s+per\s+")
-_FULL_STOP = re.compile(r"\.(?=$|[\s*/^)\-])")
+_FULL_STOP = re.compile(r"\.+(?=$|[\s*/^)\-])")
 _DOT_PRODUCT = re.compile(r"(?<=[^\W\d])\.(?=[^\W\d])|(?<=[0-9])\.(?=[^\W\d])")
 _AROUND_SIGN = re.compile(r"\s*([*/^])\s*|(?<=\()\s+|\s+(?=\))")
 _HYPHEN_PRODUCT = re.compile(r"(?<=[\w°)])\s*-\s*(?=[^\W\d]|[°(])")
+_SQUARE_OR_CUBIC = re.compile(r"(?<!\w)(sq|cu)[\s*]+([^\W\d]+)(?![\w^])")
 _BARE_POWER = re.compile(r"(?<=[^\W\d_]|°)(-?[0-9])")
 _POWER_IN_BRACKETS = re.compile(r"\^\((-?[0-9]+)\)")
 _POWER_PLUS = re.compile(r"\^\+(?=[0-9])")
@@ -218,7 +220,7 @@ def canonical(text: str) -> str:
     """Return a unit text in its one canonical form, such as `kg*m^2` or `lb*in*s^2`.
 
     Outer brackets go; superscripts, `m2`, `m**2` become `m^2`; `·`, `×`, `.`, a hyphen between symbols
-    and a space become `*`; full stops of abbreviations go. No meaning is judged here.
+    and a space become `*`; `sq in` becomes `in^2`; full stops of abbreviations go. No meaning is judged here.
     """
     unit = unicodedata.normalize("NFKC", text.translate(_DEGREES)).translate(_SIGNS)
     unit = _without_brackets(" ".join(unit.split())).replace("**", "^")
@@ -227,6 +229,7 @@ def canonical(text: str) -> str:
     unit = _DOT_PRODUCT.sub("*", unit)
     unit = _HYPHEN_PRODUCT.sub("*", unit)
     unit = _AROUND_SIGN.sub(lambda found: found[1] or "", unit)
+    unit = _SQUARE_OR_CUBIC.sub(lambda found: f"{found[2]}^{2 if found[1] == 'sq' else 3}", unit)
     unit = _BARE_POWER.sub(r"^\1", unit)
     unit = _POWER_PLUS.sub("^", _POWER_IN_BRACKETS.sub(r"^\1", unit))
     return "*".join(unit.split())
@@ -234,18 +237,16 @@ def canonical(text: str) -> str:
 
 def _without_brackets(unit: str) -> str:
     """Return the text without a pair of brackets that encloses all of it."""
-    for left, right in ("[]", "()"):
-        inner = unit[1:-1]
-        if unit[:1] == left and unit[-1:] == right and left not in inner and right not in inner:
-            return inner.strip()
-    return unit
+    inner = unit[1:-1]
+    if unit[:1] + unit[-1:] not in ("[]", "()") or len(unit) < 2 or unit[0] in inner or unit[-1] in inner:
+        return unit
+    return _without_brackets(inner.strip())
 
 
 Terms: TypeAlias = tuple[tuple[str, int], ...]
 
 _FACTOR = re.compile(r"([^\W\d]+|[°%‰])(?:\^(-?[0-9]{1,3}))?")
 _RUN_TOGETHER = re.compile(r"(?:[umcdkM]|da)?(?:Nm|Wh)|k?Nmm|Ncm|ftlb|lbft|inlb|lbin|ozin|inoz")
-_ROOMS: Final = {"sq": 2, "cu": 3}
 
 
 @lru_cache(maxsize=2048)
@@ -286,24 +287,16 @@ def _parts(unit: str) -> list[str]:
 def _product(part: str, sign: int, unit: str) -> list[tuple[str, int]]:
     """Return the symbols and powers of one product."""
     terms: list[tuple[str, int]] = []
-    room = 1
     for piece in part.split("*"):
         found = _FACTOR.fullmatch(piece)
         if found is None:
             raise InputError("", "Not a unit", unit, remedy=_remedy_for(piece))
         if found[2] and _RUN_TOGETHER.fullmatch(found[1]):
             raise InputError("", "Not a unit", unit, remedy="Put a * between the symbols, as in N*m^2")
-        name, power = found[1], int(found[2] or 1)
-        if name in _ROOMS and found[2] is None and room == 1:
-            room = _ROOMS[name]
-            continue
-        power *= room
-        room = 1
+        power = int(found[2] or 1)
         if not 1 <= abs(power) <= LARGEST_POWER:
             raise InputError("", "A power in a unit is a whole number up to 9, not 0", unit)
-        terms.append((name, sign * power))
-    if room != 1:
-        raise InputError("", "Not a unit", unit, remedy="Write in^2 or in^3")
+        terms.append((found[1], sign * power))
     return terms
 
 

@@ -14,7 +14,7 @@ from functools import lru_cache
 from typing import Any, Final
 
 from ..core.errors import InputError, KindError
-from .kinds import COUNT, KINDS, Kind
+from .kinds import COUNT, KINDS, TORQUE, Kind
 from .spellings import (
     LONGEST_UNIT,
     NOTHING,
@@ -100,11 +100,24 @@ def _readings(text: str) -> list[tuple[Kind, float]]:
     answer: list[tuple[Kind, float]] = []
     for kind in KINDS:
         value = kind.spellings.get(text)
-        if value is None and text not in kind.hints and kind is not COUNT:
+        if value is None and found and _may_be(text, kind):
             value = next((one.factor() for one in found if one.powers == kind.powers), None)
         if value is not None:
             answer.append((kind, value))
     return answer
+
+
+# Energy and power have the dimension of a torque, or of a torque per time, but are no force at an arm.
+_ENERGETIC = re.compile(
+    r"(?:[umkMG]?(?:J|Wh|W))|hp|PS|.*(?:joule|erg|watt|horsepower)s?|.*watt_?hours?", re.IGNORECASE
+)
+
+
+def _may_be(text: str, kind: Kind) -> bool:
+    """Tell whether the dimension alone decides if a text that is not in the table is of a kind."""
+    if text in kind.hints or kind is COUNT:
+        return False
+    return kind is not TORQUE or not any(_ENERGETIC.fullmatch(name) for name, _ in terms_of(text))
 
 
 def _canonical_of(unit: str, argument: str) -> str:
@@ -135,7 +148,7 @@ def _resolve(unit: str, kind: Kind, argument: str) -> float:
     except InputError as wrong:
         raise _syntax(wrong, unit, argument) from None
     fitting = [one.factor() for one in found if one.powers == kind.powers]
-    if not fitting or kind is COUNT:
+    if not fitting or not _may_be(text, kind):
         raise _error(argument, kind.phrase, unit, _described(text), _weight_remedy(text, kind))
     # Readings of one dimension have one factor: what a weight adds, a weight divided by takes away.
     return fitting[0]
@@ -249,6 +262,9 @@ _REMEDIES: Final = {
     "kts": "Write knot",
     "klb": "Write kip",
     "US": "Write us",
+    "gm": "Write g",
+    "lb_f": "Write lbf",
+    **dict.fromkeys(("psig", "psia"), "Write psi; say in words from which zero it counts"),
     "C": "Temperature is not used here",
     "F": "Temperature is not used here",
     "K": "Temperature is not used here",
@@ -356,5 +372,6 @@ def _from_pint(name: str, spelled_out: bool = False) -> Measure | None:
 
 def _exact(size: float, grams: int, dimension: Powers) -> Measure:
     """Return pint's size, which counts in grams, as an exact measure in kilograms."""
-    exact = Fraction(size) / Fraction(1000) ** grams
+    # Fifteen digits drop the rounding noise of pint's own arithmetic: a liter is 0.001 m^3 and nothing more.
+    exact = Fraction(f"{size:.15g}") / Fraction(1000) ** grams
     return Measure(exact.numerator, exact.denominator, 0, dimension)
