@@ -2,9 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass
-from functools import lru_cache
 from typing import Final
 
 from .addresses import Area, cell_name, size
@@ -29,16 +28,29 @@ class Caution:
         return self.sentence
 
 
-def cautions(reading: Reading, *, signed: bool = False) -> tuple[Caution, ...]:
-    """Return every warning about a recalculated workbook."""
-    found = list(_Search(reading).run())
+def cautions(
+    reading: Reading, unit_position: Callable[[str], int | None], *, signed: bool = False
+) -> tuple[Caution, ...]:
+    """Return every warning about a recalculated workbook.
+
+    Parameters
+    ----------
+    reading : Reading
+        The workbook after the run.
+    unit_position : Callable
+        Gives the place of the argument that chooses the unit of a function's result, None without one.
+    signed : bool
+        Whether the file carried a digital signature.
+    """
+    found = list(_Search(reading, unit_position).run())
     if signed:
         found.append(Caution("signature", "The digital signature of the file no longer holds for the copy."))
     return tuple(found)
 
 
 class _Search:
-    def __init__(self, reading: Reading) -> None:
+    def __init__(self, reading: Reading, unit_position: Callable[[str], int | None]) -> None:
+        self.unit_position = unit_position
         self.reading = reading
         self.prepared = reading.prepared
         self.tabs = [sheet.name for sheet in reading.prepared.sheets]
@@ -66,7 +78,7 @@ class _Search:
             else:
                 master = self.prepared.masters[number, formula.rule.get("si", "")]
                 whole = self.prepared.analyses[number, master].whole
-                if whole is not None and unit_position(whole.name) is not None:
+                if whole is not None and self.unit_position(whole.name) is not None:
                     whole = self.reading.formula(number, formula)[1].whole
             unit = self._unit(number, whole) if whole is not None else ""
             if unit and isinstance(self.reading.results[number, formula.ref], float):
@@ -74,7 +86,7 @@ class _Search:
 
     def _unit(self, number: int, call: Call) -> str:
         """Return the unit that a call asks its result in, when it is not SI."""
-        position = unit_position(call.name)
+        position = self.unit_position(call.name)
         if position is None or position >= len(call.arguments):
             return ""
         unit = call.arguments[position]
@@ -101,7 +113,7 @@ class _Search:
         for outer in (*analysis.calls, *(inner for _, _, inner in analysis.nested)):
             crossed: list[tuple[str, Argument, tuple[str, str]]] = []
             for position, argument in enumerate(outer.arguments):
-                if position == unit_position(outer.name):
+                if position == self.unit_position(outer.name):
                     continue
                 if argument.kind == "call" and argument.call is not None:
                     unit, source = self._unit(number, argument.call), here
@@ -165,16 +177,3 @@ class _Search:
                         "not a number.",
                         ((sheet, formula.ref), source),
                     )
-
-
-@lru_cache(maxsize=512)
-def unit_position(name: str) -> int | None:
-    """Return the place of the `unit` argument of one of our functions; None when it has none."""
-    from rigidsheet.core.errors import RigidsheetError
-    from rigidsheet.udf.catalogue import find
-
-    try:
-        arguments = find(name).arguments
-    except RigidsheetError:
-        return None
-    return next((i for i, argument in enumerate(arguments) if argument.name == "unit"), None)

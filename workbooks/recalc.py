@@ -2,16 +2,17 @@
 
 from __future__ import annotations
 
+import gc
 import os
 import signal
 import threading
 from collections.abc import Callable, Collection, Iterator, Mapping
 from contextlib import contextmanager
 from dataclasses import dataclass
-from functools import partial
+from functools import cache, partial
 from pathlib import Path
 from types import FrameType, MappingProxyType
-from typing import Any, Final
+from typing import Any, Final, TypeAlias
 
 from rigidsheet.udf.cells import CellError, Value
 
@@ -30,6 +31,9 @@ from .reading import Reading
 from .report import CellFailure, Check, NamedResult, Report
 from .sheetxml import FormulaCell, Sheet, scan
 from .writeback import written
+
+# Returns one of the cell functions by its name.
+Finder: TypeAlias = Callable[[str], "Function | None"]
 
 _NONE: Final[Mapping[str, object]] = MappingProxyType({})
 
@@ -114,7 +118,7 @@ def recalculate(
     """
     seen = None if isinstance(source, bytes) else saving.load(Path(source))
     data = source if isinstance(source, bytes) else (seen.data if seen is not None else b"")
-    with _located(seen):
+    with _located(seen), _collector_paused():
         target = Path(to) if to is not None else (seen.path if seen is not None else None)
         writes = (target is not None) if write is None else write
         if writes and target is None:
@@ -160,7 +164,8 @@ class _Run:
         engine: Engine | None,
     ) -> None:
         self.source = data
-        self.functions, names = _own_functions() if functions is None else (functions.get, functions.keys())
+        own = _own_functions() if functions is None else (functions.get, functions.keys(), _no_unit)
+        self.functions, names, self.unit_position = own
         self.resolve = resolver(tuple(names))
         self.engine = engine if engine is not None else Formualizer()
         book = describe(packages.read(data))
@@ -193,7 +198,7 @@ class _Run:
             report.errors(),
             report.results(),
             report.checks(),
-            cautions(reading, signed=self.prepared.book.package.signed),
+            cautions(reading, self.unit_position, signed=self.prepared.book.package.signed),
             new,
             new != self.source,
         )
@@ -246,18 +251,40 @@ _UNLAWFUL: Final = {
 }
 
 
-def _own_functions() -> tuple[Callable[[str], Function | None], Collection[str]]:
-    """Return our cell functions, as positional callables, and their names."""
-    from rigidsheet.udf import calling
+def _own_functions() -> tuple[Finder, Collection[str], Callable[[str], int | None]]:
+    """Return our cell functions as positional callables, their names, and where their unit argument is."""
+    from rigidsheet.udf import calling, catalogue
 
     def find(name: str) -> Function:
         return partial(_call, calling.call, name)
 
-    return find, calling.names()
+    @cache
+    def unit_position(name: str) -> int | None:
+        arguments = catalogue.find(name).arguments
+        return next((i for i, argument in enumerate(arguments) if argument.name == "unit"), None)
+
+    return find, calling.names(), unit_position
 
 
 def _call(call: Callable[[str, tuple[Any, ...]], Any], name: str, *cells: Any) -> Any:
     return call(name, cells)
+
+
+def _no_unit(name: str) -> int | None:
+    return None
+
+
+@contextmanager
+def _collector_paused() -> Iterator[None]:
+    """Pause the search for reference cycles: it takes half the time of a large file and finds nothing."""
+    if not gc.isenabled():
+        yield
+        return
+    gc.disable()
+    try:
+        yield
+    finally:
+        gc.enable()
 
 
 @contextmanager
