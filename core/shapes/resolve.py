@@ -39,12 +39,11 @@ def _few_names() -> str:
 
 
 def _plain(word: str) -> str:
-    """Return a name without case, spaces, hyphens, plural and the second spelling of a word."""
+    """Return a name without case, spaces, hyphens and the second spelling of a word."""
     text = word.strip().lower()
     for other, ours in _SPELLINGS:
         text = text.replace(other, ours)
-    text = "".join(letter for letter in text if letter.isalnum())
-    return text[:-1] if text.endswith("s") and not text.endswith("ss") else text
+    return "".join(letter for letter in text if letter.isalnum())
 
 
 def _spelled_names() -> dict[str, str]:
@@ -79,15 +78,16 @@ def shape_named(word: str) -> Shape:
 
     Notes
     -----
-    Case, spaces, hyphens, a plural s and British spelling do not matter.
+    Case, spaces, hyphens, a plural and British spelling do not matter.
 
     References
     ----------
     Names as in J. L. Meriam, L. G. Kraige, Engineering Mechanics: Dynamics, table D/4.
     """
     plain = _plain(word)
-    if plain in _NAMES:
-        return SHAPES[_NAMES[plain]]
+    for singular in (plain, plain.removesuffix("s"), plain.removesuffix("es")):
+        if singular in _NAMES:
+            return SHAPES[_NAMES[singular]]
     close = get_close_matches(plain, _NAMES, n=3, cutoff=0.7)
     names = list(dict.fromkeys(_NAMES[match] for match in close))
     remedy = f"Did you mean {' or '.join(names)}?" if names else _few_names()
