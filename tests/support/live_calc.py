@@ -11,7 +11,7 @@ import threading
 import time
 import uuid
 from collections.abc import Iterator
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 from pathlib import Path
 from typing import Any
 
@@ -50,15 +50,6 @@ def missing() -> str:
     if office_python(office) is None:
         return "no Python with `uno` was found (Debian, Ubuntu: apt install python3-uno)"
     return ""
-
-
-def children(pid: int) -> list[int]:
-    """Return the processes that a process started."""
-    try:
-        text = Path(f"/proc/{pid}/task/{pid}/children").read_text()
-    except OSError:
-        return []
-    return [int(p) for p in text.split()]
 
 
 def family(pid: int) -> list[int]:
@@ -171,20 +162,21 @@ class LiveCalc:
         if signal_number is not None:
             os.kill(self.process.pid, signal_number)
         else:
-            try:
+            with suppress(RuntimeError, OSError):
                 self.ask("terminate")
-            except (RuntimeError, OSError):
-                pass
-        if self.driver.stdin is not None:
-            try:
-                self.driver.stdin.close()
-            except OSError:
-                pass
         try:
             code = self.process.wait(20)
         except subprocess.TimeoutExpired:
             os.kill(self.process.pid, signal.SIGKILL)
             code = self.process.wait(10)
+        self.release()
+        return code
+
+    def release(self) -> None:
+        """End the driver and close the line to it."""
+        if self.driver.stdin is not None:
+            with suppress(OSError):
+                self.driver.stdin.close()
         try:
             self.driver.wait(5)
         except subprocess.TimeoutExpired:
@@ -192,11 +184,10 @@ class LiveCalc:
             self.driver.wait()
         if self.driver.stdout is not None:
             self.driver.stdout.close()
-        return code
 
 
 def plain(cell: dict[str, Any]) -> Any:
-    """Return a cell as number, text, None, or the text of its error ('Err:504' where there is no common one)."""
+    """Return a cell as number, text, None or error ('Err:504' where no other program has that error)."""
     if "error" in cell:
         return {"error": ERROR_TEXTS.get(cell["error"], f"Err:{cell['error']}")}
     return cell.get("number", cell.get("text"))
@@ -213,3 +204,4 @@ def private_office(environment: dict[str, str] | None = None) -> Iterator[LiveCa
         finally:
             if calc.process.poll() is None:
                 calc.stop()
+            calc.release()
