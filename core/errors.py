@@ -61,6 +61,8 @@ class AbsentError(RigidsheetError, ValueError):
 
 def stopped(text: str) -> str:
     """Return a sentence with exactly one mark at its end."""
+    if text.endswith("..."):
+        return text
     text = text.rstrip(".")
     return text if text.endswith(("?", "!")) else text + "."
 

@@ -16,12 +16,17 @@ from .cells import Block, Cell, CellError, Value
 from .declaration import Reader, Role
 from .frame import Upright
 from .kinds import Kind
-from .limits import Limit
+from .limits import NOT_NEGATIVE, Limit
 from .numbers import split_quantity
 from .units import factor
 
 Array = NDArray[np.float64]
 TURN: Final = 2.0 * math.pi
+
+
+def folded(word: str) -> str:
+    """Return a word as it is compared: lower case, single blanks, US spelling."""
+    return " ".join(word.replace("_", " ").split()).casefold().replace("centre", "center")
 
 
 def shown(cell: object) -> str:
@@ -255,18 +260,28 @@ def quantity_parts(argument: str, kind: Kind, text: str, where: str) -> tuple[fl
 
 @dataclass(frozen=True, slots=True)
 class Vector:
-    """A vector in x y or x y z, or n of them: (2,), (3,), (n, 2) or (n, 3)."""
+    """A vector in x y or x y z, or n of them: (2,), (3,), (n, 2) or (n, 3).
+
+    `words` are read in place of numbers and given as they stand, like 'origin'.
+    """
 
     kind: Kind
+    words_for: tuple[str, ...] = ()
     role: Role = Role.VECTOR
 
     def reader(self, argument: str, limit: Limit | None) -> Reader:
         kind = self.kind
+        known = {folded(w): w for w in self.words_for}
         rule = f"{asked(kind)} vector: x y or x y z in two or three cells, then the unit"
 
-        def read(cell: Cell) -> Array:
+        if known:
+            rule += ", or " + " / ".join(f"'{w}'" for w in self.words_for)
+
+        def read(cell: Cell) -> Array | str:
             if type(cell) is list:
                 return vectors(argument, kind, cell, rule)
+            if known and type(cell) is str and folded(cell) in known:
+                return known[folded(cell)]
             if type(cell) is str and cell.lstrip().startswith("("):
                 return vector_text(argument, kind, cell, rule)
             if type(cell) is float:
@@ -276,7 +291,8 @@ class Vector:
         return read
 
     def words(self) -> str:
-        return f"{self.kind.name} vector [{self.kind.si}], x y or x y z"
+        also = "".join(f" / {w}" for w in self.words_for)
+        return f"{self.kind.name} vector [{self.kind.si}], x y or x y z{also}"
 
     def sample(self) -> Cell:
         return [[0.3, -0.4, 0.5]]
@@ -417,6 +433,44 @@ def parts_with_units(argument: str, kind: Kind, cells: Sequence[Value], units: S
             raise wrong(argument, f"a number in {u}", c, where=where)
         out[i] = c * unit_factor(argument, kind, u, where)
     return out
+
+
+@dataclass(frozen=True, slots=True)
+class Offset:
+    """A distance (or a column of them), or a vector x y / x y z: float, (n,), (2,), (3,)."""
+
+    kind: Kind
+    role: Role = Role.OTHER
+
+    def reader(self, argument: str, limit: Limit | None) -> Reader:
+        kind = self.kind
+        distance = Scalar(kind).reader(argument, NOT_NEGATIVE)
+        vector = Vector(kind).reader(argument, limit)
+
+        def read(cell: Cell) -> float | Array:
+            if type(cell) is list:
+                rows, columns = len(cell), len(cell[0])
+                plain = all(type(c) is float for row in cell for c in row[:2])
+                if columns > 1 and (rows > 1 or columns > 2 or plain):
+                    return lifted(vector(cell))
+            elif type(cell) is str and cell.lstrip().startswith("("):
+                return lifted(vector(cell))
+            return distance(cell)  # type: ignore[no-any-return]
+
+        return read
+
+    def words(self) -> str:
+        return f"{self.kind.name} [{self.kind.si}], a distance or x y z"
+
+    def sample(self) -> Cell:
+        return [[0.3, -0.4, 0.5]]
+
+
+def lifted(vector: Array) -> Array:
+    """Return a vector or rows of vectors with z = 0 where only x y was given."""
+    if vector.shape[-1] == 3:
+        return vector
+    return np.concatenate((vector, np.zeros((*vector.shape[:-1], 1))), axis=-1)
 
 
 @dataclass(frozen=True, slots=True)

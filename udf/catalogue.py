@@ -9,7 +9,7 @@ from typing import Final
 from ..core.errors import AbsentError
 from .compiling import Compiled
 from .declaration import CellFunction
-from .functions import asking, forces, motion, review, units
+from .functions import asking, forces, mass, motion, reactions, review, units
 from .words import hint
 
 
@@ -27,8 +27,10 @@ FUNCTIONS: Final = MappingProxyType(
         f.name: f
         for f in (
             *units.FUNCTIONS,
+            *mass.FUNCTIONS,
             *motion.FUNCTIONS,
             *forces.FUNCTIONS,
+            *reactions.FUNCTIONS,
             *review.FUNCTIONS,
             *asking.functions(find),
         )

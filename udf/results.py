@@ -7,11 +7,12 @@ from typing import Any, Final
 import numpy as np
 
 from ..core.errors import AbsentError, InputError, PhysicsError
+from .arguments import folded
 from .cells import Answer
 from .declaration import Field, Form, Result, Row
 from .kinds import Kind
 from .units import factor
-from .words import folded, hint
+from .words import hint
 
 ALL: Final = "all"
 
@@ -83,6 +84,9 @@ class Expression:
             return open_rows(answer, what, unit)
         field = self.chosen(what)
         if field is None:
+            problem = getattr(answer, "record_problem", "")
+            if problem:
+                raise InputError("what", problem)
             return record(
                 [Row(f.name, attribute(answer, f.name), f.kind) for f in self.result.fields if f.in_record]
             )

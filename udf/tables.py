@@ -14,6 +14,7 @@ from ..core.errors import InputError, RigidsheetError
 from .arguments import (
     asked,
     check_limit,
+    folded,
     is_unit_text,
     quantity,
     shown,
@@ -24,7 +25,7 @@ from .cells import Block, Cell, Value
 from .declaration import Reader, Role, Shape
 from .kinds import Kind
 from .limits import Limit
-from .words import folded, hint, nearest
+from .words import hint, nearest
 
 HEADER: Final = re.compile(r"\s*(.*?)\s*(?:\[\s*(.*?)\s*\])?\s*\Z")
 TOTAL: Final = re.compile(r"(grand |sub)?-?\s*(total|sum)s?\b[\s:=]*\Z", re.IGNORECASE)
@@ -57,6 +58,15 @@ class TableData:
     def __len__(self) -> int:
         return len(self.rows)
 
+    def only(self, indices: Sequence[int]) -> TableData:
+        """Return the table with some of its lines."""
+        columns = {
+            k: v[list(indices)] if isinstance(v, np.ndarray) else [v[i] for i in indices]
+            for k, v in self.columns.items()
+        }
+        labels = tuple(self.labels[i] for i in indices) if self.labels else ()
+        return TableData(columns, tuple(self.rows[i] for i in indices), labels)
+
     def where(self, index: int) -> str:
         """Name a line in a refusal: its row of the block and what it is called."""
         label = self.labels[index] if self.labels else ""
@@ -85,6 +95,7 @@ class Table:
     what: str  # 'parts list', 'loads', ...
     example: tuple[tuple[Value, ...], ...]
     none_word: bool = False  # the word 'none' stands for no rows
+    more: Mapping[str, Column] = field(default_factory=dict)  # further columns by their exact label
     role: Role = Role.OTHER
 
     def reader(self, argument: str, limit: Limit | None) -> Reader:
@@ -154,9 +165,9 @@ class Table:
                     where="row 1",
                 )
             label, unit = HEADER.match(head).groups()  # type: ignore[union-attr]
-            c = known.get(folded(label))
+            c = known.get(folded(label)) or self._further(label)
             if c is None:
-                close = nearest(label, [n for k in self.columns for n in (k.label, *k.also)])
+                close = nearest(label, [*(n for k in self.columns for n in (k.label, *k.also)), *self.more])
                 if close is not None:
                     raise InputError(
                         argument,
@@ -182,6 +193,13 @@ class Table:
                 where="row 1",
             )
         return heads
+
+    def _further(self, label: str) -> Column | None:
+        """Return a further column by its exact label, or by the only one that differs in case."""
+        if label in self.more:
+            return self.more[label]
+        loose = [c for n, c in self.more.items() if folded(n) == folded(label)]
+        return loose[0] if len(loose) == 1 else None
 
     def _column(
         self, argument: str, c: Column, unit: str | None, cells: Sequence[Value], data: TableData

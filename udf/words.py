@@ -10,16 +10,11 @@ from typing import Any, Final
 import numpy as np
 
 from ..core.errors import InputError
-from .arguments import is_unit_text, shown, wrong
+from .arguments import folded, is_unit_text, shown, wrong
 from .cells import Cell, Value
 from .declaration import Reader, Role
 from .limits import Limit
 from .numbers import split_quantity
-
-
-def folded(word: str) -> str:
-    """Return a word as it is compared: lower case, single blanks, US spelling, no bracketed tail."""
-    return " ".join(word.replace("_", " ").split()).casefold().replace("centre", "center")
 
 
 def nearest(word: str, known: Iterable[str]) -> str | None:
