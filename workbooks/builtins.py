@@ -23,3 +23,33 @@ ELEMENT_FUNCTIONS: Final = frozenset(
     | {"FIND", "SEARCH", "SUBSTITUTE", "REPLACE", "REPT", "EXACT", "CHAR", "CODE", "CLEAN", "FIXED"}
     | {"DATE", "YEAR", "MONTH", "DAY", "HOUR", "MINUTE", "SECOND", "WEEKDAY", "TIME", "CONVERT", "N", "T"}
 )
+
+# Functions of single values that the engine works out for each cell of a block, as tried one by one.
+BLOCKWISE_FUNCTIONS: Final = frozenset(
+    {"ATAN2", "CODE", "COS", "FIND", "ISBLANK", "ISERR", "ISERROR", "ISLOGICAL", "ISNA", "ISTEXT"}
+    | {"LEFT", "LEN", "MID", "SEARCH", "SIN", "T", "TAN"}
+)
+
+# The engine takes only the first cell of a block here, though a spreadsheet would go on with all of them.
+SINGLE_FUNCTIONS: Final = frozenset({"ROW", "COLUMN", "ISEVEN", "ISODD", "CONCATENATE"})
+
+# Known to the engine by name, but not in every form, or with another meaning.
+WEAK_FUNCTIONS: Final = frozenset(
+    {"AGGREGATE", "ANCHORARRAY", "BYCOL", "BYROW", "CELL", "LAMBDA", "MAKEARRAY", "MAP", "REDUCE", "SCAN"}
+)
+
+# Built-ins whose results are compared with values from outside; a test compares this list with its table.
+VERIFIED_FUNCTIONS: Final = frozenset(
+    {"ABS", "ACOS", "AND", "ASIN", "ATAN", "ATAN2", "AVERAGE", "CEILING"}
+    | {"CHOOSE", "COLUMN", "COLUMNS", "CONCATENATE", "COS", "COSH", "COUNT", "COUNTA"}
+    | {"COUNTBLANK", "COUNTIF", "DATE", "DEGREES", "EXACT", "EXP", "FALSE", "FIND"}
+    | {"FLOOR", "HLOOKUP", "IF", "IFERROR", "IFNA", "INDEX", "INDIRECT", "INT"}
+    | {"ISBLANK", "ISERROR", "ISNA", "ISNUMBER", "ISTEXT", "LARGE", "LEFT", "LEN"}
+    | {"LN", "LOG", "LOG10", "LOOKUP", "MATCH", "MAX", "MEDIAN", "MID"}
+    | {"MIN", "MOD", "N", "NA", "NOT", "OFFSET", "OR", "PI"}
+    | {"POWER", "PRODUCT", "RADIANS", "REPT", "RIGHT", "ROUND", "ROUNDDOWN", "ROUNDUP"}
+    | {"ROW", "ROWS", "SEARCH", "SIGN", "SIN", "SINH", "SMALL", "SQRT"}
+    | {"STDEV", "SUBSTITUTE", "SUM", "SUMIF", "SUMIFS", "SUMPRODUCT", "SUMSQ", "TAN"}
+    | {"TANH", "TEXT", "TRIM", "TRUE", "TRUNC", "UPPER", "VALUE", "VLOOKUP"}
+    | {"XOR", "YEAR"}
+)

@@ -7,8 +7,9 @@ from dataclasses import dataclass
 from typing import Final
 
 from .addresses import Area, cell_name, size
+from .builtins import VERIFIED_FUNCTIONS
 from .errors import address
-from .formulas import Argument, Call
+from .formulas import Analysis, Argument, Call
 from .quantities import is_si_unit, quantity
 from .reading import Reading
 from .sheetxml import FormulaCell
@@ -53,6 +54,7 @@ class _Search:
         self.unit_position = unit_position
         self.reading = reading
         self.prepared = reading.prepared
+        self.reported: set[str] = set()
         self.tabs = [sheet.name for sheet in reading.prepared.sheets]
         self.units: dict[tuple[int, str], str] = {}  # cells whose number is in a unit that is not SI
 
@@ -65,11 +67,23 @@ class _Search:
             if not formula.text:
                 ref = self.prepared.masters[number, formula.rule.get("si", "")]
             master = self.prepared.analyses[number, ref]
+            yield from self._unverified(sheet.name, formula, master)
             calls = bool(master.calls)
             if calls and (self.units or dates or master.nested):
                 yield from self._calls(number, sheet.name, formula, dates)
             if master.collected:
                 yield from self._skipped(number, sheet.name, formula, seen)
+
+    def _unverified(self, sheet: str, formula: FormulaCell, analysis: Analysis) -> Iterator[Caution]:
+        for function in analysis.functions:
+            if function not in VERIFIED_FUNCTIONS and function not in self.reported:
+                self.reported.add(function)
+                yield Caution(
+                    "function",
+                    f"{address(sheet, formula.ref)} calls {function}, which is worked out here but has not "
+                    "been compared with a spreadsheet program's value.",
+                    ((sheet, formula.ref),),
+                )
 
     def _non_si_results(self) -> None:
         for number, _, formula in self.prepared.formulas():

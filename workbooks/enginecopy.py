@@ -13,6 +13,7 @@ from xml.sax.saxutils import escape, quoteattr
 
 from .addresses import Area, area, cell_name, size
 from .book import Book, DefinedName
+from .builtins import WEAK_FUNCTIONS
 from .calls import FIT
 from .engine import Engine
 from .errors import FormulaRefused, UnknownFunction
@@ -141,34 +142,35 @@ class Preparation:
     def _check(self, sheet: Sheet, formula: FormulaCell, analysis: Analysis, *, plain: bool) -> None:
         for function in analysis.functions:
             if function not in self.checked:
+                if function in WEAK_FUNCTIONS:
+                    raise self._refused(sheet, formula, f"the engine does not offer {function} in every form")
                 if not self.engine.knows(function):
                     raise self._unknown(sheet, formula, function)
                 self.checked.add(function)
         if analysis.refusal:
             raise self._refused(sheet, formula, analysis.refusal)
-        for where, reference, single in analysis.references:
+        for where, reference, single, element in analysis.references:
             if where and sheet_of(where).lower() not in self.tabs:
                 raise self._refused(sheet, formula, f"there is no sheet called {sheet_of(where)!r}")
-            if plain and single and ":" in reference:
-                raise self._refused(
-                    sheet,
-                    formula,
-                    f"the range {reference} stands where one value is needed",
-                    "Pick one cell, use SUMPRODUCT or an array formula",
-                )
-        for where, name, single in analysis.names:
+            if ":" in reference:
+                self._block(sheet, formula, reference, element, single=plain and single)
+        for where, name, single, element in analysis.names:
             target = self._area_of(sheet, formula, where, name)
-            if plain and single and target is not None and size(target) != (1, 1):
-                raise self._refused(
-                    sheet,
-                    formula,
-                    f"the range {name} stands where one value is needed",
-                    "Pick one cell, use SUMPRODUCT or an array formula",
-                )
+            if target is not None and size(target) != (1, 1):
+                self._block(sheet, formula, name, element, single=plain and single)
         for call in analysis.calls:
             self.prepared.used.add(call.name)
         for _, _, call in analysis.nested:
             self.prepared.used.add(call.name)
+
+    def _block(self, sheet: Sheet, formula: FormulaCell, text: str, element: str, *, single: bool) -> None:
+        """Refuse a range where a spreadsheet would take the cell of its own row, or where the engine errs."""
+        if single:
+            reason = f"the range {text} stands where one value is needed"
+            raise self._refused(sheet, formula, reason, "Pick one cell, use SUMPRODUCT or an array formula")
+        if element:
+            reason = f"the engine cannot work out {element} for each cell of {text}"
+            raise self._refused(sheet, formula, reason, "Work it out in a column of its own")
 
     def _unknown(self, sheet: Sheet, formula: FormulaCell, function: str) -> UnknownFunction:
         pool = list(self.ours) if function.startswith("RB") else [*self.ours, *_COMMON]

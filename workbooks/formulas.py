@@ -5,10 +5,16 @@ from __future__ import annotations
 import re
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass, field
-from typing import Final, TypeAlias
+from typing import Final, NamedTuple, TypeAlias
 
 from .addresses import COLUMNS, ROWS, column_letters, column_number
-from .builtins import ARRAY_FUNCTIONS, ELEMENT_FUNCTIONS, PASSING_FUNCTIONS
+from .builtins import (
+    ARRAY_FUNCTIONS,
+    BLOCKWISE_FUNCTIONS,
+    ELEMENT_FUNCTIONS,
+    PASSING_FUNCTIONS,
+    SINGLE_FUNCTIONS,
+)
 
 # A function name as the file spells it -> the name of one of our functions, or None.
 Resolver: TypeAlias = Callable[[str], str | None]
@@ -55,13 +61,22 @@ class Call:
     arguments: list[Argument] = field(default_factory=list)
 
 
+class Use(NamedTuple):
+    """One appearance of a reference or a name."""
+
+    where: str  # the sheet prefix as it stands, with its exclamation mark; empty for the own sheet
+    text: str
+    single: bool  # where one value is needed, in a formula that is no array formula
+    element: str  # the function that would have to be worked out cell by cell, and that the engine cannot
+
+
 @dataclass(slots=True)
 class Analysis:
     """What one formula text uses."""
 
     functions: list[str] = field(default_factory=list)  # built-in or unknown names, upper case, no prefix
-    names: list[tuple[str, str, bool]] = field(default_factory=list)  # sheet prefix, name, used as scalar
-    references: list[tuple[str, str, bool]] = field(default_factory=list)  # the same with the address
+    names: list[Use] = field(default_factory=list)
+    references: list[Use] = field(default_factory=list)
     collected: list[tuple[str, str]] = field(default_factory=list)  # ranges inside SUM and its like
     calls: list[Call] = field(default_factory=list)  # outermost calls of our functions
     nested: list[tuple[Call, int, Call]] = field(default_factory=list)  # outer call, argument, inner call
@@ -117,7 +132,7 @@ class _Reader:
         self.frames = [_Frame("", None, False, True, "")]
         self.value = False  # the token before ends a value
         self.operator = False  # the token before is an operator that takes single values
-        self.last_block: tuple[list[tuple[str, str, bool]], int] | None = None
+        self.last_block: tuple[list[Use], int] | None = None
 
     def read(self, text: str) -> Analysis:
         for token in _TOKEN.finditer(text):
@@ -195,7 +210,7 @@ class _Reader:
                 where, text = "", target
             elif where:
                 self._check_where(where)
-            entry = (where, target, self._scalar_use())
+            entry = Use(where, target, self._scalar_use(), self._element())
             if kind == "ref":
                 self.result.references.append(entry)
                 block = (self.result.references, len(self.result.references) - 1)
@@ -216,6 +231,8 @@ class _Reader:
             self._argument("text", text[1:-1].replace('""', '"'))
         else:
             self._argument("other")
+            if kind == "array" and self._element():
+                self._refuse(f"the engine cannot work out {self._element()} for each cell of a block")
             if kind == "error" and where:
                 text = token["error"]
         self.output.append(text)
@@ -229,6 +246,18 @@ class _Reader:
             return False
         chooses = frame.index == 0 and frame.function in _CHOOSING
         return self.operator or frame.scalar or chooses
+
+    def _element(self) -> str:
+        """Return the function that a block standing here would be worked out through, if the engine can't."""
+        for frame in reversed(self.frames):
+            if frame.function == "CHOOSE" and frame.index == 0:
+                return "CHOOSE"
+            if not frame.function or frame.function in PASSING_FUNCTIONS:
+                continue
+            if frame.function in BLOCKWISE_FUNCTIONS:
+                continue
+            return frame.function if frame.function in ELEMENT_FUNCTIONS | SINGLE_FUNCTIONS else ""
+        return ""
 
     def _check_where(self, where: str) -> None:
         inner = where[:-1].strip("'")
@@ -281,7 +310,7 @@ class _Reader:
         self._argument("other")
         if not frame.arrays and self.last_block is not None:
             entries, index = self.last_block
-            entries[index] = (*entries[index][:2], True)
+            entries[index] = entries[index]._replace(single=True)
         self.output.append(sign)
         self.operator = sign != "%"
         self.value = sign == "%"

@@ -223,6 +223,8 @@ class _Run:
         columns = size(frame)[1]
         for i, ref in enumerate(frame_cells(frame)):
             value = loaded.value(sheet.name, top + i // columns, left + i % columns)
+            if value is None and i and isinstance(self.results[number, formula.ref], CellError):
+                value = self.results[number, formula.ref]  # the engine puts an error into the anchor only
             self.results[number, ref] = self._lawful(sheet, formula, value)
 
     def _lawful(self, sheet: Sheet, formula: FormulaCell, value: Value) -> Value:

@@ -110,8 +110,8 @@ class Report:
     def _source(self, number: int, formula: FormulaCell, value: CellError) -> tuple[int, str] | None:
         """Return the first cell that the formula refers to and that shows the same error."""
         analysis = self.reading.formula(number, formula)[1]
-        entries = [("ref", *entry[:2]) for entry in analysis.references]
-        entries += [("name", *entry[:2]) for entry in analysis.names]
+        entries = [("ref", use.where, use.text) for use in analysis.references]
+        entries += [("name", use.where, use.text) for use in analysis.names]
         for kind, where, text in entries:
             place = self.reading.place_of(number, kind, where, text)
             if place is None:
