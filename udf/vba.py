@@ -34,18 +34,18 @@ def words(text: str) -> frozenset[str]:
 # Words the language keeps for itself; as the name of an argument they stop the module from compiling.
 RESERVED: Final = words(
     """
-    abs addressof and any array as attribute boolean byref byte byval call case cbool cbyte ccur cdate cdbl
-    cdec cdecl cint circle clng clnglng clngptr close const csng cstr currency cvar cverr date debug decimal
-    declare defbool defbyte defcur defdate defdbl defdec defint deflng deflnglng deflngptr defobj defsng
-    defstr defvar dim do doevents double each else elseif empty end endif enum eqv erase event exit false fix for
-    friend function get global gosub goto if imp implements in input inputb int integer is lbound len lenb let like
-    lineinput lock long longlong longptr loop lset me mod new next not nothing null on open option optional or
-    paramarray preserve print private pset public put raiseevent redim rem resume return rset scale seek
-    select set sgn shared single spc static stop string sub tab then to true type typeof ubound unlock until variant
-    vb_base vb_control vb_creatable vb_customizable vb_description vb_exposed vb_ext_key vb_globalnamespace
-    vb_helpid vb_invoke_func vb_invoke_property vb_invoke_propertyput vb_invoke_propertyputref vb_memberflags
-    vb_name vb_predeclaredid vb_procdata vb_templatederived vb_usermemid vb_varhelpid vb_varusermemid
-    wend while with withevents write xor
+    abs addressof and any array as attribute boolean byref byte byval call case cbool cbyte ccur cdate
+    cdbl cdec cdecl cint circle clng clnglng clngptr close const csng cstr currency cvar cverr date debug
+    decimal declare defbool defbyte defcur defdate defdbl defdec defint deflng deflnglng deflngptr defobj
+    defsng defstr defvar dim do doevents double each else elseif empty end endif enum eqv erase event exit
+    false fix for friend function get global gosub goto if imp implements in input inputb int integer is
+    lbound len lenb let like lineinput lock long longlong longptr loop lset me mod new next not nothing
+    null on open option optional or paramarray preserve print private pset public put raiseevent redim rem
+    resume return rset scale seek select set sgn shared single spc static stop string sub tab then to true
+    type typeof ubound unlock until variant vb_base vb_control vb_creatable vb_customizable vb_description
+    vb_exposed vb_ext_key vb_globalnamespace vb_helpid vb_invoke_func vb_invoke_property
+    vb_invoke_propertyput vb_invoke_propertyputref vb_memberflags vb_name vb_predeclaredid vb_procdata
+    vb_templatederived vb_usermemid vb_varhelpid vb_varusermemid wend while with withevents write xor
     """
 )
 # Words that mean something in some places only: legal, and not worth the risk.
@@ -86,25 +86,29 @@ Private Function RbAnswer(ByVal functionName As String, ByVal given As Variant) 
     Else
         Set book = ThisWorkbook
     End If
-    RbAnswer = RbErrors(XLPy.CallUDF(RbModule, functionName, given, book, Application.Caller))
+    RbAnswer = RbErrors(XLPy.CallUDF(RbModule, functionName, RbCells(given), book, Application.Caller))
     Exit Function
 failed:
     RbAnswer = CVErr(2015)
 End Function
 
-' What an argument holds. Value2 gives dates and money as the plain numbers that stand in the cells.
+' What the arguments hold. Value2 gives dates and money as the plain numbers that stand in the cells.
+' An argument that was left out is not touched: it stays marked as such.
 Private Function RbCells(ByVal given As Variant) As Variant
-    If IsObject(given) Then
-        If TypeName(given) <> "Range" Then
-            RbCells = CVErr(2015)
-        ElseIf given.Areas.Count > 1 Then
-            RbCells = CVErr(2015)
-        Else
-            RbCells = given.Value2
+    Dim block As Object, i As Long
+    For i = LBound(given) To UBound(given)
+        If IsObject(given(i)) Then
+            Set block = given(i)
+            If TypeName(block) <> "Range" Then
+                given(i) = CVErr(2015)
+            ElseIf block.Areas.Count > 1 Then
+                given(i) = CVErr(2015)
+            Else
+                given(i) = block.Value2
+            End If
         End If
-    Else
-        RbCells = given
-    End If
+    Next i
+    RbCells = given
 End Function
 
 ' Turns every error text in an answer, single or array, into the error itself.
@@ -231,18 +235,21 @@ def wrapper(f: CellFunction) -> Iterator[str]:
     """Give the lines of the worksheet function."""
     arguments = arguments_of(f)
     yield f"Public Function {f.name}({', '.join(map(parameter, arguments))}) As Variant"
-    plain = [f"RbCells({a.name})" for a in arguments if not isinstance(a.shape, Rest)]
+    plain = [a.name for a in arguments if not isinstance(a.shape, Rest)]
     if len(plain) == len(arguments):
         yield f'    {f.name} = RbAnswer("{f.name}", Array({", ".join(plain)}))'
     else:
         # the variable part always comes last; its upper bound is -1 when nothing was given
         rest = arguments[-1].name
         yield "    Dim rbGiven() As Variant, rbI As Long"
-        yield f"    ReDim rbGiven(0 To UBound({rest}) + {len(plain)})"
-        for i, p in enumerate(plain):
-            yield f"    rbGiven({i}) = {p}"
+        yield f"    rbGiven = Array({', '.join(plain)})"
+        yield f"    ReDim Preserve rbGiven(0 To UBound({rest}) + {len(plain)})"
         yield f"    For rbI = 0 To UBound({rest})"
-        yield f"        rbGiven(rbI + {len(plain)}) = RbCells({rest}(rbI))"
+        yield f"        If IsObject({rest}(rbI)) Then"
+        yield f"            Set rbGiven(rbI + {len(plain)}) = {rest}(rbI)"
+        yield "        Else"
+        yield f"            rbGiven(rbI + {len(plain)}) = {rest}(rbI)"
+        yield "        End If"
         yield "    Next rbI"
         yield f'    {f.name} = RbAnswer("{f.name}", rbGiven)'
     yield "End Function"

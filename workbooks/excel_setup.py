@@ -28,10 +28,11 @@ rigidsheet and carries the calls from Excel to Python. You copy no code by
 hand, and you need not switch on "Trust access to the VBA project object
 model".
 
-This folder holds
-  {module}   the functions, as Excel takes them in
-  {configuration}   two or three lines that tell xlwings which Python to use
-  {steps}   this text
+This folder holds, beside this text,
+  {module}
+      the functions, as Excel takes them in
+  {configuration}
+      two or three lines that tell xlwings which Python to use
 
 A. Once on this computer
 ------------------------
@@ -46,9 +47,10 @@ A. Once on this computer
 {lines}
     If you use xlwings for nothing else, make it so: change a line that has
     the same first word, add one that is missing, leave all others alone.
-    If you do use xlwings for other work, leave that file as it is and put
+    If you do use xlwings for other work, leave that file as it is. Put
     {configuration} into the folder of your calculation sheets, under the
-    name xlwings.conf. There it counts for the workbooks of that folder.
+    name xlwings.conf: there it counts for the workbooks of that folder. If
+    the folder has such a file already, add the lines to it by hand.
 {python_note}
 B. Make the add-in of the functions
 -----------------------------------
@@ -184,7 +186,7 @@ def write_setup(folder: Path) -> list[Path]:
     lines = configuration(os.environ, sys.executable, sys.prefix, windows)
     module = write_new(folder, MODULE_FILE, vba.module_text(version("rigidsheet")).encode("ascii"))
     conf = write_new(folder, CONFIGURATION_FILE, configuration_bytes(lines))
-    names = {"module": module.name, "configuration": conf.name, "steps": STEPS_FILE}
+    names = {"module": module.name, "configuration": conf.name}
     text = steps(lines, windows, names)
     return [module, conf, write_new(folder, STEPS_FILE, windows_text(text))]
 
