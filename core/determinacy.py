@@ -17,7 +17,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from .errors import PhysicsError
-from .supports import SHEET_AXES, Hold
+from .supports import SHEET_AXES, Hold, short_name
 from .triples import Triple, add, crossed, dotted, less, scaled, size, triple
 
 Array = NDArray[np.float64]
@@ -28,6 +28,8 @@ SINGULAR: Final = 1e-9
 LARGEST_CONDITION: Final = 1e6
 # A support takes part in a self-balanced set of reactions when its share is above rounding.
 PART_OF_IT: Final = 1e-6
+# A list of supports and components longer than this leaves out the components, to fit a cell's text.
+LONGEST_LIST: Final = 110
 # Rows of the six balance equations that planar work uses.
 PLANAR_ROWS: Final = (0, 1, 5)
 AXIS_NAMES: Final = ("x", "y", "z")
@@ -128,7 +130,7 @@ def _left_free(equations: Equations, left: Array, right: Array, rank: int) -> Ph
     text = f"{lines}, so the body is" if lines else "The supports leave the body"
     text += f" free to {motion}" + (f" (one of {ways} free motions)" if ways > 1 else "")
     if not lines and rank < unknowns:
-        text += f", while {_joined(_fighting(equations, right[rank:]))} share a load in no definite way"
+        text += f", while {_fighting(equations, right[rank:])} share a load in no definite way"
     turns = motion.startswith("rotate") and not equations.motions
     return PhysicsError(
         "", text, remedy="Add a support or a drive, or ask for alpha" if turns else "Add a support"
@@ -169,7 +171,7 @@ def _lines_of_action(equations: Equations, free: Array) -> str:
     holds = equations.holds
     if not equations.planar or free.shape[1] != 1 or len(holds) < 3 or any(hold.couple for hold in holds):
         return ""
-    names = _joined(list(dict.fromkeys(_short(hold.support) for hold in holds)))
+    names = _joined(list(dict.fromkeys(short_name(hold.support) for hold in holds)))
     velocity, omega = _twist(equations, free[:, 0])
     if abs(omega[2]) * equations.length <= 1e-6 * size(velocity):
         return f"The lines of action of {names} are parallel"
@@ -212,17 +214,17 @@ def _named_motions(equations: Equations) -> list[tuple[str, Triple, Triple]]:
     points = {hold.support: hold.point for hold in equations.holds}
     if equations.planar:
         return named + [
-            (f"rotate about support {_short(name)}", *_turn_about(equations, point, SHEET_AXES[2]))
+            (f"rotate about support {short_name(name)}", *_turn_about(equations, point, SHEET_AXES[2]))
             for name, point in points.items()
         ]
     for (first, start), (second, end) in combinations(points.items(), 2):
         line = less(end, start)
         if size(line) > 1e-9 * equations.length:
-            about = f"rotate about the line through supports {_short(first)} and {_short(second)}"
+            about = f"rotate about the line through supports {short_name(first)} and {short_name(second)}"
             named.append((about, *_turn_about(equations, start, scaled(1.0 / size(line), line))))
     for name, point in points.items():
         for axis, label in zip(SHEET_AXES, AXIS_NAMES, strict=True):
-            about = f"rotate about support {_short(name)}, axis along {label}"
+            about = f"rotate about support {short_name(name)}, axis along {label}"
             named.append((about, *_turn_about(equations, point, axis)))
     return named
 
@@ -245,7 +247,8 @@ def _general_motion(equations: Equations, velocity: Triple, omega: Triple) -> st
     if equations.planar:
         return f"rotate about {_place(equations, point)}"
     advance = dotted(velocity, omega) / dotted(omega, omega)
-    verb = "rotate" if abs(advance) <= 1e-6 * equations.length else "move as a screw"
+    screw = f"move as a screw of {advance:.4g} m/rad"
+    verb = "rotate" if abs(advance) <= 1e-6 * equations.length else screw
     return f"{verb} about the axis through {_place(equations, point)} along {_direction(omega)}"
 
 
@@ -263,14 +266,15 @@ def _place(equations: Equations, point: Triple) -> str:
     return "(" + ", ".join(f"{0.0 if abs(part) < floor else part:.4g}" for part in parts) + ") m"
 
 
-def _fighting(equations: Equations, null: Array) -> list[str]:
-    """Return the supports, with components, whose reactions can balance each other without any load."""
+def _fighting(equations: Equations, null: Array) -> str:
+    """Return the supports whose reactions can balance each other without any load, with their components."""
     share = np.sqrt((null * null).sum(axis=0))
     parts: dict[str, list[str]] = {}
     for hold, part in zip(equations.holds, share[: len(equations.holds)], strict=True):
         if part > PART_OF_IT:
             parts.setdefault(hold.support, []).append(hold.component)
-    return [f"{_short(name)} ({', '.join(components)})" for name, components in parts.items()]
+    text = _joined([f"{short_name(name)} ({', '.join(components)})" for name, components in parts.items()])
+    return text if len(text) <= LONGEST_LIST else _joined([short_name(name) for name in parts])
 
 
 def _too_many(equations: Equations, null: Array) -> PhysicsError:
@@ -281,15 +285,10 @@ def _too_many(equations: Equations, null: Array) -> PhysicsError:
             text = f"{name} cannot be unknown: the supports hold the body against it"
             return PhysicsError("", text, remedy="Give its value, or free the supports")
     text = (
-        f"Too many supports by {len(null)}: {_joined(_fighting(equations, null))} work against each other, "
+        f"Too many supports by {len(null)}: {_fighting(equations, null)} work against each other, "
         "so their share depends on stiffness"
     )
     return PhysicsError("", text, remedy="Free one, for example a pin to a slot")
-
-
-def _short(name: str) -> str:
-    """Return a support's name at a length that leaves room for the sentence."""
-    return name if len(name) <= 20 else name[:17] + "..."
 
 
 def _joined(names: Sequence[str]) -> str:

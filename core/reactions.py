@@ -19,7 +19,7 @@ from .determinacy import PLANAR_ROWS, Equations, factorised
 from .errors import InputError, PhysicsError
 from .plain_balance import PlainBalance, plain_balance
 from .states import Loads, Motion
-from .supports import Hold
+from .supports import Hold, short_name
 from .triples import ZERO, Triple, add, crossed, less, scale_of, scaled, size
 
 Array = NDArray[np.float64]
@@ -306,11 +306,11 @@ def _check_one_sided(reactions: Sequence[Reaction], scale: float) -> None:
     worst = min(against, key=lambda reaction: reaction.value)
     way, other = ("push", "pull") if worst.hold.one_sided == "push" else ("pull", "push")
     fate = "the body lifts off there" if way == "push" else "it goes slack"
-    others = [reaction.support for reaction in against if reaction is not worst]
-    also = f"; the same holds for {', '.join(others[:4])}" if others else ""
+    others = [short_name(reaction.support) for reaction in against if reaction is not worst]
+    also = f"; the same holds for {', '.join(others[:3])}" if others else ""
     raise PhysicsError(
         "",
-        f"Support {worst.support} can only {way}, but the balance needs it to {other} with "
+        f"Support {short_name(worst.support)} can only {way}, but the balance needs it to {other} with "
         f"{-worst.value:.6g} N: {fate}{also}",
         remedy="Use slot if it holds both ways, else leave it out" if way == "push" else "",
     )

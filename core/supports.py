@@ -72,6 +72,30 @@ class Hold:
     one_sided: str = ""
 
 
+def short_name(name: str) -> str:
+    """Return a support's name at a length that leaves room for a sentence.
+
+    Parameters
+    ----------
+    name : str
+        Name of the support.
+
+    Returns
+    -------
+    str
+        The name, its middle left out when it has more than 20 characters.
+
+    Notes
+    -----
+    Both ends stay, as names often differ in the last word or number only.
+
+    References
+    ----------
+    None needed.
+    """
+    return name if len(name) <= 20 else f"{name[:8]}...{name[-9:]}"
+
+
 def planar_support(
     name: str,
     kind: str,
@@ -116,7 +140,9 @@ def planar_support(
     two-dimensional analysis.
     """
     if kind not in PLANAR_KINDS:
-        raise InputError("kind", "one of " + ", ".join(PLANAR_KINDS), kind, where=f"support {name}")
+        raise InputError(
+            "kind", "one of " + ", ".join(PLANAR_KINDS), kind, where=f"support {short_name(name)}"
+        )
     at = _point(point, name)
     if kind in ("roller", "slot", "cable", "link"):
         along = _planar_direction(name, kind, at, angle, to)
@@ -124,7 +150,7 @@ def planar_support(
         return (Hold(name, label, along, at, False, ONE_SIDED.get(kind, "")),)
     if angle is not None or to is not None:
         given = "angle" if angle is not None else "to"
-        raise InputError(given, f"left out, as a {kind} has none", where=f"support {name}")
+        raise InputError(given, f"left out, as a {kind} has none", where=f"support {short_name(name)}")
     forces = (Hold(name, "fx", X, at), Hold(name, "fy", Y, at))
     couple = Hold(name, "mz", Z, at, True)
     if kind == "pin":
@@ -136,7 +162,7 @@ def _planar_direction(
     name: str, kind: str, at: Triple, angle: float | None, to: Sequence[float] | Array | None
 ) -> Triple:
     """Return the direction of a force from its angle or from its far end."""
-    where = f"support {name}"
+    where = f"support {short_name(name)}"
     if to is not None and kind in ("roller", "slot"):
         raise InputError("to", f"left out, as a {kind} has no far end", remedy="Give `angle`", where=where)
     if angle is not None and kind == "link":
@@ -206,7 +232,7 @@ def spatial_support(
     J. L. Meriam, L. G. Kraige, Engineering Mechanics: Statics, modeling the action of forces in
     three-dimensional analysis.
     """
-    where = f"support {name}"
+    where = f"support {short_name(name)}"
     if kind not in SPATIAL_KINDS:
         raise InputError("kind", "one of " + ", ".join(SPATIAL_KINDS), kind, where=where)
     at = _point(point, name)
@@ -262,7 +288,7 @@ def _across(axis: Triple) -> tuple[Triple, Triple]:
 
 def _held(name: str, at: Triple, components: Sequence[str], axes: Array | None) -> tuple[Hold, ...]:
     """Return the listed components, along the sheet's axes or along turned ones."""
-    where = f"support {name}"
+    where = f"support {short_name(name)}"
     if not components:
         raise InputError("components", "one or more of " + ", ".join(COMPONENTS), where=where)
     for position, component in enumerate(components):
@@ -289,7 +315,7 @@ def _turned_axes(axes: Array, where: str) -> tuple[Triple, Triple, Triple]:
 def _point(point: Sequence[float] | Array, name: str) -> Triple:
     """Return a point as plain floats, refusing what is not one."""
     if len(point) != 3 or not all(isfinite(part) for part in point):
-        raise InputError("point", "three finite coordinates", where=f"support {name}")
+        raise InputError("point", "three finite coordinates", where=f"support {short_name(name)}")
     return triple(point)
 
 
@@ -298,7 +324,7 @@ def _unit(direction: Sequence[float] | Array | None, name: str) -> Triple:
     vector = ZERO if direction is None else triple(direction)
     length = size(vector)
     if length == 0.0 or not isfinite(length):
-        raise InputError("direction", "a finite vector other than zero", where=f"support {name}")
+        raise InputError("direction", "a finite vector other than zero", where=f"support {short_name(name)}")
     x, y, z = scaled(1.0 / length, vector)
     # No minus zeros: directions are compared with the sheet's axes.
     return (x + 0.0, y + 0.0, z + 0.0)
@@ -309,5 +335,7 @@ def _toward(name: str, kind: str, at: Triple, to: Sequence[float] | Array) -> Tr
     end = _point(to, name)
     arm = less(end, at)
     if size(arm) <= 1e-12 * max(size(at), size(end)):
-        raise InputError("to", f"another point than the {kind}'s point on the body", where=f"support {name}")
+        raise InputError(
+            "to", f"another point than the {kind}'s point on the body", where=f"support {short_name(name)}"
+        )
     return _unit(arm, name)
