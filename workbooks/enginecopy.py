@@ -15,6 +15,7 @@ from .addresses import Area, area, cell_name, size
 from .book import Book, DefinedName
 from .builtins import WEAK_FUNCTIONS
 from .calls import FIT
+from .cellxml import typed_tag
 from .engine import Engine
 from .errors import FormulaRefused, UnknownFunction
 from .formulas import NAME_MARK, SHEET_MARK, Analysis, Resolver, analyse, canonical
@@ -110,7 +111,7 @@ class Preparation:
         if NAME_MARK in text:
             text = _MARKED.sub(lambda mark: self._meaning(sheet, formula, mark[1], mark[2]), text)
         frame = formula.array
-        edits = []
+        edits = _without_error(sheet, formula)
         if frame is None:
             text = f"@({text})"
         else:
@@ -118,7 +119,7 @@ class Preparation:
             if rows * columns > 1_000_000:
                 raise self._refused(sheet, formula, "the array formula is immense", "Make it smaller")
             text = f"{FIT}({number},ROW(),COLUMN(),{rows},{columns},{text})"
-            edits = list(self._children(sheet, formula, frame))
+            edits += self._children(sheet, formula, frame)
         edits.append((formula.text_start, formula.text_end, escape(text).encode()))
         return edits
 
@@ -218,6 +219,16 @@ class Preparation:
             f"the name {name} stands for a formula ({found.text[:60]})",
             "Put the formula into a cell and let the name point to that cell",
         )
+
+
+def _without_error(sheet: Sheet, formula: FormulaCell) -> list[tuple[int, int, bytes]]:
+    """Take an old error out: the engine does not load a file with an error text that it has not heard of."""
+    if formula.attributes.get("t") != "e":
+        return []
+    tag = typed_tag(sheet.data[formula.start : formula.tag_end], b"")
+    return [(formula.start, formula.tag_end, tag), (formula.v_start, formula.v_end, b"")][
+        : 2 if formula.v_start >= 0 else 1
+    ]
 
 
 # What people mean most often when they mistype a built-in function.

@@ -143,10 +143,13 @@ def test_an_omitted_argument_of_a_built_in_stays_what_it_is_there() -> None:
 
 @pytest.mark.parametrize(
     "name",
-    ["RB_X_Y", "rb_x_y", "_xll.RB_X_Y", "_xlfn.RB_X_Y", "_xlfn._xlws.rb_x_y", "_xludf.RB_X_Y", "[1]!RB_X_Y"]
-    + ["[0]!RB_X_Y", "'my functions.xlam'!RB_X_Y", "'C:\\add ins\\[x.xlam]a'!RB_X_Y", "functions.xlam!RB_X_Y"]
-    + ["ORG.RIGIDSHEET.ADDIN.RBXY", "org.rigidsheet.addin.rbxy", "ORG.RIGIDSHEET.ADDIN.RB_X_Y"]
-    + ["com.sun.star.sheet.addin.rb_x_y", "_xlfn.COM.SUN.STAR.SHEET.ADDIN.RB_X_Y"],
+    [
+        *("RB_X_Y", "rb_x_y", "_xll.RB_X_Y", "_xlfn.RB_X_Y", "_xlfn._xlws.rb_x_y", "_xludf.RB_X_Y"),
+        *("[1]!RB_X_Y", "[0]!RB_X_Y", "'my functions.xlam'!RB_X_Y", "'C:\\add ins\\[x.xlam]a'!RB_X_Y"),
+        *("functions.xlam!RB_X_Y", "ORG.RIGIDSHEET.ADDIN.RBXY", "org.rigidsheet.addin.rbxy"),
+        *("ORG.RIGIDSHEET.ADDIN.RB_X_Y", "com.sun.star.sheet.addin.rb_x_y"),
+        "_xlfn.COM.SUN.STAR.SHEET.ADDIN.RB_X_Y",
+    ],
 )
 def test_every_spelling_of_a_function_name_is_read(name: str) -> None:
     assert run({"A1": f"={name}(2)*3"}, {"RB_X_Y": lambda x: x + 1.0}) == {"A1": 9.0}
@@ -180,8 +183,15 @@ def test_names_in_texts_and_quoted_sheets_are_no_functions() -> None:
 
 @pytest.mark.parametrize(
     ("text", "expected"),
-    [("S!$A$1", 6.0), ("'S'!$A$1", 6.0), ("2.5", 7.5), ("-3", -9.0), ("$B$1*2", None), ("2*S!$A$1", None)]
-    + [
+    [
+        *(
+            ("S!$A$1", 6.0),
+            ("'S'!$A$1", 6.0),
+            ("2.5", 7.5),
+            ("-3", -9.0),
+            ("$B$1*2", None),
+            ("2*S!$A$1", None),
+        ),
         ("S!A1", None),
         ("S!$A$1,S!$B$1", None),
         ("1/2", None),
