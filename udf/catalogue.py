@@ -9,7 +9,7 @@ from typing import Final
 from ..core.errors import AbsentError
 from .compiling import Compiled
 from .declaration import CellFunction
-from .functions import asking, forces, mass, motion, reactions, review, units
+from .functions import asking, bodies, forces, motion, reactions, review, shapes, tensors, units
 from .words import hint
 
 
@@ -27,7 +27,9 @@ FUNCTIONS: Final = MappingProxyType(
         f.name: f
         for f in (
             *units.FUNCTIONS,
-            *mass.FUNCTIONS,
+            *shapes.FUNCTIONS,
+            *tensors.FUNCTIONS,
+            *bodies.FUNCTIONS,
             *motion.FUNCTIONS,
             *forces.FUNCTIONS,
             *reactions.FUNCTIONS,

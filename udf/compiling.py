@@ -109,7 +109,7 @@ class Compiled:
         """Return the lines of the working, or raise as `answer` does."""
         values = self.read(cells)
         own, _ = self.frame.align([values[i] for i in self.own])
-        own, rows = self.frame.first_row(own)
+        own, rows = (own, 1) if self.function.result.gathers else self.frame.first_row(own)
         lines = list(self.function.working(tuple(own), self.function.kernel(*own)))
         if rows > 1:
             lines.append(f"Row 1 of {rows}; the other rows go the same way.")

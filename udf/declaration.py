@@ -19,6 +19,7 @@ class Role(Enum):
 
     SCALAR = "scalar"  # float or (n,)
     VECTOR = "vector"  # (2,), (3,), (n, 2) or (n, 3)
+    SPACE = "space"  # always x y z
     SPIN = "spin"  # float or (n, 1) about z; (3,) or (n, 3)
     INERTIA = "inertia"  # float or (n,) about z; (3, 3)
     OTHER = "other"  # records, tables, words: left alone
@@ -71,6 +72,7 @@ class Form(Enum):
 
     SCALAR = "scalar"  # one cell, or a column
     VECTOR = "vector"  # a row of x y z (x y when every vector came with two numbers)
+    SPACE = "space"  # always x y z
     SPIN = "spin"  # about z as one cell when planar, else like a vector
     TENSOR = "tensor"  # three rows of three; about z as one cell when the inertia came as one number
     TEXT = "text"  # a word or a sentence
@@ -104,12 +106,14 @@ class Result:
 
     With several fields the kernel returns an object whose attributes (blanks as underscores) carry them.
     `default` is the field given when `what` is omitted; None means the whole record.
+    `gathers` means that columns go into one answer, not a row each.
     `open` means that the kernel returns a list of `Row`; `fields` then only document what can appear.
     """
 
     fields: tuple[Field, ...]
     default: str | None = None
     open: bool = False
+    gathers: bool = False
 
 
 WHAT: Final = "what"  # stands in `args` where the derived argument goes when that is not the end

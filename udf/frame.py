@@ -42,7 +42,7 @@ class Frame:
         if self._plain:
             if any(type(values[i]) is np.ndarray for i in self._scalars):
                 self._rows(values)
-            return values, True
+            return values, False
         spins, vectors = self._spins, self._vectors
         upright = [i for i in spins if type(values[i]) is Upright]
         rows = self._rows(values)

@@ -76,7 +76,11 @@ class Expression:
                 raise InputError("unit", f"left out for '{field.name}', which carries no unit")
             assert field.kind is not None
             factor(unit, field.kind, "unit")
-        if field is None and any(type(v) is np.ndarray and v.ndim == 2 and v.shape != (3, 3) for v in values):
+        if (
+            field is None
+            and not self.result.gathers
+            and any(type(v) is np.ndarray and v.ndim == 2 and v.shape != (3, 3) for v in values)
+        ):
             raise InputError("what", "given when columns are handed in: one result for each row")
 
     def __call__(self, answer: Any, what: str | None, unit: str | None, planar: bool) -> Answer:
