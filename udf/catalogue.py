@@ -9,7 +9,7 @@ from typing import Final
 from ..core.errors import AbsentError
 from .compiling import Compiled
 from .declaration import CellFunction
-from .functions import asking, bodies, forces, motion, reactions, review, shapes, tensors, units
+from .functions import asking, axes, bodies, forces, motion, reactions, review, shapes, tensors, units
 from .words import hint
 
 
@@ -29,6 +29,7 @@ FUNCTIONS: Final = MappingProxyType(
             *units.FUNCTIONS,
             *shapes.FUNCTIONS,
             *tensors.FUNCTIONS,
+            *axes.FUNCTIONS,
             *bodies.FUNCTIONS,
             *motion.FUNCTIONS,
             *forces.FUNCTIONS,
