@@ -68,20 +68,22 @@ def principal(inertia: ArrayLike) -> Principal:
     return Principal(moments, axes + 0.0)
 
 
+def _largest(size: NDArray[np.float64]) -> int:
+    """Return the place of the largest entry; of two as large, of the first, whatever the rounding."""
+    return int(np.flatnonzero(size >= size.max() - 1e-9)[0])
+
+
 def _sign_of_largest(axis: NDArray[np.float64]) -> float:
-    """Return the sign of the largest component; of two as large, of the first, whatever the rounding."""
-    size = np.abs(axis)
-    first = int(np.flatnonzero(size >= size.max() - 1e-9)[0])
-    return 1.0 if axis[first] > 0.0 else -1.0
+    """Return the sign of the largest component."""
+    return 1.0 if axis[_largest(np.abs(axis))] > 0.0 else -1.0
 
 
 def _axes_across(axis: NDArray[np.float64]) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
     """Return two axes square to `axis`, one of them as close to a sheet axis as can be, in sheet order."""
-    left = 1.0 - axis**2
-    nearest = int(np.flatnonzero(left >= left.max() - 1e-9)[0])
+    nearest = _largest(1.0 - axis**2)
     first = np.eye(3)[nearest] - axis[nearest] * axis
     first /= norm(first)
     second = cross(axis, first)
-    if int(np.argmax(np.abs(second))) < nearest:
+    if _largest(np.abs(second)) < nearest:
         return second, first
     return first, second
