@@ -144,6 +144,10 @@ def wanted_lines() -> tuple[list[str], list[str]]:
         ("1, 1", "error 2015"),
     ):
         add(f"Shown(answer({at}))", result)
+    # one column: the upper bound of its second dimension is zero, which is not "no second dimension"
+    statements += ['down(0, 0) = "#N/A"', "down(1, 0) = 2.5", "answer = RbErrors(down)"]
+    for at, result in (("0, 0", "error 2042"), ("1, 0", "Double 2.5")):
+        add(f"Shown(answer({at}))", result)
     return statements, results
 
 
@@ -151,6 +155,7 @@ def main_text(statements: list[str]) -> str:
     """Main and the sub that gathers its results, in pieces short enough for a procedure."""
     pieces = [statements[i : i + 100] for i in range(0, len(statements), 100)]
     lines = ["Private gathered As String", "Private across(2) As Variant", "Private block(1, 1) As Variant"]
+    lines += ["Private down(1, 0) As Variant"]
     lines += ["Private answer As Variant", "Private Sub add(ByVal text As String)"]
     lines += ["    gathered = gathered & text & Chr(31)", "End Sub"]
     for n, piece in enumerate(pieces):
