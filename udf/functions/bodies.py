@@ -8,14 +8,20 @@ from typing import Any
 import numpy as np
 
 from ...core.body import combine_arrays, inertia_about
+from ...core.errors import InputError
+from ...core.plates import plate_body
 from ...core.tensors import offset_tensor
+from ...core.vectors import rotation_matrix
 from .. import kinds
-from ..arguments import Vector
-from ..bodies import MOMENTS
+from ..arguments import Scalar, Vector
+from ..bodies import BODY, MOMENTS, needs_space
 from ..body_terms import BodyTerms, body_fields
 from ..declaration import WHAT, Arg, CellFunction, Example, Field, Form, Result
+from ..limits import POSITIVE
+from ..outlines import Outline
 from ..parts import PARTS, read_parts
 from ..working import num, tensor_rows, vec
+from .axes import axis_text, direction_of
 
 GROUP = "Mass"
 DYNAMICS = "Meriam, Kraige: Dynamics, appendix B (mass moments of inertia)"
@@ -97,6 +103,62 @@ def rollup_working(values: tuple[Any, ...], answer: BodyTerms) -> list[str]:
     ]
 
 
+def plate(outline: Any, thickness: Any, density: Any) -> BodyTerms:
+    """Body of a flat plate in the x-y plane, thickness to both sides of z = 0."""
+    for name, value in (("thickness", thickness), ("density", density)):
+        if type(value) is not float:
+            raise InputError(name, "one number for one plate; got a column")
+    body = plate_body(
+        outline.corners,
+        thickness,
+        density,
+        holes=list(outline.holes.values()),
+        round_holes=outline.round_holes,
+    )
+    return BodyTerms(body.mass, body.center, body.inertia)
+
+
+def plate_working(values: tuple[Any, ...], answer: BodyTerms) -> list[str]:
+    outline, thickness, density = values
+    x, y = outline.corners[:, 0], outline.corners[:, 1]
+    gross = abs(0.5 * float(np.sum(x * np.roll(y, -1) - np.roll(x, -1) * y)))
+    area = answer.mass / (density * thickness)
+    return [
+        "Plate by its outline: area and its moments from the corners, each side a trapezoid to the axis",
+        f"outline of {len(x)} corners: A = |sum (x_i y_j - x_j y_i)| / 2 = {num(gross)} m^2",
+        f"{len(outline.holes)} cut-outs and {len(outline.round_holes)} round holes leave {num(area)} m^2",
+        f"m = A t density = {num(area)}*{num(thickness)}*{num(density)} = {num(answer.mass)} kg",
+        f"mass center = {vec(answer.center)} m; tensor about it:",
+        *tensor_rows(answer.inertia),
+    ]
+
+
+def moved(body: Any, axis: Any, angle: Any, through: Any) -> BodyTerms:
+    """Body after an active turn about a line through a point."""
+    rigid = needs_space(body)
+    point = rigid.center if isinstance(through, str) and through == AT_CENTER else through
+    if isinstance(point, str):
+        point = np.zeros(3)
+    if type(angle) is not float or np.ndim(point) != 1:
+        raise InputError("angle", "one angle and one line for one body; got a column")
+    turned = rigid.turned(rotation_matrix(direction_of("axis", axis), angle), point)
+    return BodyTerms(turned.mass, turned.center, turned.inertia)
+
+
+def moved_working(values: tuple[Any, ...], answer: BodyTerms) -> list[str]:
+    body, axis, angle, through = values
+    rotation = rotation_matrix(direction_of("axis", axis), angle)
+    where = f"the {through}" if isinstance(through, str) else f"{vec(through)} m"
+    return [
+        f"Body turned by {num(np.degrees(angle))} deg about {axis_text(axis)} through {where}",
+        "r' = P + R (r - P), I' = R I R^T, R =",
+        *tensor_rows(rotation, ""),
+        f"mass center {vec(body.body.center)} m -> {vec(answer.center)} m",
+        "tensor about the mass center, sheet axes:",
+        *tensor_rows(answer.inertia),
+    ]
+
+
 FUNCTIONS = (
     CellFunction(
         name="RB_ROLLUP",
@@ -125,6 +187,47 @@ FUNCTIONS = (
             Example(
                 '=RB_ROLLUP(B4:K12, "mass", , "kg")',
                 "Mass of the tilting table with its bin from the parts list in B4:K12.",
+            ),
+        ),
+    ),
+    CellFunction(
+        name="RB_PLATE",
+        group=GROUP,
+        line="Mass, mass center and tensor of a flat plate from its outline, with cut-outs and round holes.",
+        args=(
+            Arg("outline", Outline(), "corners x y, or a table loop, x, y, D for holes"),
+            Arg("thickness", Scalar(kinds.LENGTH), "half of it on each side of the x-y plane", POSITIVE),
+            Arg("density", Scalar(kinds.DENSITY), "density of the material", POSITIVE),
+        ),
+        result=Result(body_fields("mass center", "tensor about the mass center"), gathers=True),
+        kernel=plate,
+        working=plate_working,
+        source="Moments of a polygon from its corners (Green's theorem); prism of uniform density",
+        examples=(
+            Example(
+                '=RB_PLATE({0,0;0.6,0;0.6,0.25;0.15,0.4;0,0.4}, "12 mm", "7850 kg/m^3", "mass")',
+                "Mass of the tipper's cheek plate from its corners.",
+            ),
+        ),
+    ),
+    CellFunction(
+        name="RB_MOVE",
+        group=GROUP,
+        line="A whole body turned about a line: mass center and tensor go along; sheet axes stay.",
+        args=(
+            Arg("body", BODY, "mass, mass center and inertia, as RB_ROLLUP gives them"),
+            Arg("axis", Vector(kinds.RATIO, words_for=("x", "y", "z")), "x, y, z or a direction vector"),
+            Arg("angle", Scalar(kinds.ANGLE), "right-handed about the axis"),
+            Arg("through", Vector(kinds.LENGTH, words_for=(AT_ORIGIN, AT_CENTER)), "a point of the line"),
+        ),
+        result=Result(body_fields("mass center", "tensor about the mass center")),
+        kernel=moved,
+        working=moved_working,
+        source=f"{DYNAMICS}, rotation of axes",
+        examples=(
+            Example(
+                '=RB_MOVE(B4:D14, "z", "35 deg", "(0, 0) m", "y", "mm")',
+                "Height of the tilted table's mass center above its hinge.",
             ),
         ),
     ),
