@@ -26,17 +26,17 @@ def with_inputs(
     reading = Reading(Prepared(book, sheets), {}, resolve)
     wanted: dict[int, dict[str, Value]] = {}
     for name, given in inputs.items():
-        number, ref = _target(reading, name)
+        number, ref = input_cell(reading, name)
         if ref in wanted.get(number, {}):
             raise InputRefused(name, "given once; another input sets the same cell", remedy="Leave one out")
-        wanted.setdefault(number, {})[ref] = _value(reading, name, given, number, ref)
+        wanted.setdefault(number, {})[ref] = input_value(reading, name, given, number, ref)
     changed = list(sheets)
     for number, values in wanted.items():
         changed[number] = _set(sheets[number], values)
     return tuple(changed)
 
 
-def _target(reading: Reading, name: str) -> tuple[int, str]:
+def input_cell(reading: Reading, name: str) -> tuple[int, str]:
     """Return the sheet number and address of the one input cell that a name or an address means."""
     where, mark, cell = name.rpartition("!")
     place = row_column(cell.strip()) if mark else None
@@ -84,7 +84,7 @@ def _sheets(reading: Reading) -> str:
     return "Sheets: " + ", ".join(sheet.name for sheet in reading.prepared.sheets)[:120]
 
 
-def _value(reading: Reading, name: str, given: object, number: int, ref: str) -> Value:
+def input_value(reading: Reading, name: str, given: object, number: int, ref: str) -> Value:
     """Return what goes into the cell: converted to the unit beside it, of the type that it holds now."""
     if isinstance(given, bool):
         return given

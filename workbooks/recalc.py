@@ -123,7 +123,7 @@ def recalculate(
         writes = (target is not None) if write is None else write
         if writes and target is None:
             raise FileRefused("there is no path to write to", remedy="Give one with `to`")
-        run = _Run(data, inputs, functions, engine)
+        run = Run(data, inputs, functions, engine)
         in_place = writes and seen is not None and target is not None and _same_file(target, seen.path)
         if run.prepared.book.package.signed and in_place:
             raise FileRefused(
@@ -153,7 +153,7 @@ def _located(seen: saving.Seen | None) -> Iterator[None]:
         raise
 
 
-class _Run:
+class Run:
     """One recalculation in memory."""
 
     def __init__(
@@ -176,18 +176,25 @@ class _Run:
         self.calls = Calls()
         self.results: dict[tuple[int, str], Value] = {}
 
-    def result(self) -> Recalculation:
-        """Run the engine, collect, and make the new file."""
+    def open(self) -> Sheets:
+        """Load the prepared workbook into the engine."""
         used = {name: function for name in self.prepared.used if (function := self.functions(name))}
-        loaded = self.engine.open(
+        return self.engine.open(
             self.prepared.engine_package, self.calls.bind(used), date1904=self.prepared.book.date1904
         )
+
+    def work_out(self, loaded: Sheets) -> None:
+        """Run the engine and collect the value of every formula cell."""
         with _interrupts_kept(self.calls):
             loaded.run()
         if self.calls.interrupted is not None:
             raise self.calls.interrupted
         for number, sheet, formula in self.prepared.formulas():
             self._collect(loaded, number, sheet, formula)
+
+    def result(self) -> Recalculation:
+        """Work the workbook out and make the new file."""
+        self.work_out(self.open())
         new = written(self.prepared, self.results)
         reading = Reading(self.prepared, self.results, self.resolve)
         report = Report(reading, self.calls.reasons)
