@@ -133,8 +133,7 @@ def size_labelled(shape: Shape, label: str) -> tuple[Size, Alternative | None]:
     if word in table:
         return table[word]
     loose = {entry.lower(): found for entry, found in table.items()}
-    same_case = [entry for entry in table if entry.lower() == word.lower()]
-    if len(same_case) == 1:
+    if word.lower() in loose:
         return loose[word.lower()]
     close = get_close_matches(word.lower(), loose, n=1, cutoff=0.75)
     hint = f"Did you mean {close[0]}? " if close else ""

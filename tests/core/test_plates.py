@@ -174,13 +174,29 @@ def test_refused_outline(outline: ArrayLike, words: str) -> None:
 
 
 def test_crossing_far_apart_in_a_long_outline() -> None:
-    """One corner of a 600-corner ring pulled across to the other side."""
+    """One corner of a 600-corner ring pulled out beyond a later part of it."""
     angle = 2.0 * np.pi * np.arange(600) / 600
     ring = np.stack([np.cos(angle), np.sin(angle)], axis=1)
     assert plate_body(ring, 0.01, STEEL).mass > 0.0
-    ring[450] = (0.3, 1.2)
-    with pytest.raises(InputError, match="cross or touch"):
+    ring[300] = (0.3, -1.2)
+    with pytest.raises(InputError, match=r"edge (300|301) and edge 4\d\d that cross or touch"):
         plate_body(ring, 0.01, STEEL)
+
+
+def test_a_corner_on_a_slanted_edge_is_touching() -> None:
+    """The same touch as on a straight edge, turned so that rounding moves the corner off the line."""
+    for angle in np.radians(np.arange(1.0, 90.0, 7.0)):
+        turn = np.array([[np.cos(angle), -np.sin(angle)], [np.sin(angle), np.cos(angle)]])
+        outline = np.array([(0, 0), (2, 0), (2, 1), (0.7, 0), (0, 1)]) @ turn.T
+        with pytest.raises(InputError, match="cross or touch"):
+            plate_body(outline, 0.01, STEEL)
+
+
+def test_round_hole_in_line_with_an_inner_edge() -> None:
+    """Beyond the end of an edge its line does not count: a hole at the heel of an L-shaped bracket is inside."""
+    outline = [(0.0, 0.0), (0.6, 0.0), (0.6, 0.1), (0.1, 0.1), (0.1, 0.5), (0.0, 0.5)]
+    body = plate_body(outline, 0.01, 1000.0, round_holes=[(0.05, 0.1, 0.06)])
+    assert body.mass == pytest.approx(10.0 * (0.1 - np.pi * 0.03**2), rel=1e-14)
 
 
 TRIANGLE = [(0.2, 0.2), (0.4, 0.2), (0.2, 0.4)]

@@ -299,7 +299,7 @@ def test_needle_triangle_by_sides_keeps_its_area() -> None:
     Sides 1, 1 and 2^-30: height over the short base is sqrt(1 - 2^-62), area 2^-31 of it.
     """
     s = complete_sizes(SHAPES["triangular plate"], {"a": 1.0, "b": 2.0**-30, "c": 1.0})
-    assert float(SHAPES["triangular plate"].measure(s)) == pytest.approx(2.0**-31, rel=1e-15)
+    assert float(SHAPES["triangular plate"].measure(s)) == pytest.approx(2.0**-31, rel=1e-15, abs=0.0)
 
 
 @pytest.mark.parametrize("name", SHAPES)
@@ -329,6 +329,15 @@ def test_rows_are_complete(name: str) -> None:
     labels = [size.label for size in row.sizes]
     assert len(labels) == len(set(labels))
     assert all(size.help for size in row.sizes)
+    # Words that differ in case alone would make a label ambiguous; single letters are matched as typed.
+    words = [
+        word.lower()
+        for size in row.sizes
+        for one in (size, *size.alternatives)
+        for word in (one.label, *one.aliases)
+        if len(word) > 1
+    ]
+    assert len(words) == len(set(words))
 
 
 def _same(one: RigidBody, other: RigidBody) -> None:

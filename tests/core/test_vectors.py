@@ -55,7 +55,7 @@ def test_rotation_matrix_is_an_active_turn(rng: np.random.Generator) -> None:
 def test_small_turn_keeps_its_digits() -> None:
     """1 - cos(1e-9) is 5e-19 (series); computed as a difference it would be 0."""
     matrix = rotation_matrix([1.0, 1.0, 0.0], 1e-9)
-    assert matrix[0, 1] == pytest.approx(0.5 * 0.5e-18, rel=1e-12)
+    assert matrix[0, 1] == pytest.approx(0.5 * 0.5e-18, rel=1e-12, abs=0.0)
 
 
 def test_axis_of_no_length_gives_nan_without_a_warning() -> None:
