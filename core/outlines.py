@@ -73,14 +73,52 @@ def area_sums(outline: ArrayLike) -> AreaSums:
 
 
 def without_closing_corner(outline: Points) -> Points:
-    """Return the corners without a last one that repeats the first."""
+    """Return the corners without a last one that repeats the first.
+
+    Parameters
+    ----------
+    outline : ndarray, shape (n, 2)
+        Corners in order [m].
+
+    Returns
+    -------
+    ndarray, shape (n, 2) or (n - 1, 2)
+        Corners, each once [m].
+
+    Notes
+    -----
+    Only an exact repeat is dropped.
+
+    References
+    ----------
+    J. O'Rourke, Computational Geometry in C, 2nd ed., section 1.3 (a polygon as its list of corners).
+    """
     if len(outline) > 1 and np.array_equal(outline[0], outline[-1]):
         return outline[:-1]
     return outline
 
 
 def outline_problem(outline: Points) -> str | None:
-    """Return what keeps these corners from being the outline of a plate, or None."""
+    """Return what keeps these corners from being the outline of a plate, or None.
+
+    Parameters
+    ----------
+    outline : ndarray, shape (n, 2)
+        Corners in order [m].
+
+    Returns
+    -------
+    str or None
+        What was found, worded to follow "found" [-]; None for a simple outline.
+
+    Notes
+    -----
+    Edges that only touch are refused too: two lobes through one corner would cancel in the area sums.
+
+    References
+    ----------
+    J. O'Rourke, Computational Geometry in C, 2nd ed., section 1.1 (simple polygons).
+    """
     count = len(outline)
     if count < 3:
         return f"only {count} corner{'' if count == 1 else 's'}; at least three are needed"
@@ -102,7 +140,30 @@ def outline_problem(outline: Points) -> str | None:
 
 
 def touching_edges(one: Points, other: Points, *, same: bool = False) -> tuple[int, int] | None:
-    """Return the first two edges, of two outlines or not neighbors in the same one, that share a point."""
+    """Return the first two edges that share a point, of two outlines or of one, neighbors left out.
+
+    Parameters
+    ----------
+    one : ndarray, shape (n, 2)
+        Corners in order [m].
+    other : ndarray, shape (k, 2)
+        Corners of the other outline [m].
+    same : bool
+        Both are the same outline: neighboring edges share a corner and do not count.
+
+    Returns
+    -------
+    tuple of int or None
+        Numbers of the two edges, counted from 0 [-].
+
+    Notes
+    -----
+    Touching to within TOUCHING of the outline counts. Every pair is tried, a block at a time.
+
+    References
+    ----------
+    J. O'Rourke, Computational Geometry in C, 2nd ed., section 1.5 (segment intersection).
+    """
     p, q = one, np.roll(one, -1, axis=0)
     r, s = other, np.roll(other, -1, axis=0)
     slack = TOUCHING * float(np.ptp(np.concatenate([one, other]), axis=0).max())
@@ -139,7 +200,28 @@ def _side(a: Points, b: Points, point: Points, slack: float) -> Points:
 
 
 def holds_point(outline: Points, point: ArrayLike) -> bool:
-    """Return whether a point lies inside an outline, by the number of edges to its right."""
+    """Return whether a point lies inside an outline, by the number of edges to its right.
+
+    Parameters
+    ----------
+    outline : ndarray, shape (n, 2)
+        Corners in order [m].
+    point : array_like, shape (2,)
+        Point [m].
+
+    Returns
+    -------
+    bool
+        True inside [-].
+
+    Notes
+    -----
+    A point on the edge itself may count either way.
+
+    References
+    ----------
+    J. O'Rourke, Computational Geometry in C, 2nd ed., section 7.4 (point in polygon).
+    """
     x, y = np.asarray(point, dtype=float)
     after = np.roll(outline, -1, axis=0)
     spans = (outline[:, 1] > y) != (after[:, 1] > y)
@@ -149,7 +231,28 @@ def holds_point(outline: Points, point: ArrayLike) -> bool:
 
 
 def distance_to_edges(outline: Points, point: ArrayLike) -> float:
-    """Return the distance from a point to the nearest edge of an outline."""
+    """Return the distance from a point to the nearest edge of an outline.
+
+    Parameters
+    ----------
+    outline : ndarray, shape (n, 2)
+        Corners in order [m].
+    point : array_like, shape (2,)
+        Point [m].
+
+    Returns
+    -------
+    float
+        Distance [m], the same inside and outside.
+
+    Notes
+    -----
+    Beyond the end of an edge the distance is to its corner.
+
+    References
+    ----------
+    C. Ericson, Real-Time Collision Detection, section 5.1.2 (closest point on a segment).
+    """
     edge = np.roll(outline, -1, axis=0) - outline
     arm = np.asarray(point, dtype=float) - outline
     share = np.clip((arm * edge).sum(axis=1) / (edge * edge).sum(axis=1), 0.0, 1.0)
