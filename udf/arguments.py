@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any, Final
@@ -22,6 +23,7 @@ from .units import factor
 
 Array = NDArray[np.float64]
 TURN: Final = 2.0 * math.pi
+DECIMAL_COMMA: Final = re.compile(r"\d,\d")  # '(0,4, 1)' could be two numbers or three
 
 
 def folded(word: str) -> str:
@@ -345,6 +347,13 @@ class Spin:
 def vector_text(argument: str, kind: Kind, text: str, rule: str) -> Array:
     """Read '(0.4, 0, -0.2) m', the way a vector is written in one cell."""
     inside, closed, unit = text.strip()[1:].partition(")")
+    if DECIMAL_COMMA.search(inside):
+        raise wrong(
+            argument,
+            rule,
+            text,
+            remedy="Write a blank after each comma, and decimals with a point: '(0.4, 0.25) m'",
+        )
     parts = [p.strip() for p in inside.split(",")]
     if not closed or len(parts) not in (2, 3) or any(not p for p in parts):
         raise wrong(argument, rule, text, remedy=f"Write '(0.4, 0.25) {kind.si}' when it stands in one cell")

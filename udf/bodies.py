@@ -129,7 +129,15 @@ BODY: Final = Record(
         Entry("products", None, "form of the products", words=(TENSOR_TERMS, INTEGRALS)),
     ),
     what="body",
-    example=(("mass", 166.0, "kg"), ("x", 1.434, "m"), ("y", 1.004, "m"), ("Izz", 49.24, "kg*m^2")),
+    example=(
+        ("mass", 166.0, "kg"),
+        ("x", 1.434, "m"),
+        ("y", 1.004, "m"),
+        ("z", 0.0, "m"),
+        ("Ixx", 21.5, "kg*m^2"),
+        ("Iyy", 33.8, "kg*m^2"),
+        ("Izz", 49.24, "kg*m^2"),
+    ),
     finish=finish,
 )
 

@@ -9,7 +9,22 @@ from typing import Final
 from ..core.errors import AbsentError
 from .compiling import Compiled
 from .declaration import CellFunction
-from .functions import asking, axes, bodies, forces, motion, reactions, review, shapes, tensors, units
+from .functions import (
+    asking,
+    axes,
+    bodies,
+    drives,
+    forces,
+    momentum,
+    motion,
+    reactions,
+    review,
+    shapes,
+    sliding,
+    spins,
+    tensors,
+    units,
+)
 from .words import hint
 
 
@@ -32,8 +47,12 @@ FUNCTIONS: Final = MappingProxyType(
             *axes.FUNCTIONS,
             *bodies.FUNCTIONS,
             *motion.FUNCTIONS,
+            *sliding.FUNCTIONS,
+            *spins.FUNCTIONS,
             *forces.FUNCTIONS,
             *reactions.FUNCTIONS,
+            *momentum.FUNCTIONS,
+            *drives.FUNCTIONS,
             *review.FUNCTIONS,
             *asking.functions(find),
         )

@@ -11,6 +11,7 @@ from ...core.errors import InputError, PhysicsError
 from .. import kinds
 from ..amounts import pair
 from ..arguments import Scalar
+from ..cases import Cases, CaseValues
 from ..declaration import WHAT, Arg, CellFunction, Example, Field, Form, Result
 from ..limits import POSITIVE
 from ..words import Amount, AnyQuantity, Choice
@@ -106,6 +107,49 @@ def check_working(values: tuple[Any, ...], answer: Any) -> list[str]:
     )
 
 
+@dataclass(frozen=True, slots=True)
+class Envelope:
+    """Extremes of a column of cases, in the cases' own unit, and the names that go with them."""
+
+    largest: float
+    smallest: float
+    magnitude: float
+    governing: str
+    largest_case: str
+    smallest_case: str
+    unit: str
+
+
+def envelope(cases: CaseValues) -> Envelope:
+    values = cases.values
+    top, low, far = int(values.argmax()), int(values.argmin()), int(np.abs(values).argmax())
+    names = cases.names
+    return Envelope(
+        float(values[top]),
+        float(values[low]),
+        float(abs(values[far])),
+        names[far],
+        names[top],
+        names[low],
+        cases.unit,
+    )
+
+
+def envelope_working(values: tuple[Any, ...], answer: Envelope) -> list[str]:
+    unit = f" {answer.unit}" if answer.unit else ""
+    lines = [f"Envelope of {len(values[0].names)} cases"]
+    lines += [
+        f"{name}: {num(v)}{unit}"
+        for name, v in list(zip(values[0].names, values[0].values, strict=True))[:40]
+    ]
+    return [
+        *lines,
+        f"largest {num(answer.largest)}{unit} ({answer.largest_case}), "
+        f"smallest {num(answer.smallest)}{unit} ({answer.smallest_case})",
+        f"governing by magnitude: {answer.governing}, {num(answer.magnitude)}{unit}",
+    ]
+
+
 REQUIRED_FACTOR = "factor the standard or the project asks for"
 COMMON = "Common practice of strength checks: factor of safety and margin of safety"
 
@@ -166,6 +210,31 @@ FUNCTIONS = (
         examples=(
             Example(
                 '=RB_CHECK("6.2 kN", "15 kN", "at most", 2)', "Whether the hinge pin carries twice its load."
+            ),
+        ),
+    ),
+    CellFunction(
+        name="RB_ENVELOPE",
+        group=GROUP,
+        line="Largest, smallest and governing case of a column: case names first, values in the last number column.",
+        args=(Arg("cases", Cases(), "names in the first column, values in the last number column"),),
+        result=Result(
+            (
+                Field("governing", None, "name of the case with the largest magnitude", Form.TEXT),
+                Field("magnitude", None, "largest magnitude, in the unit of the values"),
+                Field("largest", None, "largest value"),
+                Field("smallest", None, "smallest value"),
+                Field("largest case", None, "its name", Form.TEXT),
+                Field("smallest case", None, "its name", Form.TEXT),
+                Field("unit", None, "unit of the values, empty when none was given", Form.TEXT),
+            ),
+        ),
+        kernel=envelope,
+        working=envelope_working,
+        source="Common practice of load cases",
+        examples=(
+            Example(
+                '=RB_ENVELOPE(B6:F9, "governing")', "Which load case of the tipper governs the drive torque."
             ),
         ),
     ),
