@@ -11,7 +11,7 @@ import numpy as np
 from ..core.errors import AbsentError, InputError, KindError, PhysicsError, RigidsheetError
 from . import frame, results
 from .cells import OMITTED, Answer, Cell, CellError, Omitted, Refusal
-from .declaration import WHAT, Arg, CellFunction, Reader
+from .declaration import UNIT, WHAT, Arg, CellFunction, Reader
 from .words import Choice, Rest, Text
 
 # One table from error class to what the cell shows.
@@ -29,19 +29,14 @@ def arguments_of(f: CellFunction) -> tuple[Arg, ...]:
 
 def placed_arguments(f: CellFunction) -> list[tuple[Arg, bool]]:
     """Return every argument in order, each with whether the kernel takes it (else it is derived)."""
-    out: list[tuple[Arg, bool]] = []
+    derived: dict[str, Arg] = {}
     what = what_argument(f)
-    for a in f.args:
-        if isinstance(a, Arg):
-            out.append((a, True))
-        elif what is not None:
-            out.append((what, False))
-            what = None
     if what is not None:
-        out.append((what, False))
+        derived[WHAT] = what
     if results.has_unit(f.result):
-        out.append((Arg("unit", Text(example=results.sample_unit(f.result)), UNIT_HELP, default=None), False))
-    return out
+        derived[UNIT] = Arg(UNIT, Text(example=results.sample_unit(f.result)), UNIT_HELP, default=None)
+    out = [(a, True) if isinstance(a, Arg) else (derived.pop(a), False) for a in f.args]
+    return out + [(a, False) for a in derived.values()]
 
 
 def what_argument(f: CellFunction) -> Arg | None:
@@ -71,7 +66,7 @@ class Compiled:
         self.express = results.Expression(f.result)
         derived = {a.name: i for i, (a, own) in enumerate(placed) if not own}
         self._what = derived.get(WHAT)
-        self._unit = derived.get("unit")
+        self._unit = derived.get(UNIT)
 
     def read(self, cells: Sequence[Cell]) -> list[Any]:
         """Return what the readers make of the cells, defaults filled in."""

@@ -116,7 +116,9 @@ class Result:
     gathers: bool = False
 
 
-WHAT: Final = "what"  # stands in `args` where the derived argument goes when that is not the end
+# These stand in `args` where the derived argument goes when that is not the end.
+WHAT: Final = "what"
+UNIT: Final = "unit"
 
 
 @dataclass(frozen=True, slots=True)

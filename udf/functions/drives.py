@@ -9,7 +9,7 @@ import numpy as np
 from ...core import drives
 from .. import kinds
 from ..arguments import Scalar
-from ..declaration import Arg, CellFunction, Example, Field, Result
+from ..declaration import UNIT, Arg, CellFunction, Example, Field, Result
 from ..limits import FRACTION, NONZERO, NOT_NEGATIVE
 from ..working import num
 
@@ -69,6 +69,7 @@ FUNCTIONS = (
             Arg("torque", Scalar(kinds.TORQUE), "of the drive on the load"),
             RATIO,
             Arg("efficiency", Scalar(kinds.RATIO), "power out over power in", FRACTION),
+            UNIT,
             Arg(
                 "load_speed",
                 Scalar(kinds.ANGULAR_VELOCITY),

@@ -113,15 +113,10 @@ FUNCTIONS = (
             Arg("alpha", Spin(kinds.ANGULAR_ACCELERATION), "angular acceleration in the fixed frame"),
         ),
         result=Result(
-            (
-                Field("total", kinds.TORQUE, "net moment on the body", Form.VECTOR),
-                Field("inertial", kinds.TORQUE, "I alpha", Form.VECTOR),
-                Field("gyroscopic", kinds.TORQUE, "omega x (I omega)", Form.VECTOR),
-            ),
-            default="total",
+            (Field("moment", kinds.TORQUE, "net moment on the body, gyroscopic term included", Form.SPACE),)
         ),
-        kernel=balance.spin_torque,
-        working=spin_torque_working,
+        kernel=lambda *v: balance.spin_torque(*v).total,
+        working=lambda values, answer: spin_torque_working(values, balance.spin_torque(*values)),
         source="Euler's equations in vector form (Meriam, Kraige: Dynamics, three-dimensional kinetics)",
         examples=(
             Example(
@@ -161,16 +156,9 @@ FUNCTIONS = (
         group=GROUP,
         line="Kinetic energy of a moving body: translation of the mass center and rotation.",
         args=(BODY_ARG, MOTION_ARG),
-        result=Result(
-            (
-                Field("total", kinds.ENERGY, "kinetic energy"),
-                Field("translation", kinds.ENERGY, "m v_G^2 / 2"),
-                Field("rotation", kinds.ENERGY, "omega.(I omega) / 2"),
-            ),
-            default="total",
-        ),
-        kernel=kinetic_energy,
-        working=kinetic_energy_working,
+        result=Result((Field("energy", kinds.ENERGY, "translation of the mass center and rotation"),)),
+        kernel=lambda *v: kinetic_energy(*v).total,
+        working=lambda values, answer: kinetic_energy_working(values, kinetic_energy(*values)),
         source=SPACE,
         examples=(
             Example(

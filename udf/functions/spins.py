@@ -44,21 +44,12 @@ def instant_center_working(values: tuple[Any, ...], answer: Any) -> list[str]:
     ]
 
 
-class InstantCenter2:
-    """Center [m], spin [rad/s] and how far the two velocities are from one rigid body."""
-
-    def __init__(self, found: spin_fit.InstantCenter) -> None:
-        self.center = found.center
-        self.omega = found.omega
-        self.misfit = found.misfit
-
-
-def instant_center_2(point_a: Any, velocity_a: Any, point_b: Any, velocity_b: Any) -> InstantCenter2:
+def instant_center_2(point_a: Any, velocity_a: Any, point_b: Any, velocity_b: Any) -> Any:
     one_row(point_a=point_a, velocity_a=velocity_a, point_b=point_b, velocity_b=velocity_b)
-    return InstantCenter2(spin_fit.instant_center_two(point_a, velocity_a, point_b, velocity_b))
+    return spin_fit.instant_center_two(point_a, velocity_a, point_b, velocity_b).center
 
 
-def instant_center_2_working(values: tuple[Any, ...], answer: InstantCenter2) -> list[str]:
+def instant_center_2_working(values: tuple[Any, ...], answer: Any) -> list[str]:
     a, va, b, vb = values
     d, dv = b - a, vb - va
     square = float(d @ d)
@@ -68,7 +59,7 @@ def instant_center_2_working(values: tuple[Any, ...], answer: InstantCenter2) ->
         f"d = r_B - r_A = {vec(d, True)} m, v_B - v_A = {vec(dv, True)} m/s",
         f"rigid: (v_B - v_A).d / |d| must vanish, is {num(float(dv @ d) / np.sqrt(square))} m/s",
         f"omega = (dx dvy - dy dvx) / d^2 = {num(w)} rad/s",
-        f"r_C = r_A + (-vy, vx) / omega = {vec(answer.center, True)} m",
+        f"r_C = r_A + (-vy, vx) / omega = {vec(answer, True)} m",
     ]
 
 
@@ -159,20 +150,15 @@ FUNCTIONS = (
             Arg("velocity_b", Vector(kinds.VELOCITY), "its velocity"),
         ),
         result=Result(
-            (
-                Field("center", kinds.LENGTH, "point that is at rest now", Form.VECTOR),
-                Field("omega", kinds.ANGULAR_VELOCITY, "spin, ccw +"),
-                Field("misfit", None, "stretch speed over the larger speed; 0 for a rigid body"),
-            ),
-            default="center",
+            (Field("center", kinds.LENGTH, "point that is at rest now", Form.VECTOR),),
         ),
         kernel=instant_center_2,
         working=instant_center_2_working,
         source=INSTANT,
         examples=(
             Example(
-                '=RB_INSTANT_CENTER_2("(0, 400) mm", "(0.8, 0) m/s", "(0, 100) mm", "(0.2, 0) m/s", "omega", "rpm")',
-                "Spin of the shaker's coupler from two measured points.",
+                '=RB_INSTANT_CENTER_2("(0, 400) mm", "(0.8, 0) m/s", "(0, 100) mm", "(0.2, 0) m/s", "mm")',
+                "About which point the shaker's coupler turns, from two measured points.",
             ),
         ),
     ),
