@@ -188,7 +188,7 @@ class Preparation:
     def _find(self, sheet: Sheet, formula: FormulaCell, where: str, name: str) -> DefinedName:
         found = self.book.named(name, sheet_of(where) if where else sheet.name)
         if found is None:
-            known = [one.name for one in self.book.names if not one.name.startswith("_xlnm.")]
+            known = [one.name for one in self.book.names if one.name.lower() not in ("", name.lower())]
             close = difflib.get_close_matches(name, known, n=1, cutoff=0.6)
             raise UnknownFunction(
                 f"there is no cell or function named {name}",

@@ -16,7 +16,7 @@ from .enginecopy import Prepared, sheet_of, target_of
 from .formulas import Analysis, Resolver, analyse, shifted
 from .sheetxml import FormulaCell, Sheet, element_end, tag_end, unescape
 from .writeback import cached_text
-from .xmlparts import elements
+from .xmlparts import elements, whole
 
 _DATES: Final = frozenset([*range(14, 23), *range(27, 37), *range(45, 48), *range(50, 59)])
 _NOT_CODE: Final = re.compile(r'"[^"]*"|\\.|_.|\*.|\[(?!h+\]|m+\]|s+\])[^\]]*\]', re.IGNORECASE)
@@ -105,9 +105,9 @@ class Reading:
             if depth == 1:
                 in_cells = tag == "cellXfs"
             elif tag == "numFmt" and shows_date(attributes.get("formatCode", "")):
-                own.add(int(attributes.get("numFmtId", "0")))
+                own.add(whole(attributes.get("numFmtId", "0")))
             elif tag == "xf" and in_cells and depth == 2:
-                number = int(attributes.get("numFmtId", "0"))
+                number = whole(attributes.get("numFmtId", "0"))
                 if number in own or number in _DATES:
                     styles.add(str(count))
                 count += 1

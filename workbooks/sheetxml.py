@@ -9,13 +9,15 @@ from typing import Final
 
 from .addresses import Area, area, cell_name, row_column
 from .errors import FileRefused
-from .xmlparts import SHEET_SPACES, parse, parser
+from .xmlparts import SHEET_SPACES, parse, parser, whole
 
 _TAG: Final = re.compile(rb"<[^\"'>]*(?:\"[^\"]*\"[^\"'>]*|'[^']*'[^\"'>]*)*>")
 _NAME: Final = re.compile(rb"<([^\s/>:]+:)?")
 _ENTITY: Final = re.compile(rb"&(#x[0-9A-Fa-f]+|#[0-9]+|lt|gt|amp|quot|apos);")
 _NAMED: Final = {b"lt": b"<", b"gt": b">", b"amp": b"&", b"quot": b'"', b"apos": b"'"}
-_WORDS: Final = {f"{space}|{word}": word for space in SHEET_SPACES for word in ("c", "f", "v", "is", "row")}
+_WORDS: Final = {
+    f"{space}|{word}": word for space in SHEET_SPACES for word in ("c", "f", "v", "is", "row", "sheetData")
+}
 
 
 @dataclass(slots=True)
@@ -58,7 +60,8 @@ class Sheet:
     formulas: list[FormulaCell]
     cells: list[tuple[int, dict[str, str]]]
     rows: list[tuple[int, int]]
-    end: int  # where the closing tag of sheetData starts
+    data_start: int  # where the sheetData element starts
+    end: int  # where its closing tag starts; -1 when it has none
     prefix: bytes
     _by_ref: dict[str, tuple[int, dict[str, str]]] = field(default_factory=dict)
 
@@ -106,6 +109,7 @@ def scan(name: str, part: str, data: bytes) -> Sheet:
     cells: list[tuple[int, dict[str, str]]] = []
     rows: list[tuple[int, int]] = []
     found: list[tuple[int, int, dict[str, str]]] = []
+    data_start: list[int] = []
     inner: dict[int, int] = {}  # index of a formula's cell: where its value starts
     owner = -1  # index of the cell whose formula was seen last
     reader = parser(part)
@@ -126,19 +130,23 @@ def scan(name: str, part: str, data: bytes) -> Sheet:
         elif word == "f":
             owner = len(cells) - 1
             found.append((owner, reader.CurrentByteIndex, attributes))
+        elif word == "sheetData":
+            data_start.append(reader.CurrentByteIndex)
         else:
-            number = attributes.get("r")
-            rows.append(
-                (int(number) if number else (rows[-1][0] + 1 if rows else 1), reader.CurrentByteIndex)
-            )
+            number = whole(attributes["r"]) if "r" in attributes else (rows[-1][0] + 1 if rows else 1)
+            rows.append((number, reader.CurrentByteIndex))
 
     reader.StartElementHandler = start
     parse(reader, data, part)
     formulas = [_formula(data, cells[i], at, rule, inner.get(i, -1)) for i, at, rule in found]
-    prefix, end = _sheet_data(data, rows)
+    if len(data_start) != 1:
+        raise FileRefused(f"the sheet {name} has no cells part, or two of them")
+    mark = _NAME.match(data, data_start[0])
+    prefix = (mark[1] if mark else None) or b""
+    end = data.rfind(b"</" + prefix + b"sheetData")
     if len({attributes["r"] for _, attributes in cells}) != len(cells):
         raise FileRefused(f"the sheet {name} holds a cell twice")
-    return Sheet(name, part, data, formulas, cells, rows, end, prefix)
+    return Sheet(name, part, data, formulas, cells, rows, data_start[0], end, prefix)
 
 
 def _next_ref(cells: list[tuple[int, dict[str, str]]], rows: list[tuple[int, int]]) -> str:
@@ -192,15 +200,6 @@ def _formula(
         inner,
         v_end,
     )
-
-
-def _sheet_data(data: bytes, rows: list[tuple[int, int]]) -> tuple[bytes, int]:
-    """Return the prefix of the sheet's elements and where the closing tag of sheetData starts."""
-    if not rows:
-        return b"", -1
-    found = _NAME.match(data, rows[0][1])
-    prefix = (found[1] if found else None) or b""
-    return prefix, data.rfind(b"</" + prefix + b"sheetData")
 
 
 def splice(data: bytes, edits: Iterable[tuple[int, int, bytes]]) -> bytes:

@@ -180,9 +180,14 @@ def insertions(sheet: Sheet, row: int, cells: list[tuple[str, Value]]) -> Iterab
         raise FileRefused(f"the rows of sheet {sheet.name} are not in order")
     at = bisect_right(numbers, row) - 1
     if at < 0 or numbers[at] != row:
+        whole = b'<%brow r="%d">%b</%brow>' % (prefix, row, b"".join(piece for _, piece in made), prefix)
+        if sheet.end < 0:
+            start = sheet.data_start
+            element = b"<%bsheetData>%b</%bsheetData>" % (prefix, whole, prefix)
+            yield start, tag_end(sheet.data, start), element
+            return
         place = sheet.rows[at + 1][1] if at + 1 < len(numbers) else sheet.end
-        whole = b"".join(piece for _, piece in made)
-        yield place, place, b'<%brow r="%d">%b</%brow>' % (prefix, row, whole, prefix)
+        yield place, place, whole
         return
     start = sheet.rows[at][1]
     inside = tag_end(sheet.data, start)

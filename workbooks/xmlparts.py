@@ -69,3 +69,10 @@ def elements(data: bytes, part: str) -> Iterator[tuple[str, dict[str, str], str,
 def truth(text: str | None, default: bool = False) -> bool:
     """Return an XML boolean attribute as a bool."""
     return default if text is None else text.strip().lower() in ("1", "true", "on")
+
+
+def whole(text: str) -> int:
+    """Return a whole number that an attribute holds."""
+    if not (text.isascii() and text.isdigit()):
+        raise FileRefused(f"the file holds {text[:20]!r} where a whole number belongs")
+    return int(text)

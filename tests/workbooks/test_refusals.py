@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+import random
 import struct
 import zipfile
 from pathlib import Path
@@ -154,3 +155,38 @@ def test_macros_are_kept_and_signed_files_are_written_only_to_another_file(tmp_p
     assert [warning.kind for warning in result.warnings] == ["signature"]
     assert path.read_bytes() == signed
     assert recalculate(path, write=False, functions={}).path is None
+
+
+def busy_book() -> dict[str, bytes]:
+    """Return the parts of a small workbook that uses most of what is read."""
+    cells = {
+        "A1": '<c r="A1" t="s" s="1"><v>0</v></c>', "B1": '<c r="B1"><v>2</v></c>',
+        "C1": '<c r="C1"><f>SUM(A1:B1)*arm</f><v>1</v></c>',
+        "C2": '<c r="C2"><f t="array" ref="C2:D3">{1,2;3,4}</f></c>',
+        "E1": '<c r="E1"><f t="shared" ref="E1:E2" si="0">RB_X(B1)</f></c>',
+        "E2": '<c r="E2"><f t="shared" si="0"/></c>',
+    }  # fmt: skip
+    strings = f'<sst xmlns="{parts.MAIN}"><si><t>4 kg</t></si></sst>'
+    styles = f'<styleSheet xmlns="{parts.MAIN}"><cellXfs><xf numFmtId="0"/><xf numFmtId="14"/></cellXfs></styleSheet>'
+    extra = {"xl/sharedStrings.xml": strings, "xl/styles.xml": styles}
+    return parts.unpacked(
+        parts.workbook({"S": cells}, names={"arm": "S!$B$1"}, parts=extra, calc='<calcPr calcId="1"/>')
+    )
+
+
+@pytest.mark.parametrize(
+    "part", [SHEET, BOOK, "xl/sharedStrings.xml", "xl/styles.xml", "xl/_rels/workbook.xml.rels"]
+)
+def test_changed_characters_inside_a_part_end_in_a_result_or_a_refusal(part: str) -> None:
+    dice = random.Random(part)
+    good = busy_book()
+    refused = 0
+    for _ in range(250):
+        data = bytearray(good[part])
+        for _ in range(dice.randint(1, 3)):
+            data[dice.randrange(len(data))] = dice.choice(b'0129ABCZ:$"<>/= x&;,')
+        try:
+            recalculate(parts.packed({**good, part: bytes(data)}), functions={"RB_X": lambda x: 1.0})
+        except RigidsheetError:
+            refused += 1
+    assert 20 < refused <= 250
