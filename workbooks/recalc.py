@@ -118,7 +118,7 @@ def recalculate(
     """
     seen = None if isinstance(source, bytes) else saving.load(Path(source))
     data = source if isinstance(source, bytes) else (seen.data if seen is not None else b"")
-    with _located(seen), _collector_paused():
+    with located(seen), _collector_paused():
         target = Path(to) if to is not None else (seen.path if seen is not None else None)
         writes = (target is not None) if write is None else write
         if writes and target is None:
@@ -142,7 +142,7 @@ def _same_file(one: Path, other: Path) -> bool:
 
 
 @contextmanager
-def _located(seen: saving.Seen | None) -> Iterator[None]:
+def located(seen: saving.Seen | None) -> Iterator[None]:
     """Add the file's name to a refusal that does not say where."""
     try:
         yield

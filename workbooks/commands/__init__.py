@@ -1,0 +1,1 @@
+"""The commands of `rigidsheet`, a module for each thing a person comes for."""

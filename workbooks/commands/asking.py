@@ -1,0 +1,134 @@
+"""Questions in the terminal: which functions there are, and what one formula gives."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import click
+
+from ..printing import heading, table
+from .ending import ERROR, Refused, say
+
+if TYPE_CHECKING:
+    from rigidsheet.udf.declaration import Arg, CellFunction, Field
+
+
+@click.command()
+@click.argument("word", required=False)
+def functions(word: str | None) -> None:
+    """List the cell functions by group; with a WORD those that speak of it, with a name its full help."""
+    from rigidsheet.udf import catalogue
+
+    if word is None:
+        _list(list(catalogue.FUNCTIONS.values()))
+        return
+    exact = catalogue.FUNCTIONS.get(word.strip().lstrip("=").upper())
+    if exact is not None:
+        _help(exact)
+        return
+    found = [f for f in catalogue.FUNCTIONS.values() if _speaks_of(f, word.strip().lower())]
+    if not found:
+        from rigidsheet.udf.words import nearest
+
+        close = nearest(word, catalogue.FUNCTIONS)
+        raise Refused(f"no function speaks of {word!r}." + (f" Did you mean {close}?" if close else ""))
+    _list(found)
+
+
+def _speaks_of(f: CellFunction, word: str) -> bool:
+    from rigidsheet.udf.compiling import arguments_of
+
+    texts = [f.name, f.group, f.line, f.source, *(field.name for field in f.result.fields)]
+    for argument in arguments_of(f):
+        texts += [argument.name, argument.help, argument.shape.words()]
+    return any(word in text.lower() for text in texts)
+
+
+def _list(found: list[CellFunction]) -> None:
+    for group in dict.fromkeys(f.group for f in found):
+        heading(group)
+        table(("function", "what it gives"), [(f.name, f.line) for f in found if f.group == group])
+        click.echo()
+    click.echo("Full help of one: rigidsheet functions " + found[0].name)
+
+
+def _help(f: CellFunction) -> None:
+    from rigidsheet.udf.compiling import arguments_of
+
+    arguments = arguments_of(f)
+    names = ", ".join(f"[{a.name}]" if a.optional else a.name for a in arguments)
+    heading(f"{f.name}({names})")
+    click.echo(f"{f.line}\n")
+    heading("Arguments")
+    table(("name", "what to give", "what it is"), [(a.name, _form(a), _meaning(a)) for a in arguments])
+    click.echo()
+    heading("Result")
+    if f.result.open:
+        click.echo("  Rows of label, value and unit; among them:")
+    table(("result", "unit", "what it is"), [(one.name, _unit(one), one.help) for one in f.result.fields])
+    click.echo()
+    heading("Source")
+    click.echo(f"  {f.source}\n")
+    heading("Examples")
+    for example in f.examples:
+        click.echo(f"  {example.formula}\n      {example.says}")
+    click.echo(f"\nA bare number is in the unit named in brackets. Group: {f.group}.")
+
+
+def _form(argument: Arg) -> str:
+    form = argument.shape.words()
+    return f"{form}, {argument.limit.words}" if argument.limit is not None else form
+
+
+def _meaning(argument: Arg) -> str:
+    if argument.optional and "omitted" not in argument.help:
+        return f"{argument.help}; may be left out"
+    return argument.help
+
+
+def _unit(field: Field) -> str:
+    from rigidsheet.udf.results import dimensional
+
+    if field.kind is None:
+        return ""
+    return field.kind.si if dimensional(field.kind) else "-"
+
+
+@click.command("try", context_settings={"ignore_unknown_options": True})
+@click.argument("formula")
+@click.pass_context
+def try_formula(ctx: click.Context, formula: str) -> None:
+    """Work out one FORMULA and show how: rigidsheet try 'RB_TORQUE("85 kg*m^2", "40 deg/s^2")'.
+
+    Calls may stand inside one another, an argument in the middle may be left out, and blocks of cells are
+    written as {1,2;3,4}: a comma to the right, a semicolon downward. Refused: the reason, and exit code 2.
+    """
+    from ..trial import tried
+    from .showing import shown
+
+    trial = tried(formula)
+    for step in trial.steps:
+        heading(step.name)
+        if step.refusal is not None:
+            click.echo(f"  refused with {step.refusal.error}: {step.refusal.reason}")
+        for line in step.lines:
+            click.echo(f"  {line}")
+        click.echo()
+    for sentence in trial.warnings:
+        click.echo(f"Warning: {sentence}")
+    if trial.error:
+        say(f"{trial.error}: {trial.reason}")
+        ctx.exit(ERROR)
+    if len(trial.rows) == 1 and len(trial.rows[0]) == 1:
+        click.echo(f"= {shown(trial.rows[0][0])} {trial.unit}".rstrip())
+        return
+    for row in _aligned([[shown(value) for value in row] for row in trial.rows]):
+        click.echo(f"= {row}")
+
+
+def _aligned(rows: list[list[str]]) -> list[str]:
+    widths = [max(len(row[i]) for row in rows) for i in range(len(rows[0]))]
+    return [
+        " | ".join(text.ljust(width) for text, width in zip(row, widths, strict=True)).rstrip()
+        for row in rows
+    ]
