@@ -43,7 +43,9 @@ def shown(cell: object) -> str:
         rows, columns = len(cell), len(cell[0]) if cell else 0
         return f"a block of {rows} x {columns} cells"
     if isinstance(cell, float):
-        return f"{cell:.10g}"
+        if cell != cell:
+            return "NaN, which is not a number"
+        return f"{cell:.10g}" if abs(cell) != math.inf else "a number beyond all bounds"
     text = str(cell)
     return f"'{text if len(text) <= 40 else text[:37] + '...'}'"
 
@@ -122,6 +124,19 @@ def unit_factor(argument: str, kind: Kind, unit: str, where: str = "") -> float:
         raise refused from None
 
 
+def blank_unit(argument: str, kind: Kind, cell: Block) -> None:
+    """Refuse numbers beside units where one of the unit cells is blank."""
+    if any(is_unit_text(row[1]) for row in cell):
+        for i, row in enumerate(cell, 1):
+            if row[1] is None or row[1] == "":
+                raise InputError(
+                    argument,
+                    f"{asked(kind)} with a unit in each row; the unit cell is blank",
+                    remedy=f"Type the unit, like '{kind.si}'",
+                    where=f"row {i}",
+                )
+
+
 def is_unit_text(cell: Value) -> bool:
     """Say whether a cell can only be a unit text: text that does not begin like a number."""
     if type(cell) is not str:
@@ -193,6 +208,8 @@ class Scalar:
                 )
         if columns == 1 or (columns == 2 and all(is_unit_text(row[1]) for row in cell)):
             return column(argument, self.kind, cell)
+        if columns == 2:
+            blank_unit(argument, self.kind, cell)
         raise wrong(argument, f"{asked(self.kind)}: one cell, a number beside its unit, or a column", cell)
 
     def words(self) -> str:
@@ -223,7 +240,7 @@ def column(argument: str, kind: Kind, cell: Block) -> Array:
             raise unit_leads(argument, kind, cell)
         f = unit_factor(argument, kind, str(cells[0]))
         cells, start = cells[1:], 2
-    return f * numbers(argument, kind, cells, start, united=f != 1.0)
+    return f * numbers(argument, kind, cells, start, united=len(cells) < len(cell))
 
 
 def numbers(argument: str, kind: Kind, cells: Sequence[Value], start: int = 1, united: bool = False) -> Array:
@@ -315,6 +332,11 @@ class Spin:
         one = Scalar(kind).reader(argument, limit)
         rule = f"{asked(kind)}: one number about z, or x y z in three cells, then the unit"
 
+        def in_space(spin: Array) -> Array:
+            if spin.shape[-1] != 3:
+                raise InputError(argument, f"{rule}; got two numbers")
+            return spin
+
         def read(cell: Cell) -> float | Array | Upright:
             if type(cell) is list:
                 rows, columns = len(cell), len(cell[0])
@@ -325,11 +347,12 @@ class Spin:
                     and (rows == 3 or (rows == 4 and is_unit_text(cell[-1][0])))
                     and not (is_unit_text(cell[0][0]) or is_unit_text(cell[2][0]))
                 ):
-                    return Upright(vectors(argument, kind, cell, rule))
+                    spin = vectors(argument, kind, cell, rule)
+                    return Upright(spin, spin[:, None])
                 if columns in (3, 4):
-                    return vectors(argument, kind, cell, rule)
+                    return in_space(vectors(argument, kind, cell, rule))
             elif type(cell) is str and cell.lstrip().startswith("("):
-                return vector_text(argument, kind, cell, rule)
+                return in_space(vector_text(argument, kind, cell, rule))
             value = one(cell)
             if type(value) is float:
                 return value
@@ -377,6 +400,8 @@ def vectors(argument: str, kind: Kind, cell: Block, rule: str) -> Array:
     # numbers beside their units (downward), or numbers over their units: one vector, a unit for each part
     if columns == 2 and rows in (2, 3) and all(is_unit_text(r[1]) for r in cell):
         return parts_with_units(argument, kind, [r[0] for r in cell], [str(r[1]) for r in cell])
+    if columns == 2 and rows in (2, 3) and type(cell[0][0]) is float:
+        blank_unit(argument, kind, cell)
     if rows == 2 and columns in (2, 3) and all(map(is_unit_text, cell[1])):
         return parts_with_units(argument, kind, cell[0], [str(u) for u in cell[1]])
     return many_vectors(argument, kind, cell, rule)
@@ -446,17 +471,20 @@ def parts_with_units(argument: str, kind: Kind, cells: Sequence[Value], units: S
 
 @dataclass(frozen=True, slots=True)
 class Offset:
-    """A distance (or a column of them), or a vector x y / x y z: float, (n,), (2,), (3,)."""
+    """A distance (or a column of them), or a vector x y / x y z: float, (3,), (n, 3).
+
+    A column of distances is given along x, which is the same distance from the z axis.
+    """
 
     kind: Kind
-    role: Role = Role.OTHER
+    role: Role = Role.OFFSET
 
     def reader(self, argument: str, limit: Limit | None) -> Reader:
         kind = self.kind
         distance = Scalar(kind).reader(argument, NOT_NEGATIVE)
         vector = Vector(kind).reader(argument, limit)
 
-        def read(cell: Cell) -> float | Array:
+        def read(cell: Cell) -> float | Array | Upright:
             if type(cell) is list:
                 rows, columns = len(cell), len(cell[0])
                 plain = all(type(c) is float for row in cell for c in row[:2])
@@ -464,7 +492,11 @@ class Offset:
                     return lifted(vector(cell))
             elif type(cell) is str and cell.lstrip().startswith("("):
                 return lifted(vector(cell))
-            return distance(cell)  # type: ignore[no-any-return]
+            if type(cell) is list and len(cell[0]) == 1 and three_numbers(cell):
+                upright = Scalar(kind).reader(argument, None)(cell)
+                return Upright(upright, along_x(upright))
+            value = distance(cell)
+            return value if type(value) is float else along_x(value)
 
         return read
 
@@ -473,6 +505,15 @@ class Offset:
 
     def sample(self) -> Cell:
         return [[0.3, -0.4, 0.5]]
+
+
+def three_numbers(cell: Block) -> bool:
+    """Say whether a column holds three numbers, perhaps with their unit first or last."""
+    return len(cell) == 3 + (is_unit_text(cell[-1][0]) or is_unit_text(cell[0][0]))
+
+
+def along_x(distances: Array) -> Array:
+    return np.stack((distances, np.zeros_like(distances), np.zeros_like(distances)), axis=-1)
 
 
 def lifted(vector: Array) -> Array:

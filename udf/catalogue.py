@@ -6,7 +6,7 @@ import functools
 from types import MappingProxyType
 from typing import Final
 
-from ..core.errors import AbsentError
+from ..core.errors import AbsentError, quote
 from .compiling import Compiled
 from .declaration import CellFunction
 from .functions import (
@@ -33,7 +33,7 @@ def find(name: str) -> Compiled:
     """Return the function called `name`, compiled; AbsentError when there is none."""
     f = FUNCTIONS.get(name) or FUNCTIONS.get(name.strip().upper())
     if f is None:
-        raise AbsentError("", f"There is no function {name}", remedy=hint(name, FUNCTIONS))
+        raise AbsentError("", f"There is no function {quote(name)}", remedy=hint(name, FUNCTIONS))
     return Compiled(f)
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Sequence
 from types import MappingProxyType
 from typing import Any, Final
@@ -13,6 +14,7 @@ from . import frame, results
 from .cells import OMITTED, Answer, Cell, CellError, Omitted, Refusal
 from .declaration import UNIT, WHAT, Arg, CellFunction, Reader
 from .words import Choice, Rest, Text
+from .working import NOT_FINITE
 
 # One table from error class to what the cell shows.
 CELL_ERRORS: Final = MappingProxyType(
@@ -97,18 +99,34 @@ class Compiled:
         what = values[self._what] if self._what is not None else None
         unit = values[self._unit] if self._unit is not None else None
         own, planar = self.frame.align([values[i] for i in self.own])
-        self.express.check(what, unit, own)
+        self.express.check(what, unit, lambda: self.frame.has_columns(own))
         return self.express(self.function.kernel(*own), what, unit, planar)
 
     def working(self, cells: Sequence[Cell]) -> list[str]:
         """Return the lines of the working, or raise as `answer` does."""
+        self.answer(cells)  # what is refused has no working
         values = self.read(cells)
-        own, _ = self.frame.align([values[i] for i in self.own])
+        own, planar = self.frame.align([values[i] for i in self.own])
         own, rows = (own, 1) if self.function.result.gathers else self.frame.first_row(own)
-        lines = list(self.function.working(tuple(own), self.function.kernel(*own)))
+        answer = self.function.kernel(*own)
+        lines = list(self.function.working(tuple(own), answer))
+        unit = values[self._unit] if self._unit is not None else None
+        if unit is not None:
+            what = values[self._what] if self._what is not None else None
+            lines += united(self.express(answer, what, unit, planar), unit)
         if rows > 1:
             lines.append(f"Row 1 of {rows}; the other rows go the same way.")
         return lines
+
+
+def united(answer: Answer, unit: str) -> list[str]:
+    """Return the lines that tell a result in the unit asked for."""
+    if not isinstance(answer, list):
+        return [f"In the unit asked for: {answer:.6g} {unit}" if isinstance(answer, float) else answer]
+    rows = [", ".join(c if isinstance(c, str) else f"{c:.6g}" for c in row) for row in answer]
+    if len(rows) == 1:
+        return [f"In the unit asked for: ({rows[0]}) {unit}"]
+    return [f"In the unit asked for, {unit}:", *(f"  [{row}]" for row in rows)]
 
 
 PLAIN: Final = frozenset({float, str, bool, type(None), Omitted})
@@ -126,11 +144,11 @@ def settled(cells: Sequence[Cell]) -> tuple[Sequence[Cell], tuple[int, CellError
             continue
         if t is CellError:
             return cells, (i, c)  # type: ignore[return-value]
-        if t is list and c:
+        if t is list and c and set(map(type, c)) == {list}:  # type: ignore[arg-type]
             types = set().union(*(map(type, row) for row in c))  # type: ignore[union-attr]
             if CellError in types:
                 return cells, (i, next(v for row in c for v in row if type(v) is CellError))  # type: ignore[union-attr]
-            if types <= PLAIN and (len(c) > 1 or len(c[0]) > 1):  # type: ignore[arg-type,index]
+            if types <= PLAIN and (len(c) > 1 or len(c[0]) > 1) and len(set(map(len, c))) == 1:  # type: ignore[arg-type,index]
                 continue
         out = list(cells) if out is None else out
         out[i] = plain(c)
@@ -140,18 +158,27 @@ def settled(cells: Sequence[Cell]) -> tuple[Sequence[Cell], tuple[int, CellError
 def plain(cell: Any) -> Any:
     """Return what a careless host handed over as a cell: ints as floats, tuples as lists, 1 x 1 collapsed."""
     if isinstance(cell, (list, tuple, np.ndarray)):
+        if isinstance(cell, np.ndarray):
+            cell = cell.tolist()  # Python's own numbers and texts
+            if not isinstance(cell, list):
+                return plain(cell)
         rows = [
             [plain(v) for v in row] if isinstance(row, (list, tuple, np.ndarray)) else [plain(row)]
             for row in cell
         ]
+        if any(isinstance(v, list) for row in rows for v in row):
+            raise InputError("", "A block of cells must have rows and columns only")
         if not rows or not rows[0] or len({len(r) for r in rows}) != 1:
             raise InputError("", "A block of cells must be rectangular and not empty")
         return rows[0][0] if len(rows) == 1 and len(rows[0]) == 1 else rows
-    if isinstance(cell, (bool, str, CellError, Omitted)) or cell is None:
-        return cell
-    if isinstance(cell, (int, float, np.number)):
-        return float(cell)
-    return cell
+    if isinstance(cell, (bool, np.bool_)):
+        return bool(cell)
+    if isinstance(cell, (int, float, np.number)) and not isinstance(cell, np.complexfloating):
+        try:
+            return float(cell)
+        except OverflowError:
+            return math.inf
+    return str(cell) if isinstance(cell, str) else cell
 
 
 def refusal_of(error: RigidsheetError) -> Refusal:
@@ -170,7 +197,7 @@ def short(text: str, most: int = 255) -> str:
 def guarded(compiled: Compiled, act: Callable[[Sequence[Cell]], Any], cells: Sequence[Cell]) -> Any:
     """Run `act`, turning errors that enter and errors that are raised into refusals."""
     try:
-        if not compiled.rest:
+        if not compiled.rest or type(cells[0] if cells else None) is CellError:
             cells, entering = settled(cells)
             if entering is not None:
                 position, error = entering
@@ -181,6 +208,8 @@ def guarded(compiled: Compiled, act: Callable[[Sequence[Cell]], Any], cells: Seq
             return act(cells)
     except RigidsheetError as error:
         return refusal_of(error)
+    except (ArithmeticError, np.linalg.LinAlgError):  # where arrays would give what the gate refuses
+        return refusal_of(PhysicsError("", NOT_FINITE))
     except Exception as error:  # a host must get a cell, whatever went wrong inside
         text = f"{compiled.function.name} could not answer these cells ({type(error).__name__}: {error})."
         return Refusal("#VALUE!", short(text))

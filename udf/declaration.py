@@ -22,6 +22,8 @@ class Role(Enum):
     SPACE = "space"  # always x y z
     SPIN = "spin"  # float or (n, 1) about z; (3,) or (n, 3)
     INERTIA = "inertia"  # float or (n,) about z; (3, 3)
+    OFFSET = "offset"  # float, (3,) or (n, 3); a column of distances lies along x
+    BUNDLE = "bundle"  # columns inside a record: amounts, sizes
     OTHER = "other"  # records, tables, words: left alone
 
 

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
 from typing import Any
 
 import numpy as np
@@ -13,12 +14,13 @@ from .declaration import Arg, Role
 
 @dataclass(frozen=True, slots=True)
 class Upright:
-    """Three numbers below each other where a spin is asked: x y z, or a column if the call has three rows."""
+    """Three numbers below each other: x y z, or a column if the call has three rows.
+
+    `column` is what they are as a column: (3, 1) for a spin, (3, 3) along x for distances.
+    """
 
     array: Any
-
-    def as_column(self) -> Any:
-        return self.array[:, None]
+    column: Any
 
 
 class Frame:
@@ -35,19 +37,25 @@ class Frame:
         self._spins = [i for i, r in enumerate(self._roles) if r is Role.SPIN]
         self._tensors = [i for i, r in enumerate(self._roles) if r is Role.INERTIA]
         self._scalars = [i for i, r in enumerate(self._roles) if r in (Role.SCALAR, Role.INERTIA)]
+        self._offsets = [i for i, r in enumerate(self._roles) if r is Role.OFFSET]
+        self._bundles = [i for i, r in enumerate(self._roles) if r is Role.BUNDLE]
         self._plain = not (self._vectors or self._spins)
+        self._lone = not (self._offsets or self._bundles)
 
     def align(self, values: list[Any]) -> tuple[list[Any], bool]:
         """Return the values with vectors and spins lifted to x y z, and whether the call is planar."""
         if self._plain:
-            if any(type(values[i]) is np.ndarray for i in self._scalars):
-                self._rows(values)
+            if not self._lone or any(type(values[i]) is np.ndarray for i in self._scalars):
+                rows = self._rows(values)
+                for i in self._offsets:
+                    if type(values[i]) is Upright:
+                        values[i] = self._offset(values, i, rows)
             return values, False
         spins, vectors = self._spins, self._vectors
         upright = [i for i in spins if type(values[i]) is Upright]
         rows = self._rows(values)
         for i in upright:
-            values[i] = values[i].as_column() if rows == 3 else values[i].array
+            values[i] = values[i].column if rows == 3 else values[i].array
         # a tensor couples the axes: what it gives is never one number about z
         spatial = any(type(values[i]) is np.ndarray and values[i].shape == (3, 3) for i in self._tensors)
         planar = (
@@ -70,24 +78,39 @@ class Frame:
                 values[i] = np.concatenate((np.zeros((len(v), 2)), v), axis=1)
         return values, planar
 
+    def _offset(self, values: list[Any], position: int, rows: int) -> Any:
+        """Return three offsets below each other as what the other arguments say they are."""
+        upright: Upright = values[position]
+        if any(_is_tensor(values[i]) for i in self._tensors):
+            return upright.array
+        if rows == 3:
+            return upright.column
+        raise InputError(
+            self._names[position],
+            "clear; three cells below each other are x y z or three distances",
+            remedy="Write x y z side by side, or hand in three rows of the other arguments too",
+        )
+
+    def has_columns(self, values: list[Any]) -> bool:
+        """Say whether the call has several rows."""
+        return self._rows(values) > 1
+
     def _rows(self, values: list[Any]) -> int:
         """Return the number of rows of the call; refuse columns of different length."""
         rows, first = 1, ""
-        for i in (*self._vectors, *self._spins, *self._scalars):
-            v = values[i]
-            if type(v) is not np.ndarray or (self._roles[i] is Role.INERTIA and v.shape == (3, 3)):
+        for i, (value, role) in enumerate(zip(values, self._roles, strict=True)):
+            if type(value) is float:
                 continue
-            if self._roles[i] in (Role.VECTOR, Role.SPIN) and v.ndim == 1:
-                continue
-            if len(v) == 1:
-                continue
-            if rows == 1:
-                rows, first = len(v), self._names[i]
-            elif len(v) != rows:
-                raise InputError(
-                    self._names[i],
-                    f"a column as long as `{first}`, {rows} rows, or one value; got {len(v)} rows",
-                )
+            for count in _lengths(value, role):
+                if count == 1:
+                    continue
+                if rows == 1:
+                    rows, first = count, self._names[i]
+                elif count != rows:
+                    raise InputError(
+                        self._names[i],
+                        f"a column as long as `{first}`, {rows} rows, or one value; got {count} rows",
+                    )
         return rows
 
     def first_row(self, values: list[Any]) -> tuple[list[Any], int]:
@@ -95,11 +118,31 @@ class Frame:
         rows = self._rows(values)
         if rows == 1:
             return values, 1
-        out = list(values)
-        for i in (*self._vectors, *self._spins):
-            if type(out[i]) is np.ndarray and out[i].ndim == 2:
-                out[i] = out[i][0]
-        for i in self._scalars:
-            if type(out[i]) is np.ndarray and out[i].ndim == 1:
-                out[i] = float(out[i][0])
-        return out, rows
+        return [_first(v, role) for v, role in zip(values, self._roles, strict=True)], rows
+
+
+def _is_tensor(value: Any) -> bool:
+    return type(value) is np.ndarray and value.shape == (3, 3)
+
+
+def _lengths(value: Any, role: Role) -> Sequence[int]:
+    """Return the number of rows of each column that an argument holds."""
+    if role is Role.BUNDLE:
+        inner = value.values() if isinstance(value, dict) else (getattr(value, "number", None),)
+        return [len(v) for v in inner if type(v) is np.ndarray and v.ndim]
+    if type(value) is not np.ndarray or role is Role.OTHER:
+        return ()
+    if value.ndim == 1:
+        return () if role in (Role.VECTOR, Role.SPIN, Role.OFFSET) else (len(value),)
+    return () if role is Role.INERTIA and value.shape == (3, 3) else (len(value),)
+
+
+def _first(value: Any, role: Role) -> Any:
+    """Return the first row of what an argument holds."""
+    if role is Role.BUNDLE:
+        if isinstance(value, dict):
+            return {k: _first(v, Role.SCALAR) for k, v in value.items()}
+        return replace(value, number=_first(value.number, Role.SCALAR))
+    if not any(_lengths(value, role)):
+        return value
+    return float(value[0]) if value.ndim == 1 else value[0]

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import Any, Final
 
 import numpy as np
@@ -13,6 +14,7 @@ from .declaration import Field, Form, Result, Row
 from .kinds import Kind
 from .units import factor
 from .words import hint
+from .working import NOT_FINITE
 
 ALL: Final = "all"
 
@@ -60,10 +62,10 @@ class Expression:
             return None
         return self._fields[word]
 
-    def check(self, what: str | None, unit: str | None, values: list[Any]) -> None:
-        """Refuse a `unit` that cannot apply before the kernel runs."""
+    def check(self, what: str | None, unit: str | None, columns: Callable[[], bool]) -> None:
+        """Refuse a `unit` or a record that cannot be, before the kernel runs."""
         if self.result.open:
-            if unit is not None and what is None:
+            if unit is not None and (what is None or folded(what) == ALL):
                 raise InputError("unit", "left out when all rows are asked", remedy="Choose one with `what`")
             return
         field = self.chosen(what)
@@ -76,11 +78,7 @@ class Expression:
                 raise InputError("unit", f"left out for '{field.name}', which carries no unit")
             assert field.kind is not None
             factor(unit, field.kind, "unit")
-        if (
-            field is None
-            and not self.result.gathers
-            and any(type(v) is np.ndarray and v.ndim == 2 and v.shape != (3, 3) for v in values)
-        ):
+        if field is None and not self.result.gathers and columns():
             raise InputError("what", "given when columns are handed in: one result for each row")
 
     def __call__(self, answer: Any, what: str | None, unit: str | None, planar: bool) -> Answer:
@@ -129,9 +127,7 @@ def express(value: Any, form: Form, planar: bool) -> Answer:
 def finite(value: float) -> float:
     """The gate for one number: nothing but finite floats leaves, and no negative zero."""
     if value - value != 0.0:
-        raise PhysicsError(
-            "", "The result is not a finite number; the inputs are too large, too small or contradictory"
-        )
+        raise PhysicsError("", NOT_FINITE)
     return value + 0.0
 
 

@@ -94,7 +94,7 @@ class Sizes:
     """Sizes by label: dict of label to float, or to (n,) when given as columns under a header."""
 
     example: str = "OD 114.3 mm; ID 101.7 mm; L 520 mm"
-    role: Role = Role.OTHER
+    role: Role = Role.BUNDLE
 
     def reader(self, argument: str, limit: Limit | None) -> Reader:
         rule = "labelled sizes, like 'OD 114.3 mm; L 520 mm' or rows of label, value and unit"

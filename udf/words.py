@@ -105,13 +105,19 @@ class Amount:
 class AnyQuantity:
     """One quantity of whatever kind, or a column of numbers with one unit."""
 
-    role: Role = Role.OTHER
+    role: Role = Role.BUNDLE
 
     def reader(self, argument: str, limit: Limit | None) -> Reader:
         def read(cell: Cell) -> Amount:
             if type(cell) is not list:
                 return one_amount(argument, cell)
             flat = [c for row in cell for c in row]
+            if len(flat) == 2 and is_unit_text(flat[0]) and type(flat[1]) is float:
+                raise InputError(
+                    argument,
+                    f"{AMOUNT}; got the unit {shown(flat[0])} first",
+                    remedy="Put the number first and the unit beside or below it",
+                )
             if len(flat) == 2 and is_unit_text(flat[1]):
                 amount = one_amount(argument, flat[0])
                 if amount.unit:

@@ -2,12 +2,19 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterable
-from typing import Any
+from typing import Any, Final
+
+from ..core.errors import PhysicsError
+
+NOT_FINITE: Final = "The result is not a finite number; the inputs are too large, too small or contradictory"
 
 
 def num(value: Any, digits: int = 6) -> str:
-    """Return a number to `digits` significant digits, without a negative zero."""
+    """Return a number to `digits` significant digits, without a negative zero; refuse one that is not finite."""
+    if not math.isfinite(value):
+        raise PhysicsError("", NOT_FINITE)
     text = f"{float(value) + 0.0:.{digits}g}"
     return "0" if text == "-0" else text
 
