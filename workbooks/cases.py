@@ -124,7 +124,7 @@ class _CaseReading(Reading):
     """The workbook as it reads in one load case: the inputs of the case go before what the file holds."""
 
     def __init__(self, run: Run) -> None:
-        super().__init__(run.prepared, run.results, run.resolve)
+        super().__init__(run.prepared, run.results)
         self.given: dict[tuple[int, str], Value] = {}
 
     def value(self, number: int, ref: str) -> Value:

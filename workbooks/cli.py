@@ -54,6 +54,10 @@ class Program(click.Group):
             return INTERRUPTED
         return code if isinstance(code, int) else 0
 
+    def list_commands(self, ctx: click.Context) -> list[str]:
+        """Return the commands in the order in which a person needs them."""
+        return list(self.commands)
+
     def invoke(self, ctx: click.Context) -> Any:
         """Run the command, and turn whatever it refuses into an exit code."""
         try:

@@ -35,7 +35,7 @@ class Step:
 
     name: str
     lines: tuple[str, ...]
-    refusal: Refusal | None = None
+    reason: str = ""  # why it was refused
 
 
 @dataclass(frozen=True)
@@ -144,7 +144,7 @@ def _steps(recorder: _Recorder) -> list[Step]:
             continue
         lines = calling.working(name, cells)
         if isinstance(answer, Refusal):
-            step = Step(name, (), answer)
+            step = Step(name, (), answer.reason)
         else:
             step = Step(name, () if isinstance(lines, Refusal) else tuple(lines))
         if step not in steps:

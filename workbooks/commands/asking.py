@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+import shutil
+import textwrap
+from typing import TYPE_CHECKING, Final
 
 import click
 
@@ -12,8 +14,10 @@ from .ending import ERROR, Refused, say
 if TYPE_CHECKING:
     from rigidsheet.udf.declaration import Arg, CellFunction, Field
 
+WIDEST: Final = 100
 
-@click.command()
+
+@click.command(short_help="List the cell functions, or show the help of one.")
 @click.argument("word", required=False)
 def functions(word: str | None) -> None:
     """List the cell functions by group; with a WORD those that speak of it, with a name its full help."""
@@ -60,7 +64,11 @@ def _help(f: CellFunction) -> None:
     heading(f"{f.name}({names})")
     click.echo(f"{f.line}\n")
     heading("Arguments")
-    table(("name", "what to give", "what it is"), [(a.name, _form(a), _meaning(a)) for a in arguments])
+    width = max(len(a.name) for a in arguments)
+    for a in arguments:
+        _wrapped(a.name.ljust(width), _meaning(a))
+        if _form(a) not in ("text", a.help):
+            _wrapped(" " * width, _form(a))
     click.echo()
     heading("Result")
     if f.result.open:
@@ -68,11 +76,23 @@ def _help(f: CellFunction) -> None:
     table(("result", "unit", "what it is"), [(one.name, _unit(one), one.help) for one in f.result.fields])
     click.echo()
     heading("Source")
-    click.echo(f"  {f.source}\n")
+    _wrapped("", f.source)
+    click.echo()
     heading("Examples")
     for example in f.examples:
-        click.echo(f"  {example.formula}\n      {example.says}")
+        click.echo(f"  {example.formula}")
+        _wrapped("   ", example.says)
     click.echo(f"\nA bare number is in the unit named in brackets. Group: {f.group}.")
+
+
+def _wrapped(lead: str, text: str) -> None:
+    """Print a text beside a lead, wrapped to the terminal."""
+    indent = " " * (len(lead) + 4 if lead else 2)
+    width = max(60, min(WIDEST, shutil.get_terminal_size((WIDEST, 24)).columns))
+    lines = textwrap.wrap(
+        text, width, initial_indent=f"  {lead}  " if lead else indent, subsequent_indent=indent
+    )
+    click.echo("\n".join(lines))
 
 
 def _form(argument: Arg) -> str:
@@ -94,7 +114,9 @@ def _unit(field: Field) -> str:
     return field.kind.si if dimensional(field.kind) else "-"
 
 
-@click.command("try", context_settings={"ignore_unknown_options": True})
+@click.command(
+    "try", short_help="Work out one formula and show how.", context_settings={"ignore_unknown_options": True}
+)
 @click.argument("formula")
 @click.pass_context
 def try_formula(ctx: click.Context, formula: str) -> None:
@@ -107,17 +129,21 @@ def try_formula(ctx: click.Context, formula: str) -> None:
     from .showing import shown
 
     trial = tried(formula)
+    final = next((step for step in trial.steps if step.reason == trial.reason), None) if trial.error else None
     for step in trial.steps:
+        if step is final:
+            continue  # told on standard error, once
         heading(step.name)
-        if step.refusal is not None:
-            click.echo(f"  refused with {step.refusal.error}: {step.refusal.reason}")
+        if step.reason:
+            click.echo(f"  refused: {step.reason}")
         for line in step.lines:
             click.echo(f"  {line}")
         click.echo()
     for sentence in trial.warnings:
         click.echo(f"Warning: {sentence}")
     if trial.error:
-        say(f"{trial.error}: {trial.reason}")
+        who = f"{final.name} is refused with" if final is not None else "the formula gives"
+        say(f"{who} {trial.error}: {trial.reason}")
         ctx.exit(ERROR)
     if len(trial.rows) == 1 and len(trial.rows[0]) == 1:
         click.echo(f"= {shown(trial.rows[0][0])} {trial.unit}".rstrip())

@@ -11,7 +11,7 @@ from ..printing import waiting
 _PATH = click.Path(path_type=Path)
 
 
-@click.command()
+@click.command(short_help="Write what Excel for Windows needs, with the steps.")
 @click.argument("folder", metavar="[DIR]", required=False, type=_PATH, default=Path("rigidsheet-excel"))
 def excel(folder: Path) -> None:
     """Write what Excel for Windows needs into DIR: functions, configuration lines, the steps in order.
@@ -26,9 +26,9 @@ def excel(folder: Path) -> None:
     click.echo(f"Open {paths[-1]} and go through the steps.")
 
 
-@click.group()
+@click.group(short_help="Build, install or remove the extension for LibreOffice Calc.")
 def calc() -> None:
-    """The functions live in LibreOffice Calc 7.4 and later."""
+    """The extension that brings the functions to LibreOffice Calc 7.4 and later."""
 
 
 @calc.command()
@@ -63,7 +63,7 @@ def uninstall() -> None:
     click.echo(said)
 
 
-@click.command()
+@click.command(short_help="Print a workbook, recalculated, to PDF.")
 @click.argument("file", type=_PATH)
 @click.argument("out", required=False, type=_PATH)
 def pdf(file: Path, out: Path | None) -> None:

@@ -21,7 +21,7 @@ if TYPE_CHECKING:
 _PATH = click.Path(path_type=Path)
 
 
-@click.command()
+@click.command(short_help="Recalculate workbooks and report results and checks.")
 @click.argument("files", metavar="FILE...", nargs=-1, required=True, type=_PATH)
 @click.option(
     "--set",

@@ -74,8 +74,10 @@ def summary(result: Recalculation) -> str:
     if result.errors:
         return f"{counted(len(result.errors), 'cell')} with an error; nothing can be signed off."
     failing = [check for check in result.checks if check.verdict != "OK"]
+    if failing and len(result.checks) == 1:
+        return "The one check fails."
     if failing:
-        return f"{len(failing)} of {counted(len(result.checks), 'check')} failing."
+        return f"{len(failing)} of {counted(len(result.checks), 'check')} fail."
     if not result.checks:
         return "No errors; the workbook has no checks."
     return "The one check holds." if len(result.checks) == 1 else f"All {len(result.checks)} checks hold."

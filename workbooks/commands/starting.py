@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 DEMO_FOLDER = "rigidsheet-demo"
 
 
-@click.command()
+@click.command(short_help="Write every template, filled in, and show what it says.")
 @click.option("--to", "folder", metavar="DIR", type=click.Path(path_type=Path), help="Folder for the files.")
 @click.option("--force", is_flag=True, help="Write over files that are there already.")
 @click.pass_context
@@ -53,7 +53,7 @@ def demo(ctx: click.Context, folder: Path | None, force: bool) -> None:
         ctx.exit(ERROR)
 
 
-@click.command()
+@click.command(short_help="List the templates.")
 def templates() -> None:
     """List the templates that `new` can start from."""
     from ..templates import TEMPLATES
@@ -61,7 +61,7 @@ def templates() -> None:
     table(("template", "title", "what it answers"), [(t.name, t.title, t.line) for t in TEMPLATES.values()])
 
 
-@click.command()
+@click.command(short_help="Start a workbook from a template.")
 @click.argument("template")
 @click.argument("file", required=False, type=click.Path(path_type=Path))
 @click.option("--blank", is_flag=True, help="Leave the cells that you fill in empty.")
