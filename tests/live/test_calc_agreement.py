@@ -8,42 +8,44 @@ from typing import Any
 
 import pytest
 from host_book import write
-from host_cases import HostCase, all_cases, kind_of_error, plain
+from host_cases import HostCase, all_cases, kind_of_error
 from live_calc import LiveCalc
 
-from rigidsheet.udf.calling import call
 from rigidsheet.udf.cells import CellError, Refusal
 
 pytestmark = pytest.mark.live
 
 
-def seen(value: Any) -> Any:
-    """Return a cell as Calc hands it over: a boolean is a number there."""
-    return float(value) if isinstance(value, bool) else plain(value)
-
-
 def as_calc_sees(case: HostCase) -> Any:
-    """Return the answer to expect in Calc, where it hides or decides something before we are asked.
+    """Return the answer to expect in Calc, which decides about errors before we are asked.
 
-    An error that stands alone passes through unasked; an error inside a range is Err:504; booleans are
-    numbers; a single blank cell is zero.
+    An error that stands alone passes through; an error inside a range is Err:504 whatever it was.
     """
-    alone = kind_of_error(case.cells)
     inside = any(
         isinstance(v, CellError) for c in case.cells if isinstance(c, list) for row in c for v in row
     )
     if inside:
         return {"error": "Err:504"}
+    alone = kind_of_error(case.cells)
     if alone is not None:
         return {"error": alone}
-    cells: list[Any] = []
-    for cell in case.cells:
-        if isinstance(cell, list):
-            cells.append([[seen(v) for v in row] for row in cell])
-        else:
-            cells.append(0.0 if cell is None else seen(cell))
-    answer = call(case.function, cells)
+    answer = case.expected()
     return {"error": answer.error} if isinstance(answer, Refusal) else answer
+
+
+def holds_boolean(case: HostCase) -> bool:
+    return "True" in repr(case.cells) or "False" in repr(case.cells)
+
+
+def books(cases: list[HostCase]) -> list[list[HostCase]]:
+    """Return the cases in groups for a workbook each.
+
+    Calc cannot tell a blank cell, FALSE and 0 apart when the same call is made with each in one workbook;
+    there the zero wins (see the tests of the sight).
+    """
+    blank = [c for c in cases if any(v is None for v in c.cells)]
+    boolean = [c for c in cases if c not in blank and holds_boolean(c)]
+    return [blank, boolean, [c for c in cases if c not in blank and c not in boolean]]
 
 
 def differences(expected: Any, got: list[list[Any]]) -> str:
@@ -91,12 +93,12 @@ def column_letters(number: int) -> str:
     return str(get_column_letter(number))
 
 
-def test_every_function_on_cells(calc: LiveCalc, tmp_path: Path) -> None:
+@pytest.mark.parametrize("literals", [False, True], ids=["cells", "values in the formula"])
+def test_every_function(calc: LiveCalc, tmp_path: Path, literals: bool) -> None:
     cases = all_cases()
-    assert len(cases) > 300
-    assert run(calc, cases, tmp_path / "cells.xlsx") == []
-
-
-def test_every_function_on_values_in_the_formula(calc: LiveCalc, tmp_path: Path) -> None:
-    cases = all_cases()
-    assert run(calc, cases, tmp_path / "typed.xlsx", literals=True) == []
+    assert len(cases) > 1000
+    wrong: list[str] = []
+    for number, group in enumerate(books(cases)):
+        assert len(group) > 20
+        wrong += run(calc, group, tmp_path / f"{number}.xlsx", literals)
+    assert wrong == []

@@ -98,6 +98,9 @@ class Driver:
         """Set a block; formulas here carry the long names."""
         self.area(doc, sheet, where).setFormulaArray(tuple(tuple(r) for r in rows))
 
+    def array(self, doc, sheet, where, formula):
+        self.area(doc, sheet, where).setArrayFormula(formula)
+
     def formula(self, doc, sheet, where):
         cell = self.area(doc, sheet, where).getCellByPosition(0, 0)
         return [cell.Formula, cell.FormulaLocal]

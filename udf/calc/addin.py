@@ -13,6 +13,7 @@ from com.sun.star.task import XJob
 from org.rigidsheet.cells import XFunctions
 from rigidsheet_channel import Channel, WorkerLost
 from rigidsheet_repair import repair
+from rigidsheet_sight import Sight
 
 with open(os.path.join(os.path.dirname(os.path.abspath(__file__)), "config.json"), encoding="utf-8") as _file:
     CONFIG: dict[str, Any] = json.load(_file)
@@ -48,8 +49,12 @@ CHANNEL = Channel(
 LOST: dict[Any, str] = {}
 
 
-def answer(name: str, arguments: tuple[Any, ...]) -> Any:
+SIGHT: list[Sight] = []  # one, made with the first service
+
+
+def answer(name: str, method: str, arguments: tuple[Any, ...]) -> Any:
     """Return what the cell shows: rows of numbers and texts, or an error."""
+    arguments = SIGHT[0].restored(method, arguments)
     if name == "RB_WHY" and LOST:
         reason = LOST.get(asked_about(arguments))
         if reason is not None:
@@ -81,6 +86,8 @@ class Functions(unohelper.Base, XFunctions, XServiceInfo, XServiceName):
 
     def __init__(self, context: Any) -> None:
         self.context = context
+        if not SIGHT:
+            SIGHT.append(Sight(context, CONFIG["service"]))
 
     def getServiceName(self) -> str:
         return CONFIG["service"]  # type: ignore[no-any-return]
@@ -95,28 +102,28 @@ class Functions(unohelper.Base, XFunctions, XServiceInfo, XServiceName):
         return (CONFIG["service"], "com.sun.star.sheet.AddIn")
 
 
-def plain_method(name: str) -> Any:
+def plain_method(name: str, own: str) -> Any:
     """Return the method of a function with a fixed number of arguments; the omitted end is dropped."""
 
     def method(self: Functions, *arguments: Any) -> Any:
         while arguments and arguments[-1] is None:
             arguments = arguments[:-1]
-        return answer(name, arguments)
+        return answer(name, own, arguments)
 
     return method
 
 
-def rest_method(name: str) -> Any:
+def rest_method(name: str, own: str) -> Any:
     """Return the method of a function whose last argument takes any number of cells."""
 
     def method(self: Functions, *arguments: Any) -> Any:
-        return answer(name, arguments[:-1] + tuple(arguments[-1]))
+        return answer(name, own, arguments[:-1] + tuple(arguments[-1]))
 
     return method
 
 
 for _name, (_method, _rest) in CONFIG["functions"].items():
-    setattr(Functions, _method, rest_method(_name) if _rest else plain_method(_name))
+    setattr(Functions, _method, (rest_method if _rest else plain_method)(_name, _method))
 
 NAMES = frozenset(name.lower() for name in CONFIG["functions"]) | frozenset(
     f"{CONFIG['service']}.{method}".lower() for method, _ in CONFIG["functions"].values()

@@ -32,6 +32,7 @@ OFFICE_SIDE: Final = {
     "addin.py": "addin.py",
     "rigidsheet_channel.py": "pythonpath/rigidsheet_channel.py",
     "rigidsheet_repair.py": "pythonpath/rigidsheet_repair.py",
+    "rigidsheet_sight.py": "pythonpath/rigidsheet_sight.py",
 }
 
 

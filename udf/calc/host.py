@@ -40,8 +40,8 @@ def takes_rest(f: CellFunction) -> bool:
 def normalise(arguments: tuple[Any, ...]) -> list[Cell]:
     """Return the arguments of one call as cells.
 
-    Calc gives a number, a text, None for an argument left out, or a tuple of rows in which a blank cell is
-    an empty text. A block of one cell is that cell.
+    The add-in gives a number, a text, a boolean, None for an argument left out, an empty tuple for a blank
+    cell, or a tuple of rows in which a blank cell is an empty text. A block of one cell is that cell.
     """
     return [a if type(a) is float else normalised(a) for a in arguments]
 
@@ -50,19 +50,23 @@ def normalised(argument: Any) -> Cell:
     """Return one argument as a cell."""
     kind = type(argument)
     if kind is tuple:
+        if not argument:
+            return None
         if len(argument) == 1 and len(argument[0]) == 1:
             return plain(argument[0][0])
-        return trimmed([[plain(v) for v in row] for row in argument])
+        # most rows hold no blank cell, and only a search in C keeps long columns fast
+        rows = [[plain(v) for v in row] if "" in row else list(row) for row in argument]
+        return trimmed(rows)
     if argument is None:
         return OMITTED
-    return float(argument) if kind is int or kind is bool else argument
+    return float(argument) if kind is int else argument
 
 
 def plain(value: Any) -> Value:
     """Return one cell of a block; there Calc gives an empty text for a blank cell."""
     if value == "" or value is None:
         return None
-    return float(value) if type(value) is int or type(value) is bool else value
+    return float(value) if type(value) is int else value
 
 
 def trimmed(block: list[list[Value]]) -> list[list[Value]]:

@@ -1,0 +1,105 @@
+"""Blank and boolean cells, which Calc hands to a function as numbers, are seen all the same."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import Any
+
+import openpyxl
+import pytest
+from live_calc import LiveCalc
+from openpyxl.workbook.defined_name import DefinedName
+
+pytestmark = pytest.mark.live
+
+VALUE = {"error": "#VALUE!"}
+
+
+@pytest.fixture
+def doc(calc: LiveCalc) -> Any:
+    key = calc.ask("new")
+    yield key
+    calc.ask("close", key)
+
+
+def test_a_single_blank_cell_is_not_zero(calc: LiveCalc, doc: int) -> None:
+    calc.ask("put", doc, 0, {"A1": 2, "A2": "=RB_TORQUE(A1,B1)", "A3": '=RB_WHY("RB_TORQUE",A1,B1)'})
+    assert calc.cell(doc, 0, "A2") == VALUE
+    assert "blank cell" in calc.cell(doc, 0, "A3")
+    calc.ask("put", doc, 0, {"B1": 0})
+    assert calc.cell(doc, 0, "A2") == 0.0
+    assert calc.cell(doc, 0, "A3") == "Not refused: the call has an answer."
+    calc.ask("put", doc, 0, {"B1": None})
+    assert calc.cell(doc, 0, "A2") == VALUE
+    calc.ask("put", doc, 0, {"B1": 3})
+    assert calc.cell(doc, 0, "A2") == 6.0
+
+
+def test_quick_changes_are_followed(calc: LiveCalc, doc: int) -> None:
+    calc.ask("put", doc, 0, {"A1": 2, "A2": "=RB_TORQUE(A1,B1)"})
+    for _ in range(30):
+        calc.ask("put", doc, 0, {"B1": 0})
+        assert calc.cell(doc, 0, "A2") == 0.0
+        calc.ask("put", doc, 0, {"B1": None})
+        assert calc.cell(doc, 0, "A2") == VALUE
+
+
+def test_a_typed_zero_is_never_refused_for_another_blank_cell(calc: LiveCalc, doc: int) -> None:
+    calc.ask(
+        "put",
+        doc,
+        0,
+        {
+            "A1": 2,
+            "B1": 0,
+            "C1": '=IF(B1="","",RB_TORQUE($A$1,B1))',
+            "C2": '=IF(B2="","",RB_TORQUE($A$1,B2))',
+            "C3": "=RB_TORQUE($A$1,0)",
+            "C4": "=RB_TORQUE($A$1,1-1)",
+        },
+    )
+    got = [row[0] for row in calc.read(doc, 0, "C1:C4")]
+    assert got == [0.0, "", 0.0, 0.0]
+
+
+def test_booleans_are_not_numbers(calc: LiveCalc, doc: int) -> None:
+    calc.ask(
+        "put",
+        doc,
+        0,
+        {
+            "A1": "=TRUE()",
+            "A2": "=RB_TORQUE(A1,3)",
+            "B1": 0.4,
+            "C1": "=FALSE()",
+            "D1": "m",
+            "A3": '=INDEX(RB_ARM("(0, 0) m",B1:D1),1,1)',
+            "A4": '=RB_WHY("RB_TORQUE",A1,3)',
+        },
+    )
+    assert calc.cell(doc, 0, "A2") == VALUE
+    assert calc.cell(doc, 0, "A3") == VALUE
+    assert "boolean" in calc.cell(doc, 0, "A4")
+    calc.ask("put", doc, 0, {"A1": 1, "C1": 0})
+    assert calc.cell(doc, 0, "A2") == 3.0
+    assert calc.cell(doc, 0, "A3") == 0.4
+
+
+def test_named_cells_and_other_sheets(calc: LiveCalc, tmp_path: Path) -> None:
+    book = openpyxl.Workbook()
+    inputs = book.active
+    inputs.title = "My inputs"
+    inputs["A1"] = "2 kg*m^2"
+    book.defined_names["alpha"] = DefinedName("alpha", attr_text="'My inputs'!$B$2")
+    work = book.create_sheet("Work")
+    work["A1"] = "=RB_TORQUE('My inputs'!A1,alpha)"
+    work["A2"] = "=RB_TORQUE('My inputs'!A1,'My inputs'!B2)"
+    work["A3"] = "=RB_TORQUE('My inputs'!A1,0)"
+    path = tmp_path / "named.xlsx"
+    book.save(path)
+    doc = calc.ask("load", str(path))
+    assert [r[0] for r in calc.read(doc, "Work", "A1:A2")] == [0.0, 0.0], "A3 makes the same call with a zero"
+    calc.ask("put", doc, "Work", {"A3": None})
+    calc.ask("calculate", doc)
+    assert [r[0] for r in calc.read(doc, "Work", "A1:A2")] == [VALUE, VALUE]
+    calc.ask("close", doc)
