@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
-from typing import Final
+from pathlib import Path
 
 from .addresses import Area, cell_name, size
 from .builtins import VERIFIED_FUNCTIONS
@@ -13,8 +13,6 @@ from .formulas import Analysis, Argument, Call
 from .quantities import is_si_unit, quantity
 from .reading import Reading
 from .sheetxml import FormulaCell
-
-CELLS: Final = 100_000  # cells of one range that are looked at
 
 
 @dataclass(frozen=True)
@@ -49,12 +47,28 @@ def cautions(
     return tuple(found)
 
 
+def open_elsewhere(path: Path) -> tuple[Caution, ...]:
+    """Return a warning when an office program has left its mark that it holds the file open."""
+    for mark in (f"~${path.name}", f".~lock.{path.name}#"):
+        if path.with_name(mark).exists():
+            return (
+                Caution(
+                    "open",
+                    f"{path.name[:80]} seems to be open in an office program. Close it there without saving, "
+                    "or the values written here are lost.",
+                ),
+            )
+    return ()
+
+
 class _Search:
     def __init__(self, reading: Reading, unit_position: Callable[[str], int | None]) -> None:
         self.unit_position = unit_position
         self.reading = reading
         self.prepared = reading.prepared
         self.reported: set[str] = set()
+        self.named: set[tuple[int, str]] = set()
+        self.texts: dict[int, dict[str, str]] = {}
         self.tabs = [sheet.name for sheet in reading.prepared.sheets]
         self.units: dict[tuple[int, str], str] = {}  # cells whose number is in a unit that is not SI
 
@@ -63,15 +77,11 @@ class _Search:
         seen: set[tuple[int, Area]] = set()
         dates = bool(self.reading.date_styles)
         for number, sheet, formula in self.prepared.formulas():
-            ref = formula.ref
-            if not formula.text:
-                ref = self.prepared.masters[number, formula.rule.get("si", "")]
-            master = self.prepared.analyses[number, ref]
-            yield from self._unverified(sheet.name, formula, master)
-            calls = bool(master.calls)
-            if calls and (self.units or dates or master.nested):
+            analysis = self.prepared.analyses[number, formula.ref]
+            yield from self._unverified(sheet.name, formula, analysis)
+            if analysis.calls and (self.units or dates or analysis.nested):
                 yield from self._calls(number, sheet.name, formula, dates)
-            if master.collected:
+            if analysis.collected:
                 yield from self._skipped(number, sheet.name, formula, seen)
 
     def _unverified(self, sheet: str, formula: FormulaCell, analysis: Analysis) -> Iterator[Caution]:
@@ -87,13 +97,7 @@ class _Search:
 
     def _non_si_results(self) -> None:
         for number, _, formula in self.prepared.formulas():
-            if formula.text:
-                whole = self.prepared.analyses[number, formula.ref].whole
-            else:
-                master = self.prepared.masters[number, formula.rule.get("si", "")]
-                whole = self.prepared.analyses[number, master].whole
-                if whole is not None and self.unit_position(whole.name) is not None:
-                    whole = self.reading.formula(number, formula)[1].whole
+            whole = self.prepared.analyses[number, formula.ref].whole
             unit = self._unit(number, whole) if whole is not None else ""
             if unit and isinstance(self.reading.results[number, formula.ref], float):
                 self.units[number, formula.ref] = unit
@@ -114,15 +118,15 @@ class _Search:
 
     def _cell(self, number: int, argument: Argument) -> tuple[int, str] | None:
         """Return the single cell that an argument refers to."""
-        if argument.kind not in ("ref", "name"):
+        if argument.use is None:
             return None
-        place = self.reading.place_of(number, argument.kind, argument.where, argument.text)
+        place = self.reading.place_of(number, argument.use)
         if place is None or size(place[1]) != (1, 1):
             return None
         return place[0], cell_name(place[1][0], place[1][1])
 
     def _calls(self, number: int, sheet: str, formula: FormulaCell, dates: bool) -> Iterator[Caution]:
-        analysis = self.reading.formula(number, formula)[1]
+        analysis = self.prepared.analyses[number, formula.ref]
         here = sheet, formula.ref
         for outer in (*analysis.calls, *(inner for _, _, inner in analysis.nested)):
             crossed: list[tuple[str, Argument, tuple[str, str]]] = []
@@ -172,22 +176,28 @@ class _Search:
     def _skipped(
         self, number: int, sheet: str, formula: FormulaCell, seen: set[tuple[int, Area]]
     ) -> Iterator[Caution]:
-        for where, text in self.reading.formula(number, formula)[1].collected:
-            kind = "ref" if ":" in text or text.startswith("$") or any(c.isdigit() for c in text) else "name"
-            place = self.reading.place_of(number, kind, where, text)
-            if place is None and kind == "ref":
-                place = self.reading.place_of(number, "name", where, text)
+        for use in self.prepared.analyses[number, formula.ref].collected:
+            place = self.reading.place_of(number, use)
             if place is None or place in seen:
                 continue
             seen.add(place)
-            for count, (ref, value) in enumerate(self.reading.cells_in(*place)):
-                if count >= CELLS:
-                    break
-                if isinstance(value, str) and quantity(value) is not None:
-                    source = self.tabs[place[0]], ref
-                    yield Caution(
-                        "text",
-                        f"{address(sheet, formula.ref)} skips {address(*source)}: '{value[:40]}' is a text, "
-                        "not a number.",
-                        ((sheet, formula.ref), source),
-                    )
+            for ref, value in self.reading.within(place, self._numeric_texts(place[0])):
+                self.named.add((place[0], ref))
+                source = self.tabs[place[0]], ref
+                yield Caution(
+                    "text",
+                    f"{address(sheet, formula.ref)} skips {address(*source)}: '{value[:40]}' is a text, "
+                    "not a number.",
+                    ((sheet, formula.ref), source),
+                )
+
+    def _numeric_texts(self, number: int) -> dict[str, str]:
+        """Return the cells of a sheet whose text reads as a number, those named already left out."""
+        found = self.texts.get(number)
+        if found is None:
+            found = self.texts[number] = {
+                ref: value
+                for ref, value in self.reading.texts(number)
+                if value[:1] in "+-.0123456789\u2212 " and quantity(value) is not None
+            }
+        return {ref: value for ref, value in found.items() if (number, ref) not in self.named}

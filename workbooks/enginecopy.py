@@ -18,7 +18,7 @@ from .calls import FIT
 from .cellxml import typed_tag
 from .engine import Engine
 from .errors import FormulaRefused, UnknownFunction
-from .formulas import NAME_MARK, SHEET_MARK, Analysis, Resolver, analyse, canonical
+from .formulas import CALLER_MARK, NAME_MARK, Analysis, Resolver, analyse, canonical, shifted
 from .sheetxml import FormulaCell, Sheet, splice, tag_end
 
 _ABSOLUTE: Final = re.compile(
@@ -44,7 +44,6 @@ class Prepared:
     sheets: tuple[Sheet, ...]
     engine_package: bytes = b""
     analyses: dict[tuple[int, str], Analysis] = field(default_factory=dict)  # sheet number, cell
-    masters: dict[tuple[int, str], str] = field(default_factory=dict)  # sheet number, shared index: cell
     used: set[str] = field(default_factory=set)  # our functions that some formula calls
 
     def formulas(self) -> Iterator[tuple[int, Sheet, FormulaCell]]:
@@ -82,6 +81,7 @@ class Preparation:
         self.ours = ours
         self.tabs = {sheet.name.lower() for sheet in sheets}
         self.checked: set[str] = set()
+        self.masters: dict[tuple[int, str], FormulaCell] = {}  # sheet number, number of the shared formula
 
     def run(self) -> Prepared:
         """Return the workbook ready for the engine, or refuse the first formula that is not safe."""
@@ -98,16 +98,15 @@ class Preparation:
         rule = formula.rule.get("t", "normal")
         if rule == "dataTable":
             raise self._refused(sheet, formula, "a what-if data table stands here", "Remove the table")
-        if rule == "shared" and formula.text:
-            self.prepared.masters.setdefault((number, formula.rule.get("si", "")), formula.ref)
+        if rule == "shared":
+            self._own_text(number, formula)
         if not formula.text:
-            if rule == "shared" and (number, formula.rule.get("si", "")) in self.prepared.masters:
-                return []
             raise self._refused(sheet, formula, "the cell holds a formula without text", "Enter it again")
         analysis = analyse(formula.text, self.resolve)
         self.prepared.analyses[number, formula.ref] = analysis
         self._check(sheet, formula, analysis, plain=rule != "array")
-        text = analysis.engine.replace(SHEET_MARK, str(number))
+        place = f"{number},{formula.row},{formula.column}"
+        text = analysis.engine.replace(CALLER_MARK, place)
         if NAME_MARK in text:
             text = _MARKED.sub(lambda mark: self._meaning(sheet, formula, mark[1], mark[2]), text)
         frame = formula.array
@@ -118,10 +117,25 @@ class Preparation:
             rows, columns = size(frame)
             if rows * columns > 1_000_000:
                 raise self._refused(sheet, formula, "the array formula is immense", "Make it smaller")
-            text = f"{FIT}({number},ROW(),COLUMN(),{rows},{columns},{text})"
+            text = f"{FIT}({place},{rows},{columns},{text})"
             edits += self._children(sheet, formula, frame)
-        edits.append((formula.text_start, formula.text_end, escape(text).encode()))
+        new = escape(text).encode()
+        if rule == "shared":
+            element = b"<%bf>%b</%bf>" % (sheet.prefix, new, sheet.prefix)
+            edits.append((formula.f_start, formula.f_end, element))
+        else:
+            edits.append((formula.text_start, formula.text_end, new))
         return edits
+
+    def _own_text(self, number: int, formula: FormulaCell) -> None:
+        """Give a cell of a shared formula its own text: the engine moves texts inside quoted sheet names too."""
+        key = number, formula.rule.get("si", "")
+        if formula.text:
+            if "ref" in formula.rule or key not in self.masters:
+                self.masters[key] = formula
+        elif key in self.masters:
+            master = self.masters[key]
+            formula.text = shifted(master.text, formula.row - master.row, formula.column - master.column)
 
     def _children(self, sheet: Sheet, formula: FormulaCell, frame: Area) -> Iterator[tuple[int, int, bytes]]:
         """Take the other cells of an array formula out: the engine would see them as being in the way."""
@@ -150,15 +164,17 @@ class Preparation:
                 self.checked.add(function)
         if analysis.refusal:
             raise self._refused(sheet, formula, analysis.refusal)
-        for where, reference, single, element in analysis.references:
-            if where and sheet_of(where).lower() not in self.tabs:
-                raise self._refused(sheet, formula, f"there is no sheet called {sheet_of(where)!r}")
-            if ":" in reference:
-                self._block(sheet, formula, reference, element, single=plain and single)
-        for where, name, single, element in analysis.names:
-            target = self._area_of(sheet, formula, where, name)
-            if target is not None and size(target) != (1, 1):
-                self._block(sheet, formula, name, element, single=plain and single)
+        for use in analysis.uses:
+            if use.named:
+                target = self._area_of(sheet, formula, use.where, use.text)
+                block = target is not None and size(target) != (1, 1)
+            else:
+                block = ":" in use.text
+                if use.where and sheet_of(use.where).lower() not in self.tabs:
+                    reason = f"there is no sheet called {sheet_of(use.where)!r}"
+                    raise self._refused(sheet, formula, reason)
+            if block:
+                self._block(sheet, formula, use.text, use.element, single=plain and use.single)
         for call in analysis.calls:
             self.prepared.used.add(call.name)
         for _, _, call in analysis.nested:

@@ -21,7 +21,7 @@ Resolver: TypeAlias = Callable[[str], str | None]
 
 OMITTED_MARK: Final = "\ue0f7omitted\ue0f7"  # private-use characters: no text in a cell looks like this
 NAME_MARK: Final = "\x02"  # round a defined name, which is replaced by what it stands for
-SHEET_MARK: Final = "\x00"  # where the number of the calling sheet belongs
+CALLER_MARK: Final = "\x00"  # where sheet number, row and column of the calling cell belong
 PREFIXES: Final = ("_XLFN.", "_XLWS.", "_XLUDF.", "_XLL.", "_XLPM.")
 
 _TOKEN: Final = re.compile(
@@ -47,9 +47,9 @@ _TOKEN: Final = re.compile(
 class Argument:
     """One argument of one of our functions, as far as the text alone tells what it is."""
 
-    kind: str = "omitted"  # omitted, ref, name, call, text, other
+    kind: str = "omitted"  # omitted, use, call, text, other
     text: str = ""
-    where: str = ""
+    use: Use | None = None
     call: Call | None = None
 
 
@@ -64,6 +64,7 @@ class Call:
 class Use(NamedTuple):
     """One appearance of a reference or a name."""
 
+    named: bool  # a defined name, not an address
     where: str  # the sheet prefix as it stands, with its exclamation mark; empty for the own sheet
     text: str
     single: bool  # where one value is needed, in a formula that is no array formula
@@ -75,14 +76,13 @@ class Analysis:
     """What one formula text uses."""
 
     functions: list[str] = field(default_factory=list)  # built-in or unknown names, upper case, no prefix
-    names: list[Use] = field(default_factory=list)
-    references: list[Use] = field(default_factory=list)
-    collected: list[tuple[str, str]] = field(default_factory=list)  # ranges inside SUM and its like
+    uses: list[Use] = field(default_factory=list)
+    collected: list[Use] = field(default_factory=list)  # those inside SUM and its like
     calls: list[Call] = field(default_factory=list)  # outermost calls of our functions
     nested: list[tuple[Call, int, Call]] = field(default_factory=list)  # outer call, argument, inner call
     whole: Call | None = None  # the formula is exactly this call
     refusal: str = ""
-    engine: str = ""  # the text for the engine, still with the marks of names and of the calling sheet
+    engine: str = ""  # the text for the engine, still with the marks of names and of the calling cell
 
 
 @dataclass(slots=True)
@@ -132,7 +132,8 @@ class _Reader:
         self.frames = [_Frame("", None, False, True, "")]
         self.value = False  # the token before ends a value
         self.operator = False  # the token before is an operator that takes single values
-        self.last_block: tuple[list[Use], int] | None = None
+        self.last_use = -1  # index of the use that the token before ends, -1 when it is something else
+        self.first: Call | None = None  # the call outside of all parentheses
 
     def read(self, text: str) -> Analysis:
         for token in _TOKEN.finditer(text):
@@ -149,23 +150,25 @@ class _Reader:
             self._refuse("the formula has an open parenthesis too many")
         self.result.engine = "".join(self.output)
         top = self.frames[0]
-        if top.pieces == 1 and len(self.result.calls) == 1:
-            self.result.whole = self.result.calls[0]
+        if top.pieces == 1:
+            self.result.whole = self.first
         return self.result
 
     def _refuse(self, reason: str) -> None:
         self.result.refusal = self.result.refusal or reason
 
-    def _argument(self, kind: str, text: str = "", where: str = "", call: Call | None = None) -> None:
+    def _argument(
+        self, kind: str, text: str = "", *, use: Use | None = None, call: Call | None = None
+    ) -> None:
         """Note a token of the current argument of one of our functions."""
         frame = self.frames[-1]
         frame.pieces += 1
         if frame.ours is not None:
             single = frame.pieces == 1
-            frame.ours.arguments[-1] = Argument(kind, text, where, call) if single else Argument("other")
+            frame.ours.arguments[-1] = Argument(kind, text, use, call) if single else Argument("other")
 
     def _open_call(self, token: re.Match[str]) -> None:
-        name, where = token["call"], token["where"] or ""
+        name = token["call"]
         self._start_value()
         ours = self.resolve(name)
         outer = self.frames[-1]
@@ -173,9 +176,11 @@ class _Reader:
         call = Call(ours) if ours else None
         if call is not None:
             self._note_call(call)
+            if len(self.frames) == 1:
+                self.first = call
         else:
             self.result.functions.append(function)
-        self._argument("call", function, where, call)
+        self._argument("call", function, call=call)
         if call is not None:
             call.arguments.append(Argument())
         passes = function in PASSING_FUNCTIONS
@@ -188,9 +193,9 @@ class _Reader:
                 outer.outer if passes else function,
             )
         )
-        self.output.append(f"{function}({SHEET_MARK},ROW(),COLUMN()" if ours else f"{function}(")
+        self.output.append(f"{function}({CALLER_MARK}" if ours else f"{function}(")
         self.operator = self.value = False
-        self.last_block = None
+        self.last_use = -1
 
     def _note_call(self, call: Call) -> None:
         for frame in reversed(self.frames):
@@ -200,45 +205,43 @@ class _Reader:
         self.result.calls.append(call)
 
     def _operand(self, kind: str, token: re.Match[str]) -> None:
-        text, where = token[0], token["where"] or ""
-        frame = self.frames[-1]
         self._start_value()
-        block = None
+        text = token[0]
+        self.last_use = -1
         if kind == "ref" or kind == "name":
-            target = token[kind]
-            if where == "[0]!":
-                where, text = "", target
-            elif where:
-                self._check_where(where)
-            entry = Use(where, target, self._scalar_use(), self._element())
-            if kind == "ref":
-                self.result.references.append(entry)
-                block = (self.result.references, len(self.result.references) - 1)
-                self._argument("ref", target, where)
-            elif target.upper() in ("TRUE", "FALSE") and not where:
-                self._argument("other")
-            elif target[:6].lower() == "_xlpm.":
-                self._argument("other")
-                text = target[6:]
-            else:
-                self.result.names.append(entry)
-                text = f"{NAME_MARK}{where}{NAME_MARK}{target}{NAME_MARK}"
-                block = (self.result.names, len(self.result.names) - 1)
-                self._argument("name", target, where)
-            if block is not None and frame.outer in _COLLECTING:
-                self.result.collected.append((where, target))
+            text = self._use(kind == "name", token["where"] or "", token[kind], text)
         elif kind == "string":
             self._argument("text", text[1:-1].replace('""', '"'))
         else:
             self._argument("other")
             if kind == "array" and self._element():
                 self._refuse(f"the engine cannot work out {self._element()} for each cell of a block")
-            if kind == "error" and where:
+            if kind == "error":
                 text = token["error"]
         self.output.append(text)
-        self.last_block = block
         self.operator = False
         self.value = True
+
+    def _use(self, named: bool, where: str, target: str, text: str) -> str:
+        """Note a reference or a name; return its text for the engine."""
+        if named and not where and target.upper() in ("TRUE", "FALSE"):
+            self._argument("other")
+            return text
+        if named and target[:6].lower() == "_xlpm.":
+            self._argument("other")
+            return target[6:]
+        if where == "[0]!":
+            where, text = "", target
+        elif where:
+            self._check_where(where)
+        block = named or ":" in target
+        use = Use(named, where, target, self._scalar_use(), self._element() if block else "")
+        self.last_use = len(self.result.uses)
+        self.result.uses.append(use)
+        self._argument("use", use=use)
+        if self.frames[-1].outer in _COLLECTING:
+            self.result.collected.append(use)
+        return f"{NAME_MARK}{where}{NAME_MARK}{target}{NAME_MARK}" if named else text
 
     def _scalar_use(self) -> bool:
         frame = self.frames[-1]
@@ -284,7 +287,7 @@ class _Reader:
             self._argument("other")
             self.frames.append(_Frame("", None, frame.arrays, frame.scalar, frame.outer))
             self.output.append(sign)
-            self.last_block = None
+            self.last_use = -1
             return
         if sign == ")":
             self._close()
@@ -308,13 +311,12 @@ class _Reader:
             self._refuse("the formula builds a range with a colon between parts that are not plain addresses")
         self._start_argument()
         self._argument("other")
-        if not frame.arrays and self.last_block is not None:
-            entries, index = self.last_block
-            entries[index] = entries[index]._replace(single=True)
+        if not frame.arrays and self.last_use >= 0:
+            self.result.uses[self.last_use] = self.result.uses[self.last_use]._replace(single=True)
         self.output.append(sign)
         self.operator = sign != "%"
         self.value = sign == "%"
-        self.last_block = None
+        self.last_use = -1
 
     def _comma(self) -> None:
         frame = self.frames[-1]
@@ -329,7 +331,7 @@ class _Reader:
         frame.index += 1
         self.output.append(",")
         self.operator = self.value = False
-        self.last_block = None
+        self.last_use = -1
 
     def _close(self) -> None:
         if len(self.frames) == 1:
@@ -343,7 +345,7 @@ class _Reader:
                 frame.ours.arguments.clear()
         self.output.append(")")
         if frame.function:
-            self.last_block = None
+            self.last_use = -1
         self.operator = False
         self.value = True
 

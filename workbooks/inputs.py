@@ -12,18 +12,15 @@ from .addresses import cell_name, row_column, size
 from .book import Book
 from .enginecopy import Prepared, sheet_of, target_of
 from .errors import InputRefused, address
-from .formulas import Resolver
 from .quantities import converted, quantity, unit_in
 from .reading import Reading
 from .sheetxml import Sheet, scan, splice
 from .writeback import insertions, plain_cell_edits
 
 
-def with_inputs(
-    book: Book, sheets: tuple[Sheet, ...], inputs: Mapping[str, object], resolve: Resolver
-) -> tuple[Sheet, ...]:
+def with_inputs(book: Book, sheets: tuple[Sheet, ...], inputs: Mapping[str, object]) -> tuple[Sheet, ...]:
     """Return the sheets with input cells changed; every input is judged before the first is set."""
-    reading = Reading(Prepared(book, sheets), {}, resolve)
+    reading = Reading(Prepared(book, sheets), {})
     wanted: dict[int, dict[str, Value]] = {}
     for name, given in inputs.items():
         number, ref = input_cell(reading, name)

@@ -3,23 +3,25 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 from functools import cached_property
-from typing import Final
+from typing import Final, TypeVar
 
 from rigidsheet.udf.cells import CellError, Value
 
-from .addresses import Area, area, row_column
+from .addresses import Area, area, cell_name, row_column
 from .book import Book
 from .cellxml import plain_text
 from .enginecopy import Prepared, sheet_of, target_of
-from .formulas import Analysis, Resolver, analyse, shifted
-from .sheetxml import FormulaCell, Sheet, element_end, tag_end, unescape
+from .formulas import Use
+from .sheetxml import Sheet, element_end, tag_end, unescape
 from .writeback import cached_text
 from .xmlparts import elements, whole
 
 _DATES: Final = frozenset([*range(14, 23), *range(27, 37), *range(45, 48), *range(50, 59)])
 _NOT_CODE: Final = re.compile(r'"[^"]*"|\\.|_.|\*.|\[(?!h+\]|m+\]|s+\])[^\]]*\]', re.IGNORECASE)
+
+Held = TypeVar("Held", bound=Value)
 
 # Sheet number, row, column.
 Place = tuple[int, int, int]
@@ -28,13 +30,11 @@ Place = tuple[int, int, int]
 class Reading:
     """Values of any cell: the results of the run where there are some, else what the file holds."""
 
-    def __init__(self, prepared: Prepared, results: dict[tuple[int, str], Value], resolve: Resolver) -> None:
+    def __init__(self, prepared: Prepared, results: dict[tuple[int, str], Value]) -> None:
         self.prepared = prepared
         self.book: Book = prepared.book
         self.results = results
         self.numbers = {sheet.name.lower(): i for i, sheet in enumerate(prepared.sheets)}
-        self._resolve = resolve
-        self._shifted: dict[tuple[int, str], tuple[str, Analysis]] = {}
 
     def value(self, number: int, ref: str) -> Value:
         """Return what a cell holds, None when it is blank or not there."""
@@ -118,50 +118,53 @@ class Reading:
         found = self.prepared.sheets[number].cell(ref)
         return found is not None and found[1].get("s", "0") in self.date_styles
 
-    def cells_in(self, number: int, block: Area) -> Iterator[tuple[str, Value]]:
-        """Yield the cells of an area that the sheet holds, with their values."""
-        top, left, bottom, right = block
-        sheet = self.prepared.sheets[number]
-        if (bottom - top + 1) * (right - left + 1) < len(sheet.cells):
-            from .enginecopy import frame_cells
+    def texts(self, number: int) -> Iterator[tuple[str, str]]:
+        """Yield the cells of a sheet that hold a text."""
+        for start, attributes in self.prepared.sheets[number].cells:
+            ref = attributes["r"]
+            if (number, ref) in self.results or attributes.get("t") in ("s", "str", "inlineStr"):
+                value = self.results.get((number, ref)) or self._raw(
+                    self.prepared.sheets[number], start, attributes
+                )
+                if isinstance(value, str):
+                    yield ref, value
 
-            for ref in frame_cells(block):
-                if sheet.cell(ref) is not None:
-                    yield ref, self.value(number, ref)
-            return
-        for _, attributes in sheet.cells:
-            place = row_column(attributes["r"])
-            if place and top <= place[0] <= bottom and left <= place[1] <= right:
-                yield attributes["r"], self.value(number, attributes["r"])
-
-    def formula(self, number: int, cell: FormulaCell) -> tuple[str, Analysis]:
-        """Return the formula text of a cell and what it uses; shared formulas are moved to their cell."""
-        key = number, cell.ref
-        if cell.text:
-            return cell.text, self.prepared.analyses[key]
-        found = self._shifted.get(key)
-        if found is None:
-            sheet = self.prepared.sheets[number]
-            master_ref = self.prepared.masters[number, cell.rule.get("si", "")]
-            master = self._formulas_of(sheet)[master_ref]
-            text = shifted(master.text, cell.row - master.row, cell.column - master.column)
-            found = self._shifted[key] = text, analyse(text, self._resolve)
+    @cached_property
+    def failed(self) -> dict[int, dict[str, CellError]]:
+        """The cells of each sheet that show an error, constants included."""
+        found: dict[int, dict[str, CellError]] = {}
+        for (number, ref), value in self.results.items():
+            if isinstance(value, CellError):
+                found.setdefault(number, {})[ref] = value
+        for number, sheet in enumerate(self.prepared.sheets):
+            for start, attributes in sheet.cells:
+                if attributes.get("t") == "e" and (number, attributes["r"]) not in self.results:
+                    value = self._raw(sheet, start, attributes)
+                    if isinstance(value, CellError):
+                        found.setdefault(number, {})[attributes["r"]] = value
         return found
 
-    def _formulas_of(self, sheet: Sheet) -> dict[str, FormulaCell]:
-        if not hasattr(self, "_by_ref"):
-            self._by_ref: dict[str, dict[str, FormulaCell]] = {}
-        if sheet.part not in self._by_ref:
-            self._by_ref[sheet.part] = {formula.ref: formula for formula in sheet.formulas}
-        return self._by_ref[sheet.part]
+    def within(self, place: tuple[int, Area], cells: Mapping[str, Held]) -> Iterator[tuple[str, Held]]:
+        """Yield those of some cells that lie in an area."""
+        top, left, bottom, right = place[1]
+        if top == bottom and left == right:
+            ref = cell_name(top, left)
+            if ref in cells:
+                yield ref, cells[ref]
+            return
+        for ref, value in cells.items():
+            row, column = row_column(ref) or (0, 0)
+            if top <= row <= bottom and left <= column <= right:
+                yield ref, value
 
-    def place_of(self, number: int, kind: str, where: str, text: str) -> tuple[int, Area] | None:
+    def place_of(self, number: int, use: Use) -> tuple[int, Area] | None:
         """Return the sheet number and area that a reference or a name in a formula stands for."""
-        if kind == "ref":
-            block = area(text)
-            other = self.numbers.get(sheet_of(where).lower()) if where else number
+        if not use.named:
+            block = area(use.text)
+            other = self.numbers.get(sheet_of(use.where).lower()) if use.where else number
             return (other, block) if block is not None and other is not None else None
-        name = self.book.named(text, sheet_of(where) if where else self.prepared.sheets[number].name)
+        sheet = sheet_of(use.where) if use.where else self.prepared.sheets[number].name
+        name = self.book.named(use.text, sheet)
         target = target_of(name) if name is not None else None
         if target is None:
             return None

@@ -8,7 +8,7 @@ import signal
 import threading
 from collections.abc import Callable, Collection, Iterator, Mapping
 from contextlib import contextmanager
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cache, partial
 from pathlib import Path
 from types import FrameType, MappingProxyType
@@ -21,7 +21,7 @@ from . import saving
 from .addresses import size
 from .book import describe
 from .calls import TEXT_LIMIT, Calls, Function
-from .cautions import Caution, cautions
+from .cautions import Caution, cautions, open_elsewhere
 from .engine import Engine, Formualizer, Sheets
 from .enginecopy import Preparation, Prepared, frame_cells
 from .errors import FileRefused, FormulaRefused
@@ -131,10 +131,12 @@ def recalculate(
                 remedy="Write to another file",
             )
         result = run.result()
+        warnings = result.warnings
         if writes and target is not None:
+            warnings += open_elsewhere(target)
             saving.save(result.package, target, seen)
         path = target if writes else None
-    return Recalculation(**{**result.__dict__, "path": path})
+    return replace(result, warnings=warnings, path=path)
 
 
 def _same_file(one: Path, other: Path) -> bool:
@@ -171,7 +173,7 @@ class Run:
         book = describe(packages.read(data))
         sheets = tuple(scan(tab.name, tab.part, book.package.parts[tab.part]) for tab in book.sheets)
         if inputs:
-            sheets = with_inputs(book, sheets, inputs, self.resolve)
+            sheets = with_inputs(book, sheets, inputs)
         self.prepared: Prepared = Preparation(book, sheets, self.engine, self.resolve, list(names)).run()
         self.calls = Calls()
         self.results: dict[tuple[int, str], Value] = {}
@@ -196,7 +198,7 @@ class Run:
         """Work the workbook out and make the new file."""
         self.work_out(self.open())
         new = written(self.prepared, self.results)
-        reading = Reading(self.prepared, self.results, self.resolve)
+        reading = Reading(self.prepared, self.results)
         report = Report(reading, self.calls.reasons)
         names = [sheet.name for sheet in self.prepared.sheets]
         values = {(names[number], ref): value for (number, ref), value in self.results.items()}

@@ -92,8 +92,7 @@ class Report:
             value = results[number, formula.ref]
             if isinstance(value, CellError):
                 reason, source = self._reason(number, formula, value)
-                text = self.reading.formula(number, formula)[0]
-                yield CellFailure(sheet.name, formula.ref, value.text, reason, text, source)
+                yield CellFailure(sheet.name, formula.ref, value.text, reason, formula.text, source)
 
     def _reason(
         self, number: int, formula: FormulaCell, value: CellError
@@ -109,14 +108,12 @@ class Report:
 
     def _source(self, number: int, formula: FormulaCell, value: CellError) -> tuple[int, str] | None:
         """Return the first cell that the formula refers to and that shows the same error."""
-        analysis = self.reading.formula(number, formula)[1]
-        entries = [("ref", use.where, use.text) for use in analysis.references]
-        entries += [("name", use.where, use.text) for use in analysis.names]
-        for kind, where, text in entries:
-            place = self.reading.place_of(number, kind, where, text)
+        analysis = self.reading.prepared.analyses[number, formula.ref]
+        for use in analysis.uses:
+            place = self.reading.place_of(number, use)
             if place is None:
                 continue
-            for ref, held in self.reading.cells_in(*place):
+            for ref, held in self.reading.within(place, self.reading.failed.get(place[0], {})):
                 if held == value and (place[0], ref) != (number, formula.ref):
                     return place[0], ref
         return None
@@ -160,20 +157,13 @@ class Report:
         found = []
         for number, sheet, formula in self.reading.prepared.formulas():
             value = self.reading.results[number, formula.ref]
-            master = self._master_call(number, formula)
-            if value in _VERDICTS or master == "RB_CHECK":
+            whole = self.reading.prepared.analyses[number, formula.ref].whole
+            if value in _VERDICTS or (whole is not None and whole.name == "RB_CHECK"):
                 verdict = value.text if isinstance(value, CellError) else str(value)
                 name = names.get((number, formula.ref)) or self._label(number, formula) or formula.ref
                 numbers = self._numbers(number, formula)
                 found.append(Check(name, verdict, sheet.name, formula.ref, **numbers))
         return tuple(found)
-
-    def _master_call(self, number: int, formula: FormulaCell) -> str:
-        """Return the function that the whole formula is a call of; the same for all of a shared formula."""
-        prepared = self.reading.prepared
-        ref = formula.ref if formula.text else prepared.masters[number, formula.rule.get("si", "")]
-        whole = prepared.analyses[number, ref].whole
-        return whole.name if whole is not None else ""
 
     def _label(self, number: int, formula: FormulaCell) -> str:
         """Return the first text in the row, left of the verdict."""

@@ -6,6 +6,7 @@ import io
 import random
 import re
 from typing import Any
+from xml.sax.saxutils import escape
 
 import openpyxl
 import pytest
@@ -194,6 +195,26 @@ def test_overlapping_array_formulas_are_refused() -> None:
 )
 def test_shared_formulas_are_moved(formula: str, moved: str) -> None:
     assert shifted(formula, 3, 2) == moved
+
+
+@pytest.mark.parametrize(
+    "formula",
+    ["'Case A1'!A1+1", "'Case A1'!$A1", '"A1"&A1', "SUM('Case A1'!A1:B2)", "LOG10(A1)", "Other!A1*2", "A1%+1E3+A1^2"]
+)  # fmt: skip
+def test_a_shared_formula_gives_what_the_same_plain_formulas_give(formula: str) -> None:
+    numbers = {f"{c}{r}": f'<c r="{c}{r}"><v>{r * 7 + ord(c)}</v></c>' for r in range(1, 6) for c in "ABC"}
+
+    def found(texts: dict[str, str]) -> dict[tuple[str, str], Any]:
+        cells = {ref: f'<c r="{ref}">{text}</c>' for ref, text in texts.items()}
+        return values(parts.workbook({"S": {**numbers, **cells}, "Other": numbers, "Case A1": numbers}))
+
+    shared = dict.fromkeys(("F1", "G1", "F2", "G2"), '<f t="shared" si="0"/>')
+    shared["F1"] = f'<f t="shared" si="0" ref="F1:G2">{escape(formula)}</f>'
+    plain = {"F1": (0, 0), "G1": (0, 1), "F2": (1, 0), "G2": (1, 1)}
+    assert found(shared) == found(
+        {ref: f"<f>{escape(shifted(formula, *by))}</f>" for ref, by in plain.items()}
+    )
+    assert len(set(found(shared).values())) > 1
 
 
 @settings(max_examples=300, deadline=None)

@@ -266,7 +266,19 @@ def test_a_text_that_a_sum_skips_is_named_once() -> None:
         "B1": "=SUM(A1:A6)", "B2": "=MAX(A1:A6)+1", "B3": "=SUMPRODUCT(A1:A1,A1:A1)", "B4": "=SUM(masses)",
     }  # fmt: skip
     found = warnings(cells, names={"masses": "S!$A$2:$A$3"})
-    assert found == [*(("text", ("B1", f"A{i}")) for i in (2, 4, 5)), ("text", ("B4", "A2"))]
+    assert found == [("text", ("B1", f"A{i}")) for i in (2, 4, 5)]
+
+
+def test_a_file_that_an_office_program_holds_open_is_named(tmp_path: Path) -> None:
+    path = tmp_path / "book.xlsx"
+    path.write_bytes(tipper())
+    for mark in ("~$book.xlsx", ".~lock.book.xlsx#"):
+        (tmp_path / mark).write_bytes(b"designer")
+        [warning] = recalculate(path, functions={}).warnings
+        assert warning.kind == "open"
+        assert "book.xlsx seems to be open" in str(warning)
+        (tmp_path / mark).unlink()
+    assert not recalculate(path, functions={}).warnings
 
 
 def test_warnings_look_into_shared_formulas() -> None:
