@@ -67,7 +67,6 @@ class _Search:
         self.reading = reading
         self.prepared = reading.prepared
         self.reported: set[str] = set()
-        self.named: set[tuple[int, str]] = set()
         self.texts: dict[int, dict[str, str]] = {}
         self.tabs = [sheet.name for sheet in reading.prepared.sheets]
         self.units: dict[tuple[int, str], str] = {}  # cells whose number is in a unit that is not SI
@@ -181,8 +180,9 @@ class _Search:
             if place is None or place in seen:
                 continue
             seen.add(place)
-            for ref, value in self.reading.within(place, self._numeric_texts(place[0])):
-                self.named.add((place[0], ref))
+            texts = self._numeric_texts(place[0])
+            for ref, value in list(self.reading.within(place, texts)):
+                del texts[ref]  # each is named once, however many sums skip it
                 source = self.tabs[place[0]], ref
                 yield Caution(
                     "text",
@@ -192,7 +192,7 @@ class _Search:
                 )
 
     def _numeric_texts(self, number: int) -> dict[str, str]:
-        """Return the cells of a sheet whose text reads as a number, those named already left out."""
+        """Return the cells of a sheet whose text reads as a number and that are not named yet."""
         found = self.texts.get(number)
         if found is None:
             found = self.texts[number] = {
@@ -200,4 +200,4 @@ class _Search:
                 for ref, value in self.reading.texts(number)
                 if value[:1] in "+-.0123456789\u2212 " and quantity(value) is not None
             }
-        return {ref: value for ref, value in found.items() if (number, ref) not in self.named}
+        return found

@@ -129,9 +129,8 @@ class Reading:
                 if isinstance(value, str):
                     yield ref, value
 
-    @cached_property
     def failed(self) -> dict[int, dict[str, CellError]]:
-        """The cells of each sheet that show an error, constants included."""
+        """Return the cells of each sheet that show an error now, constants included."""
         found: dict[int, dict[str, CellError]] = {}
         for (number, ref), value in self.results.items():
             if isinstance(value, CellError):

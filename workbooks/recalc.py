@@ -253,7 +253,7 @@ class Run:
 
 _UNLAWFUL: Final = {
     "Circ": "the formula depends on its own result (circular reference)",
-    "Spill": "the result is a block that does not fit into its place",
+    "Spill": "the result is a block that does not fit into its place, or is larger than the engine takes",
     "Array": "the result is a block in a single cell",
     "Error": "the formula cannot be read",
     "NImpl": "the engine does not offer this form of a function",

@@ -6,7 +6,7 @@ import re
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from functools import cached_property
-from typing import Final
+from typing import Final, TypeAlias
 
 from rigidsheet.udf.cells import CellError, Refusal, Value
 
@@ -57,6 +57,9 @@ class Check:
     margin: Value = None
 
 
+# Sheet number: address: the error that the cell shows.
+Failed: TypeAlias = Mapping[int, Mapping[str, CellError]]
+
 _WHY: Final = {
     "#DIV/0!": "something is divided by zero",
     "#N/A": "what was looked for is not there",
@@ -88,17 +91,18 @@ class Report:
 
     def _errors(self) -> Iterator[CellFailure]:
         results = self.reading.results
+        failed = self.reading.failed()
         for number, sheet, formula in self.reading.prepared.formulas():
             value = results[number, formula.ref]
             if isinstance(value, CellError):
-                reason, source = self._reason(number, formula, value)
+                reason, source = self._reason(number, formula, value, failed)
                 yield CellFailure(sheet.name, formula.ref, value.text, reason, formula.text, source)
 
     def _reason(
-        self, number: int, formula: FormulaCell, value: CellError
+        self, number: int, formula: FormulaCell, value: CellError, failed: Failed
     ) -> tuple[str, tuple[str, str] | None]:
         known = self.reasons.get((number, formula.row, formula.column))
-        source = self._source(number, formula, value)
+        source = self._source(number, formula, value, failed)
         if source is not None:
             where = self.tabs[source[0]], source[1]
             return f"the error comes from {address(*where)}", where
@@ -106,14 +110,16 @@ class Report:
             return known[1].reason, None
         return _WHY.get(value.text, "the formula gives an error"), None
 
-    def _source(self, number: int, formula: FormulaCell, value: CellError) -> tuple[int, str] | None:
+    def _source(
+        self, number: int, formula: FormulaCell, value: CellError, failed: Failed
+    ) -> tuple[int, str] | None:
         """Return the first cell that the formula refers to and that shows the same error."""
         analysis = self.reading.prepared.analyses[number, formula.ref]
         for use in analysis.uses:
             place = self.reading.place_of(number, use)
             if place is None:
                 continue
-            for ref, held in self.reading.within(place, self.reading.failed.get(place[0], {})):
+            for ref, held in self.reading.within(place, failed.get(place[0], {})):
                 if held == value and (place[0], ref) != (number, formula.ref):
                     return place[0], ref
         return None

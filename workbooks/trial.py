@@ -116,8 +116,8 @@ def _judged(text: str) -> Analysis:
     if any(ord(letter) < 32 and letter not in "\t\n\r" for letter in text):
         raise FileRefused("The formula holds a control character")
     analysis = analyse(text, resolver(tuple(calling.names())))
-    if analysis.references:
-        use = analysis.references[0]
+    use = next((one for one in analysis.uses if not one.named), None)
+    if use is not None:
         raise FileRefused(
             f"A formula that is tried on its own has no cells to read; got {use.where}{use.text}",
             remedy='Type the value in its place, like "400 mm" or {0.4,0.2}',
