@@ -124,6 +124,24 @@ def unit_factor(argument: str, kind: Kind, unit: str, where: str = "") -> float:
         raise refused from None
 
 
+def beside_unit(argument: str, kind: Kind, cell: Value, unit: str, where: str = "") -> float:
+    """Read a number whose unit stands in a cell of its own, refusing a second unit in the number's cell."""
+    f = unit_factor(argument, kind, unit, where)
+    if type(cell) is str and cell.strip():
+        number, own = quantity_parts(argument, kind, cell, where)
+        if own:
+            raise InputError(
+                argument,
+                f"{asked(kind)} with one unit; got two units, {shown(cell)} beside {shown(unit)}",
+                where=where,
+            )
+        return number * f
+    if type(cell) is float and cell - cell == 0.0:
+        value = cell * f
+        return value if value - value == 0.0 else quantity(argument, kind, value, where)
+    raise wrong(argument, f"a number in {unit.strip()}", cell, where=where)
+
+
 def blank_unit(argument: str, kind: Kind, cell: Block) -> None:
     """Refuse numbers beside units where one of the unit cells is blank."""
     if any(is_unit_text(row[1]) for row in cell):
@@ -188,16 +206,14 @@ class Scalar:
             first, second = (cell[0][0], cell[0][1]) if columns == 2 else (cell[0][0], cell[1][0])
             if type(first) is float and type(second) is str:
                 f = spellings.get(second)
-                if f is None:
-                    if not is_unit_text(second) and second.strip() not in ("-", "1"):
-                        if columns == 2:
-                            raise wrong(argument, f"{asked(self.kind)} and its unit", second)
-                        return column(argument, self.kind, cell)
-                    f = unit_factor(argument, self.kind, second)
-                if first - first != 0.0:
-                    raise wrong(argument, "a finite number", first)
-                return float(first * f)
-            if is_unit_text(first) and (type(second) is float or second is None):
+                if f is not None or second.strip() in ("-", "1"):
+                    f = unit_factor(argument, self.kind, second) if f is None else f
+                    if first - first != 0.0:
+                        raise wrong(argument, "a finite number", first)
+                    return float(first * f)
+            if is_unit_text(second):
+                return beside_unit(argument, self.kind, first, str(second))
+            if is_unit_text(first):
                 raise unit_leads(argument, self.kind, cell)
             if columns == 2 and (second is None or second == ""):
                 quantity(argument, self.kind, first)
@@ -224,9 +240,7 @@ def column(argument: str, kind: Kind, cell: Block) -> Array:
     """Read n x 1 cells (first or last may be the unit), or n x 2 of numbers beside units, as (n,)."""
     if len(cell[0]) == 2:
         values = [
-            quantity(argument, kind, row[0], f"row {i}")
-            * unit_factor(argument, kind, str(row[1]), f"row {i}")
-            for i, row in enumerate(cell, 1)
+            beside_unit(argument, kind, row[0], str(row[1]), f"row {i}") for i, row in enumerate(cell, 1)
         ]
         return np.array(values)
     cells = [row[0] for row in cell]
@@ -286,6 +300,7 @@ class Vector:
 
     kind: Kind
     words_for: tuple[str, ...] = ()
+    example: tuple[tuple[float, ...], ...] = ((0.3, -0.4, 0.5),)
     role: Role = Role.VECTOR
 
     def reader(self, argument: str, limit: Limit | None) -> Reader:
@@ -314,7 +329,7 @@ class Vector:
         return f"{self.kind.name} vector [{self.kind.si}], x y or x y z{also}"
 
     def sample(self) -> Cell:
-        return [[0.3, -0.4, 0.5]]
+        return [list(row) for row in self.example]
 
 
 @dataclass(frozen=True, slots=True)
@@ -451,22 +466,22 @@ def line(argument: str, kind: Kind, cells: Sequence[Value], rule: str, where: st
             [quantity(argument, kind, c, where or f"component {'xyz'[i]}") for i, c in enumerate(body)]
         )
     f = unit_factor(argument, kind, unit, where)
-    values = np.empty(len(body))
-    for i, c in enumerate(body):
-        if type(c) is not float or c - c != 0.0:
-            raise wrong(argument, f"a number in {unit}", c, where=where or f"component {'xyz'[i]}")
-        values[i] = c * f
-    return values
+    if all(type(c) is float for c in body):
+        values = np.array(body, dtype=float) * f
+        if np.isfinite(values).all():
+            return values
+    return np.array(
+        [beside_unit(argument, kind, c, unit, where or f"component {'xyz'[i]}") for i, c in enumerate(body)]
+    )
 
 
 def parts_with_units(argument: str, kind: Kind, cells: Sequence[Value], units: Sequence[str]) -> Array:
-    out = np.empty(len(cells))
-    for i, (c, u) in enumerate(zip(cells, units, strict=True)):
-        where = f"component {'xyz'[i]}"
-        if type(c) is not float or c - c != 0.0:
-            raise wrong(argument, f"a number in {u}", c, where=where)
-        out[i] = c * unit_factor(argument, kind, u, where)
-    return out
+    return np.array(
+        [
+            beside_unit(argument, kind, c, u, f"component {'xyz'[i]}")
+            for i, (c, u) in enumerate(zip(cells, units, strict=True))
+        ]
+    )
 
 
 @dataclass(frozen=True, slots=True)

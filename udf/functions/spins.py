@@ -167,8 +167,16 @@ FUNCTIONS = (
         group=GROUP,
         line="Spin that fits the velocities of several points best, and whether they can be one rigid body.",
         args=(
-            Arg("points", Vector(kinds.LENGTH), "points, a row each"),
-            Arg("velocities", Vector(kinds.VELOCITY), "their velocities, a row each"),
+            Arg(
+                "points",
+                Vector(kinds.LENGTH, example=((0.0, 0.0), (0.6, 0.0), (0.6, 0.4))),
+                "points, a row each",
+            ),
+            Arg(
+                "velocities",
+                Vector(kinds.VELOCITY, example=((0.0, 0.0), (0.0, 1.2), (-0.8, 1.2))),
+                "their velocities, a row each",
+            ),
         ),
         result=Result(
             (
