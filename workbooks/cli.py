@@ -54,6 +54,15 @@ class Program(click.Group):
             return INTERRUPTED
         return code if isinstance(code, int) else 0
 
+    def make_context(
+        self, info_name: str | None, args: list[str], parent: click.Context | None = None, **extra: Any
+    ) -> click.Context:
+        """Read the command line; --help and --version print while it is read."""
+        try:
+            return super().make_context(info_name, args, parent, **extra)
+        except BrokenPipeError:
+            raise click.exceptions.Exit(_closed_pipe()) from None
+
     def list_commands(self, ctx: click.Context) -> list[str]:
         """Return the commands in the order in which a person needs them."""
         return list(self.commands)

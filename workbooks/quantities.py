@@ -5,7 +5,9 @@ from __future__ import annotations
 from rigidsheet.core.errors import RigidsheetError
 from rigidsheet.udf.arguments import is_unit_text
 from rigidsheet.udf.cells import Value
+from rigidsheet.udf.kinds import KINDS
 from rigidsheet.udf.numbers import split_quantity
+from rigidsheet.udf.spellings import canonical
 from rigidsheet.udf.units import readings
 
 from .errors import InputRefused
@@ -19,6 +21,20 @@ def unit_in(value: Value) -> str:
         return value if readings(value) else ""
     except RigidsheetError:
         return ""
+
+
+def common_unit_in(value: Value) -> str:
+    """Return the unit text that a cell holds when it is one of the common spellings, else an empty text.
+
+    Where a label may stand as well as a unit, a word such as Bar or Rod must not become one.
+    """
+    if not isinstance(value, str) or len(value) > 30 or not is_unit_text(value):
+        return ""
+    try:
+        text = canonical(value)
+    except RigidsheetError:
+        return ""
+    return value if any(text in kind.spellings for kind in KINDS) else ""
 
 
 def is_si_unit(unit: str) -> bool:

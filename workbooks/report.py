@@ -13,7 +13,7 @@ from rigidsheet.udf.cells import CellError, Refusal, Value
 from .addresses import cell_name, row_column, size
 from .enginecopy import target_of
 from .errors import address
-from .quantities import unit_in
+from .quantities import common_unit_in, unit_in
 from .reading import Place, Reading
 from .sheetxml import FormulaCell
 
@@ -147,14 +147,14 @@ class Report:
         return tuple(found)
 
     def unit_beside(self, number: int, ref: str) -> str:
-        """Return the unit right of a cell, or left of it, where a single letter is a symbol and no unit."""
+        """Return the unit right of a cell, or a common one left of it, where a single letter is a symbol."""
         place = row_column(ref)
         assert place is not None
         row, column = place
         unit = unit_in(self.reading.value(number, cell_name(row, column + 1)))
         if unit or column == 1:
             return unit
-        left = unit_in(self.reading.value(number, cell_name(row, column - 1)))
+        left = common_unit_in(self.reading.value(number, cell_name(row, column - 1)))
         return left if len(left) > 1 else ""
 
     def checks(self) -> tuple[Check, ...]:

@@ -205,7 +205,7 @@ def _case_verdict(answers: list[Answer]) -> int:
     wrong = [answer for answer in answers if answer.error]
     failing = [answer for answer in answers if answer.fails]
     if wrong:
-        say(f"{len(wrong)} of {total} without an answer, first {wrong[0].case}: {wrong[0].error}")
+        say(f"{len(wrong)} of {total} with an error, first {wrong[0].case}: {wrong[0].error}")
         return ERROR
     if failing:
         say(f"{len(failing)} of {total} with a failing check, first {failing[0].case}: {failing[0].fails[0]}")
