@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from typing import Any
 
 import numpy as np
@@ -12,7 +12,7 @@ from ...core.errors import InputError
 from ...core.reactions import SolvedReactions, solve_reactions
 from ...core.supports import Hold
 from .. import kinds
-from ..arguments import Vector
+from ..arguments import Vector, folded
 from ..bodies import BODY, BodyRead, needs_space
 from ..declaration import Arg, CellFunction, Example, Field, Result, Row
 from ..states import LOADS, MOTION, SUPPORTS, SUPPORTS_3D, MotionRead, read_loads, read_supports
@@ -20,6 +20,7 @@ from ..tables import TableData
 from ..working import num, vec
 
 GROUP = "Forces"
+WITH_AXIS = ("thrust bearing", "hinge")  # supports in space that hold along an axis as well as across it
 NEWTON_EULER = "Newton-Euler equations of one rigid body (Meriam, Kraige: Dynamics, kinetics of rigid bodies)"
 
 
@@ -50,10 +51,13 @@ def solved(body: BodyRead, state: MotionRead, loads: TableData, supports: TableD
     solution = solve_reactions(
         rigid, state.balance(), holds, loads=read_loads(loads, gravity), gravity=gravity, planar=planar
     )
-    return Solved(rows_of(solution, state, planar), solution, rigid.mass)
+    kinds_of = dict(zip(supports.labels, map(folded, supports.texts("type")), strict=True))
+    return Solved(rows_of(solution, state, planar, kinds_of), solution, rigid.mass)
 
 
-def rows_of(solution: SolvedReactions, state: MotionRead, planar: bool) -> list[Row]:
+def rows_of(
+    solution: SolvedReactions, state: MotionRead, planar: bool, kinds_of: Mapping[str, str]
+) -> list[Row]:
     """Return a row for each reaction and each support's resultant, alpha if solved, weight and residual."""
     rows: list[Row] = []
     for support in dict.fromkeys(r.support for r in solution.reactions):
@@ -62,7 +66,7 @@ def rows_of(solution: SolvedReactions, state: MotionRead, planar: bool) -> list[
             Row(f"{support} {r.component}", float(r.value), kinds.TORQUE if r.hold.couple else kinds.FORCE)
             for r in own
         ]
-        rows += resultants(support, [(r.hold, r.value) for r in own])
+        rows += resultants(support, [(r.hold, r.value) for r in own], kinds_of.get(support, "") in WITH_AXIS)
     axes = "xy" if planar else "xyz"
     if state.alpha is None:
         for k, value in zip("xyz", solution.alpha, strict=True):
@@ -77,15 +81,14 @@ def rows_of(solution: SolvedReactions, state: MotionRead, planar: bool) -> list[
     return rows
 
 
-def resultants(support: str, own: list[tuple[Hold, float]]) -> list[Row]:
+def resultants(support: str, own: list[tuple[Hold, float]], with_axis: bool) -> list[Row]:
     """Return the size of what a support with several components carries."""
     rows = []
-    forces = [(h, v) for h, v in own if not h.couple]
-    across = [(h, v) for h, v in forces if "axial" not in h.component]
+    forces = [v for h, v in own if not h.couple]
     if len(forces) > 1:
-        rows.append(Row(f"{support} force", float(np.hypot.reduce([v for _, v in forces])), kinds.FORCE))
-    if 1 < len(across) < len(forces):
-        rows.append(Row(f"{support} radial", float(np.hypot.reduce([v for _, v in across])), kinds.FORCE))
+        rows.append(Row(f"{support} force", float(np.hypot.reduce(forces)), kinds.FORCE))
+    if with_axis:  # the two forces across the axis come first
+        rows.append(Row(f"{support} radial", float(np.hypot.reduce(forces[:2])), kinds.FORCE))
     couples = [v for h, v in own if h.couple]
     if len(couples) > 1:
         rows.append(Row(f"{support} couple", float(np.hypot.reduce(couples)), kinds.TORQUE))
