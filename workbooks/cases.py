@@ -18,9 +18,9 @@ from . import saving
 from .addresses import row_column
 from .engine import Sheets
 from .errors import FileRefused, InputRefused, address
-from .inputs import input_cell, input_value
+from .inputs import Filled, input_cell, input_value
 from .quantities import converted, quantity, unit_in
-from .reading import Place, Reading
+from .reading import Place
 from .recalc import Run, located
 from .report import Check, NamedResult, Report
 
@@ -120,26 +120,13 @@ def _table(path: Path, numbered: list[tuple[int, list[str]]]) -> Table:
     return Table(tuple(columns), tuple(rows))
 
 
-class _CaseReading(Reading):
-    """The workbook as it reads in one load case: the inputs of the case go before what the file holds."""
-
-    def __init__(self, run: Run) -> None:
-        super().__init__(run.prepared, run.results)
-        self.given: dict[tuple[int, str], Value] = {}
-
-    def value(self, number: int, ref: str) -> Value:
-        if (number, ref) in self.given:
-            return self.given[number, ref]
-        return super().value(number, ref)
-
-
 class Cases:
     """A workbook loaded once; iterating works the load cases out one after the other."""
 
     def __init__(self, data: bytes, table: Table, inputs: Mapping[str, object]) -> None:
         self.table = table
         self.run = Run(data, inputs, None, None)
-        self.reading = _CaseReading(self.run)
+        self.reading = Filled(self.run.prepared, self.run.results)
         self.reasons: dict[Place, tuple[str, Refusal]] = {}
         self.report = Report(self.reading, self.reasons)
         self.places = self._places()
@@ -162,7 +149,6 @@ class Cases:
     def __iter__(self) -> Iterator[Answer]:
         loaded = self.run.open()
         for label, texts in self.table.rows:
-            self.reading.given.clear()
             try:
                 self._work_out(loaded, self._inputs(texts))
             except RigidsheetError as refusal:
@@ -187,27 +173,16 @@ class Cases:
             self.reasons.update(calls.reasons)
 
     def _inputs(self, texts: Sequence[str]) -> dict[tuple[int, str], Value]:
-        """Return what goes into each cell; words first, because a unit cell rules the number beside it."""
-        given = self.reading.given
-        later: list[int] = []
-        for i, place in enumerate(self.places):
-            if not texts[i]:
-                raise InputRefused(self.table.columns[i].name, "given in every case; the cell is empty")
-            now = self.reading.value(*place)
-            if isinstance(now, str) and quantity(now) is None:
-                given[place] = self._value(i, texts[i])
-            else:
-                later.append(i)
-        values = {self.places[i]: self._value(i, texts[i]) for i in later}
-        given.update(values)
-        return given
-
-    def _value(self, i: int, text: str) -> Value:
-        column = self.table.columns[i]
-        bare = quantity(text)
-        if column.unit and bare is not None and not bare[1]:
-            text = f"{text} {column.unit}"
-        return input_value(self.reading, column.name, text, *self.places[i])
+        """Return what goes into each cell in one case."""
+        inputs = []
+        for column, text, place in zip(self.table.columns, texts, self.places, strict=True):
+            if not text:
+                raise InputRefused(column.name, "given in every case; the cell is empty")
+            bare = quantity(text) if column.unit else None
+            whole = f"{text} {column.unit}" if bare is not None and not bare[1] else text
+            inputs.append((column.name, whole, place))
+        self.reading.fill(inputs)
+        return self.reading.given
 
     def _answer(self, label: str) -> Answer:
         checks = self.report.checks()

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import difflib
 import math
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 
 from rigidsheet.udf.cells import Value
 
@@ -18,17 +18,48 @@ from .sheetxml import Sheet, scan, splice
 from .writeback import insertions, plain_cell_edits
 
 
+class Filled(Reading):
+    """A workbook as it reads with some cells filled in."""
+
+    def __init__(self, prepared: Prepared, results: dict[tuple[int, str], Value]) -> None:
+        super().__init__(prepared, results)
+        self.given: dict[tuple[int, str], Value] = {}
+
+    def value(self, number: int, ref: str) -> Value:
+        """Return what was filled in, else what the cell holds."""
+        if (number, ref) in self.given:
+            return self.given[number, ref]
+        return super().value(number, ref)
+
+    def fill(self, inputs: Iterable[tuple[str, object, tuple[int, str]]]) -> None:
+        """Judge and fill in inputs given by name, content and place.
+
+        Words go first, because a unit cell rules the number beside it.
+        """
+        self.given.clear()
+        numbers = []
+        for one in inputs:
+            held = (one[1], self.value(*one[2]))
+            if any(isinstance(text, str) and quantity(text) is None for text in held):
+                self.given[one[2]] = input_value(self, one[0], one[1], *one[2])
+            else:
+                numbers.append(one)
+        self.given.update({place: input_value(self, name, given, *place) for name, given, place in numbers})
+
+
 def with_inputs(book: Book, sheets: tuple[Sheet, ...], inputs: Mapping[str, object]) -> tuple[Sheet, ...]:
     """Return the sheets with input cells changed; every input is judged before the first is set."""
-    reading = Reading(Prepared(book, sheets), {})
-    wanted: dict[int, dict[str, Value]] = {}
+    reading = Filled(Prepared(book, sheets), {})
+    places: dict[tuple[int, str], tuple[str, object]] = {}
     for name, given in inputs.items():
-        number, ref = input_cell(reading, name)
-        if ref in wanted.get(number, {}):
+        place = input_cell(reading, name)
+        if place in places:
             raise InputRefused(name, "given once; another input sets the same cell", remedy="Leave one out")
-        wanted.setdefault(number, {})[ref] = input_value(reading, name, given, number, ref)
+        places[place] = name, given
+    reading.fill((name, given, place) for place, (name, given) in places.items())
     changed = list(sheets)
-    for number, values in wanted.items():
+    for number in {number for number, _ in reading.given}:
+        values = {ref: value for (where, ref), value in reading.given.items() if where == number}
         changed[number] = _set(sheets[number], values)
     return tuple(changed)
 

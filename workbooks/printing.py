@@ -132,4 +132,6 @@ def _bar(*, known: bool) -> Any:
         *counted,
         console=Console(stderr=True),
         transient=True,
+        redirect_stdout=False,  # results on standard output go where the person sent them
+        redirect_stderr=False,
     )

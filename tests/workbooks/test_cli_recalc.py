@@ -124,6 +124,13 @@ def test_a_length_is_converted_to_the_unit_beside_the_cell(book: Path, tmp_path:
     assert cached(book, "Load cases", "B1") is None
 
 
+def test_a_unit_cell_rules_the_number_beside_it(book: Path) -> None:
+    result = run("recalc", book, "--set", "arm=400 mm", "--set", "Inputs!C3=in")
+    assert result.exit_code == 0
+    assert cached(book, "Inputs", "B3") == pytest.approx(400 / 25.4, rel=1e-14)
+    assert cached(book, "Load cases", "B1") == pytest.approx(inertia(180, 0.4), rel=1e-12)
+
+
 def test_settings_once_each(book: Path) -> None:
     assert "set twice" in refused("recalc", book, "--set", "arm=1", "--set", "ARM=2")
     assert "same cell" in refused("recalc", book, "--set", "arm=1", "--set", "Inputs!B3=2")

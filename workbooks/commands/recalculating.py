@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import json
 import os
+from contextlib import nullcontext
 from pathlib import Path
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
 import click
 
@@ -78,44 +79,42 @@ def _files(
     write: bool,
     as_json: bool,
 ) -> int:
-    documents: list[dict[str, Any]] = []
-    worst = 0
-    for number, (file, output) in enumerate(steps(zip(files, outputs, strict=True), len(files), "Workbooks")):
-        try:
-            result = _recalculated(file, output, inputs, write=write, alone=len(files) == 1)
-        except (RigidsheetError, OSError) as refusal:
-            sentence = _located(file, refusal)
-            say(sentence)
-            documents.append({"file": str(file), "refused": sentence, "exit_code": ERROR})
-            worst = ERROR
-            continue
-        code = _code(result)
-        worst = max(worst, code)
-        _report(file, result, code, None if not as_json else documents, first=number == 0)
+    alone = len(files) == 1
+    pairs = steps(zip(files, outputs, strict=True), len(files), "Recalculating")
+    done = [(file, _recalculated(file, output, inputs, write=write, alone=alone)) for file, output in pairs]
     if as_json:
-        click.echo(json.dumps({"files": documents}, indent=2, allow_nan=False))
-    return worst
+        from .showing import document, refusal
+
+        entries = [
+            refusal(str(file), found) if isinstance(found, str) else document(str(file), found, _code(found))
+            for file, found in done
+        ]
+        click.echo(json.dumps({"files": entries}, indent=2, allow_nan=False))
+    for number, (file, found) in enumerate(done):
+        if isinstance(found, str):
+            say(found)
+        else:
+            _report(file, found, shown=not as_json, first=number == 0)
+    return max(ERROR if isinstance(found, str) else _code(found) for _, found in done)
 
 
 def _recalculated(
     file: Path, output: Path | None, inputs: dict[str, str], *, write: bool, alone: bool
-) -> Recalculation:
+) -> Recalculation | str:
+    """Return the recalculated workbook, or the sentence that refuses it: the other files still get done."""
     from ..recalc import recalculate
 
-    if not alone:
-        return recalculate(file, inputs=inputs, to=output, write=write)
-    with waiting(f"Recalculating {file.name}"):
-        return recalculate(file, inputs=inputs, to=output, write=write)
+    try:
+        with waiting(f"Recalculating {file.name}") if alone else nullcontext():
+            return recalculate(file, inputs=inputs, to=output, write=write)
+    except (RigidsheetError, OSError) as refusal:
+        return _located(file, refusal)
 
 
-def _report(
-    file: Path, result: Recalculation, code: int, documents: list[dict[str, Any]] | None, *, first: bool
-) -> None:
-    from .showing import complaint, document, show_report
+def _report(file: Path, result: Recalculation, *, shown: bool, first: bool) -> None:
+    from .showing import complaint, show_report
 
-    if documents is not None:
-        documents.append(document(str(file), result, code))
-    else:
+    if shown:
         if not first:
             click.echo()
         show_report(_title(file, result), result)

@@ -11,6 +11,7 @@ from rigidsheet.udf.working import num
 
 from ..errors import address
 from ..printing import heading, table
+from .ending import ERROR
 
 if TYPE_CHECKING:
     from ..recalc import Recalculation
@@ -159,6 +160,11 @@ def document(file: str, result: Recalculation, code: int) -> dict[str, Any]:
             for one in result.warnings
         ],
     }
+
+
+def refusal(file: str, sentence: str) -> dict[str, Any]:
+    """Return what a program reads about a file that was refused."""
+    return {"file": file, "written": None, "refused": sentence, "holds": False, "exit_code": ERROR}
 
 
 def plain(value: Value) -> Any:

@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING
 import click
 
 from ..printing import steps, table
-from .ending import ERROR, Refused, say
+from .ending import Refused
 
 if TYPE_CHECKING:
     from ..recalc import Recalculation
@@ -22,8 +22,7 @@ DEMO_FOLDER = "rigidsheet-demo"
 @click.command(short_help="Write every template, filled in, and show what it says.")
 @click.option("--to", "folder", metavar="DIR", type=click.Path(path_type=Path), help="Folder for the files.")
 @click.option("--force", is_flag=True, help="Write over files that are there already.")
-@click.pass_context
-def demo(ctx: click.Context, folder: Path | None, force: bool) -> None:
+def demo(folder: Path | None, force: bool) -> None:
     """Write every template, filled in for one packing line, recalculate it and show what it says.
 
     Without --to a new folder rigidsheet-demo is made here.
@@ -37,20 +36,20 @@ def demo(ctx: click.Context, folder: Path | None, force: bool) -> None:
     for path in files.values():
         _may_write(path, force)
     target.mkdir(parents=True, exist_ok=True)
-    errors = 0
     from .showing import show_report
 
-    for name in steps(list(files), len(files), "Writing the demo"):
-        result = make(TEMPLATES[name], files[name], blank=False)
+    written = steps(list(files), len(files), "Writing the demo")
+    results = {name: make(TEMPLATES[name], files[name], blank=False) for name in written}
+    for name, result in results.items():
         show_report(f"{TEMPLATES[name].title}: {files[name]}", result)
         click.echo()
-        for failure in result.errors:
-            say(f"{files[name].name}: {failure}")
-        errors += len(result.errors)
     click.echo(f"The files are in {target.resolve()}")
     click.echo(f"Change an input and run: rigidsheet recalc {next(iter(files.values()))}")
-    if errors:
-        ctx.exit(ERROR)
+    wrong = [
+        f"{files[name].name}: {failure}" for name, result in results.items() for failure in result.errors
+    ]
+    if wrong:
+        raise Refused(wrong[0] + (f" (and {len(wrong) - 1} more)" if len(wrong) > 1 else ""))
 
 
 @click.command(short_help="List the templates.")
