@@ -149,6 +149,11 @@ class LiveCalc:
         """Return cells as numbers, texts, None, or {'error': code}."""
         return [[plain(c) for c in row] for row in self.ask("read", doc, sheet, where)]
 
+    def read_each(self, doc: int, sheet: int | str, places: list[str]) -> list[list[list[Any]]]:
+        """Return several blocks of cells."""
+        found = self.ask("read_each", doc, sheet, places)
+        return [[[plain(c) for c in row] for row in block] for block in found]
+
     def cell(self, doc: int, sheet: int | str, where: str) -> Any:
         """Return one cell."""
         return self.read(doc, sheet, where)[0][0]

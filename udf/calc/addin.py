@@ -102,8 +102,8 @@ class Functions(unohelper.Base, XFunctions, XServiceInfo, XServiceName):
         return (CONFIG["service"], "com.sun.star.sheet.AddIn")
 
 
-def plain_method(name: str, own: str) -> Any:
-    """Return the method of a function with a fixed number of arguments; the omitted end is dropped."""
+def method_of(name: str, own: str) -> Any:
+    """Return the method behind a function; arguments omitted at the end are dropped."""
 
     def method(self: Functions, *arguments: Any) -> Any:
         while arguments and arguments[-1] is None:
@@ -113,20 +113,11 @@ def plain_method(name: str, own: str) -> Any:
     return method
 
 
-def rest_method(name: str, own: str) -> Any:
-    """Return the method of a function whose last argument takes any number of cells."""
-
-    def method(self: Functions, *arguments: Any) -> Any:
-        return answer(name, own, arguments[:-1] + tuple(arguments[-1]))
-
-    return method
-
-
-for _name, (_method, _rest) in CONFIG["functions"].items():
-    setattr(Functions, _method, (rest_method if _rest else plain_method)(_name, _method))
+for _name, _method in CONFIG["functions"].items():
+    setattr(Functions, _method, method_of(_name, _method))
 
 NAMES = frozenset(name.lower() for name in CONFIG["functions"]) | frozenset(
-    f"{CONFIG['service']}.{method}".lower() for method, _ in CONFIG["functions"].values()
+    f"{CONFIG['service']}.{method}".lower() for method in CONFIG["functions"].values()
 )
 
 

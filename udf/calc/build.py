@@ -12,9 +12,8 @@ from typing import Final
 from xml.sax.saxutils import escape, quoteattr
 
 from ..catalogue import FUNCTIONS
-from ..compiling import arguments_of
 from ..declaration import Arg, CellFunction
-from .host import fingerprint, method_name, takes_rest
+from .host import fingerprint, host_arguments, method_name
 
 IDENTIFIER: Final = "org.rigidsheet.cells"
 INTERFACE: Final = "XFunctions"
@@ -86,7 +85,7 @@ def configuration(python: str) -> str:
             "arguments": ["-E", "-P", "-m", "rigidsheet.udf.calc.worker"],
             "fingerprint": fingerprint(),
             "timeout": TIMEOUT_SECONDS,
-            "functions": {f.name: [method_name(f.name), takes_rest(f)] for f in FUNCTIONS.values()},
+            "functions": {f.name: method_name(f.name) for f in FUNCTIONS.values()},
         },
         indent=1,
     )
@@ -100,11 +99,7 @@ def type_library() -> str:
     """
     lines = []
     for f in FUNCTIONS.values():
-        last = len(arguments_of(f)) - 1
-        kinds = [
-            "sequence< any >" if takes_rest(f) and i == last else "any" for i in range(len(arguments_of(f)))
-        ]
-        taken = ", ".join(f"[in] {kind} a{i}" for i, kind in enumerate(kinds))
+        taken = ", ".join(f"[in] any a{i}" for i in range(len(host_arguments(f))))
         lines.append(f"  sequence< sequence< any > > {method_name(f.name)}({taken});")
     modules = IDENTIFIER.split(".")
     head = " ".join(f"module {m} {{" for m in modules)
@@ -131,7 +126,7 @@ def help_of(argument: Arg) -> str:
 def wizard_node(f: CellFunction) -> str:
     arguments = "".join(
         node(f"a{i}", prop("DisplayName", a.name) + prop("Description", help_of(a)))
-        for i, a in enumerate(arguments_of(f))
+        for i, a in enumerate(host_arguments(f))
     )
     return node(
         method_name(f.name),

@@ -5,12 +5,13 @@ from __future__ import annotations
 import functools
 import hashlib
 import json
+from dataclasses import replace
 from typing import Any, Final
 
 from ..catalogue import FUNCTIONS
 from ..cells import OMITTED, Answer, Cell, Refusal, Value
 from ..compiling import arguments_of
-from ..declaration import CellFunction
+from ..declaration import Arg, CellFunction
 from ..words import Rest
 
 # A reference to whole columns or rows arrives in full; its blank end is not meant.
@@ -31,10 +32,18 @@ def method_name(name: str) -> str:
     return first + "".join(word.capitalize() for word in rest)
 
 
-def takes_rest(f: CellFunction) -> bool:
-    """Say whether the last argument takes any number of cells."""
+def host_arguments(f: CellFunction) -> tuple[Arg, ...]:
+    """Return the arguments as Calc is told of them.
+
+    "The same arguments as that call" becomes one argument after the other, as many as the longest call has:
+    Calc would cut the answer of an array formula if the last argument were declared as repeating.
+    """
     arguments = arguments_of(f)
-    return bool(arguments) and isinstance(arguments[-1].shape, Rest)
+    if not arguments or not isinstance(arguments[-1].shape, Rest):
+        return arguments
+    last = arguments[-1]
+    longest = max(len(arguments_of(g)) for g in FUNCTIONS.values())
+    return (*arguments[:-1], *(replace(last, name=f"argument_{i}") for i in range(1, longest + 1)))
 
 
 def normalise(arguments: tuple[Any, ...]) -> list[Cell]:
