@@ -20,6 +20,7 @@ from .tables import Column, Entry, Record, Table, TableData
 Array = NDArray[np.float64]
 STANDARD_GRAVITY: Final = 9.80665  # m/s^2, exact by definition (CGPM 1901, ISO 80000-3)
 UNKNOWN, DOWN, NONE = "unknown", "down", "none"
+UNKNOWN_ABOUT: Final = tuple(f"{UNKNOWN} about {k}" for k in "xyz")
 WEIGHT_LABEL: Final = re.compile(
     r"(own |dead |self[- ]?)?weight( of (the )?body)?|gravity|m ?\*? ?g\Z", re.IGNORECASE
 )
@@ -40,15 +41,22 @@ class MotionRead:
     center_velocity: Array | None
     point_velocity: Array | None
     gravity: Array | None
+    free_axis: str = ""  # of an unknown alpha: x, y or z; empty for all that the problem has
 
-    def balance(self) -> states.Motion:
-        """Return the motion for a balance of forces and moments."""
+    def balance(self, in_space: bool = False) -> states.Motion:
+        """Return the motion for a balance of forces and moments, an unknown alpha about its axes."""
         if not self.alpha_given:
-            raise InputError("motion", "a motion with a line 'alpha': a number, or the word 'unknown'")
+            raise InputError(
+                "motion", "a motion with a line 'alpha': a number, or 'unknown', or 'unknown about z'"
+            )
         place, acceleration = self._place()
         turns: Sequence[Array] = ()
         if self.alpha is None:
-            turns = (np.array([0.0, 0.0, 1.0]),) if self.planar else tuple(np.eye(3))
+            turns = (
+                tuple(np.eye(3))
+                if in_space and not self.free_axis
+                else (np.eye(3)["xyz".index(self.free_axis or "z")],)
+            )
         alpha = np.zeros(3) if self.alpha is None else self.alpha
         return states.Motion(self.omega, alpha, acceleration, place, turns)
 
@@ -130,6 +138,7 @@ def finish_motion(argument: str, out: dict[str, Any]) -> MotionRead:
         center_velocity=vector("center velocity"),
         point_velocity=vector("point velocity"),
         gravity=None if gravity is None else lift(gravity),
+        free_axis=alpha[-1] if isinstance(alpha, str) and alpha != UNKNOWN else "",
     )
 
 
@@ -177,7 +186,7 @@ LOADS: Final = Table(
         *_PLACE,
         *_COUPLES,
     ),
-    what="loads",
+    what="table of loads",
     example=(("load", "Fx [N]", "Fy [N]", "x [mm]", "y [mm]"), ("wind", 120.0, 0.0, 400.0, 900.0)),
     none_word=True,
 )
@@ -248,7 +257,7 @@ SUPPORTS: Final = Table(
         Column("angle", kinds.ANGLE, "direction of the force on the body, from x, ccw +"),
         *_FAR[:2],
     ),
-    what="supports",
+    what="table of supports",
     example=(
         ("support", "type", "x [mm]", "y [mm]", "angle [deg]"),
         ("hinge", "pin", 0.0, 0.0, None),
@@ -267,7 +276,7 @@ SUPPORTS_3D: Final = Table(
         *_FAR,
         Column("holds", None, "for 'held': components like fx fy mz", also=("components",)),
     ),
-    what="supports",
+    what="table of supports",
     example=(
         ("support", "type", "x [mm]", "y [mm]", "z [mm]", "along x", "along y", "along z"),
         ("lower hinge", "thrust bearing", 0.0, 0.0, 0.0, 0.0, 0.0, 1.0),
@@ -303,6 +312,14 @@ def read_supports(data: TableData, planar: bool) -> tuple[Hold, ...]:
     """Return what all supports can put on the body."""
     holds: list[Hold] = []
     needed = 2 if planar else 3
+    for i, name in enumerate(data.labels):
+        if folded(name) in map(folded, data.labels[:i]):
+            raise InputError(
+                "supports",
+                f"supports with a name each; '{name}' stands twice",
+                remedy="The results are found by these names",
+                where=data.where(i),
+            )
     for i in range(len(data)):
         kind = _kind_word(data, i, PLANAR_KINDS if planar else SPATIAL_KINDS)
         at = _vector(data, i, "xyz", "x, y" if planar else "x, y, z", needed)

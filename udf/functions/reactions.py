@@ -35,6 +35,8 @@ class Solved(list[Row]):
 
 def planar_motion(state: MotionRead) -> None:
     """Refuse spins about x or y and places out of the plane in planar work."""
+    if state.free_axis in ("x", "y"):
+        raise InputError("motion", "planar: alpha is about z", remedy="RB_REACTIONS_3D works in space")
     for name, spin in (("omega", state.omega), ("alpha", state.alpha)):
         if spin is not None and np.any(spin[:2] != 0.0):
             raise InputError(
@@ -49,7 +51,12 @@ def solved(body: BodyRead, state: MotionRead, loads: TableData, supports: TableD
     rigid = body.body if planar else needs_space(body)
     holds = read_supports(supports, planar)
     solution = solve_reactions(
-        rigid, state.balance(), holds, loads=read_loads(loads, gravity), gravity=gravity, planar=planar
+        rigid,
+        state.balance(in_space=not planar),
+        holds,
+        loads=read_loads(loads, gravity),
+        gravity=gravity,
+        planar=planar,
     )
     kinds_of = dict(zip(supports.labels, map(folded, supports.texts("type")), strict=True))
     return Solved(rows_of(solution, state, planar, kinds_of), solution, rigid.mass)
@@ -69,11 +76,9 @@ def rows_of(
         rows += resultants(support, [(r.hold, r.value) for r in own], kinds_of.get(support, "") in WITH_AXIS)
     axes = "xy" if planar else "xyz"
     if state.alpha is None:
-        for k, value in zip("xyz", solution.alpha, strict=True):
-            if not planar or k == "z":
-                rows.append(
-                    Row("alpha" if planar else f"alpha {k}", float(value), kinds.ANGULAR_ACCELERATION)
-                )
+        for k in state.free_axis or ("z" if planar else "xyz"):
+            label = "alpha" if planar else f"alpha {k}"
+            rows.append(Row(label, float(solution.alpha["xyz".index(k)]), kinds.ANGULAR_ACCELERATION))
     rows += [Row(f"weight {k}", float(w), kinds.FORCE) for k, w in zip(axes, solution.weight, strict=False)]
     left = solution.residual
     rows.append(Row("residual force", float(np.linalg.norm(left.force)), kinds.FORCE))
