@@ -11,6 +11,7 @@ from rigidsheet.udf.cells import ERRORS, OMITTED, Answer, Block, Cell, CellError
 
 from .engine import Callback
 from .formulas import OMITTED_MARK
+from .operators import COMPARE, DIGITS, compare, digits
 
 # One of our functions: cells as positional arguments, an answer or a refusal back.
 Function: TypeAlias = Callable[..., "Answer | Refusal"]
@@ -42,6 +43,8 @@ class Calls:
             name: self._bound(name, function) for name, function in functions.items()
         }
         bound[FIT] = self._fit
+        bound[COMPARE] = compare
+        bound[DIGITS] = digits
         return bound
 
     def _bound(self, name: str, function: Function) -> Callback:

@@ -3,11 +3,9 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Callable, Iterator
 from dataclasses import dataclass, field
-from typing import Final, NamedTuple, TypeAlias
+from typing import Final, NamedTuple
 
-from .addresses import COLUMNS, ROWS, column_letters, column_number
 from .builtins import (
     ARRAY_FUNCTIONS,
     BLOCKWISE_FUNCTIONS,
@@ -15,32 +13,14 @@ from .builtins import (
     PASSING_FUNCTIONS,
     SINGLE_FUNCTIONS,
 )
+from .operators import COMPARE, DIGITS
+from .tokens import TOKEN, Resolver, canonical, resolver, shifted
 
-# A function name as the file spells it -> the name of one of our functions, or None.
-Resolver: TypeAlias = Callable[[str], str | None]
+__all__ = ["Analysis", "Argument", "Call", "Resolver", "Use", "analyse", "canonical", "resolver", "shifted"]
 
 OMITTED_MARK: Final = "\ue0f7omitted\ue0f7"  # private-use characters: no text in a cell looks like this
 NAME_MARK: Final = "\x02"  # round a defined name, which is replaced by what it stands for
 CALLER_MARK: Final = "\x00"  # where sheet number, row and column of the calling cell belong
-PREFIXES: Final = ("_XLFN.", "_XLWS.", "_XLUDF.", "_XLL.", "_XLPM.")
-
-_TOKEN: Final = re.compile(
-    r"""
-    (?P<string>"(?:[^"]|"")*")
-  | (?P<space>\s+)
-  | (?P<where>'(?:[^']|'')*'!|\[[^\]]*\][^\s'!(),;+\-*/&=<>^"{}]*!|[\w.?\\]+(?::[\w.?\\]+)?!)?
-    (?: (?P<ref>\$?[A-Za-z]{1,3}\$?[1-9][0-9]{0,6}(?::\$?[A-Za-z]{1,3}\$?[1-9][0-9]{0,6})?(?![\w.(\\?])
-          |\$?[A-Za-z]{1,3}:\$?[A-Za-z]{1,3}(?![\w.(\\?])
-          |\$?[1-9][0-9]*:\$?[1-9][0-9]*(?![\w.]))
-      | (?P<call>[A-Za-z_\\\u00a1-\U0010ffff][\w.\\?]*)(?P<gap>\s*)\(
-      | (?P<name>[A-Za-z_\\\u00a1-\U0010ffff][\w.\\?]*)
-      | (?P<error>\#(?:N/A|[A-Za-z0-9_/]+[!?]?)) )
-  | (?P<number>[0-9]+(?:\.[0-9]*)?(?:[eE][+-]?[0-9]+)?|\.[0-9]+(?:[eE][+-]?[0-9]+)?)
-  | (?P<array>\{(?:[^{}"]|"(?:[^"]|"")*")*\})
-  | (?P<op><=|>=|<>|.)
-    """,
-    re.VERBOSE | re.DOTALL,
-)
 
 
 @dataclass(slots=True)
@@ -96,30 +76,11 @@ class _Frame:
     outer: str  # the function whose argument this is, parentheses and IF left out
     index: int = 0  # number of the current argument
     pieces: int = 0  # tokens of the current argument
-
-
-def canonical(name: str) -> str:
-    """Return the upper-case name without the prefixes that files put before newer or loaded functions."""
-    upper = name.upper()
-    while upper.startswith(PREFIXES):
-        upper = upper.partition(".")[2]
-    return upper
-
-
-def resolver(names: Iterator[str] | tuple[str, ...]) -> Resolver:
-    """Return a reader of function names: any case, the prefixes of files, the long names of Calc."""
-    known = {name.upper(): name for name in names}
-    tight = {name.replace("_", ""): known[name] for name in known}
-
-    def resolve(name: str) -> str | None:
-        upper = canonical(name)
-        found = known.get(upper)
-        if found is None and "." in upper:
-            last = upper.rpartition(".")[2]
-            found = known.get(last) or tight.get(last.replace("_", ""))
-        return found
-
-    return resolve
+    start: int = 0  # where the current argument begins in the output
+    part: int = 0  # where the current operand of & begins
+    joins: bool = False  # the current side of a comparison has an &
+    compares: bool = False  # the current argument has a comparison
+    column: str = ""  # a whole column or row that stands in the current argument
 
 
 class _Reader:
@@ -136,7 +97,7 @@ class _Reader:
         self.first: Call | None = None  # the call outside of all parentheses
 
     def read(self, text: str) -> Analysis:
-        for token in _TOKEN.finditer(text):
+        for token in TOKEN.finditer(text):
             kind = token.lastgroup
             if kind == "space":
                 self.output.append(token[0])
@@ -148,6 +109,7 @@ class _Reader:
                 self._operand(kind or "", token)
         if len(self.frames) != 1:
             self._refuse("the formula has an open parenthesis too many")
+        self._end_argument()
         self.result.engine = "".join(self.output)
         top = self.frames[0]
         if top.pieces == 1:
@@ -163,6 +125,8 @@ class _Reader:
         """Note a token of the current argument of one of our functions."""
         frame = self.frames[-1]
         frame.pieces += 1
+        if frame.function == "TEXT" and frame.index == 1 and not (kind == "text" and _FORMAT.match(text)):
+            self._refuse(f"the engine cannot write a number in the format {text!r}, or in a computed one")
         if frame.ours is not None:
             single = frame.pieces == 1
             frame.ours.arguments[-1] = Argument(kind, text, use, call) if single else Argument("other")
@@ -239,6 +203,8 @@ class _Reader:
         self.last_use = len(self.result.uses)
         self.result.uses.append(use)
         self._argument("use", use=use)
+        if not named and _WHOLE.match(target):
+            self.frames[-1].column = target
         if self.frames[-1].outer in _COLLECTING:
             self.result.collected.append(use)
         return f"{NAME_MARK}{where}{NAME_MARK}{target}{NAME_MARK}" if named else text
@@ -277,8 +243,46 @@ class _Reader:
     def _start_argument(self) -> None:
         """Write the comma after the calling cell when the first argument of our function begins."""
         frame = self.frames[-1]
-        if frame.ours is not None and len(frame.ours.arguments) == 1 and frame.pieces == 0:
+        if frame.pieces:
+            return
+        if frame.ours is not None and len(frame.ours.arguments) == 1:
             self.output.append(",")
+        frame.start = frame.part = len(self.output)
+
+    def _end_side(self) -> None:
+        """Close the last operand of an & chain: numbers go into texts with 15 digits."""
+        frame = self.frames[-1]
+        if frame.joins:
+            self.output.insert(frame.part, f"{DIGITS}(")
+            self.output.append(")")
+        frame.joins = False
+
+    def _end_argument(self) -> None:
+        """Close what the operators of the argument have opened."""
+        self._end_side()
+        frame = self.frames[-1]
+        if frame.compares:
+            self.output.append(")")
+            if frame.column:  # the engine hands over only the part in use, which need not fit another one
+                self._refuse(
+                    f"the formula compares the whole of {frame.column}; name its cells, as in A1:A500"
+                )
+        frame.compares = False
+
+    def _rewrite(self, sign: str) -> None:
+        """Put & or a comparison into the engine's text."""
+        frame = self.frames[-1]
+        if sign == "&":
+            frame.joins = True
+            self._end_side()
+            frame.joins = True
+            self.output.append(sign)
+        else:
+            self._end_argument()
+            self.output.insert(frame.start, f'{COMPARE}("{sign}",')
+            self.output.append(",")
+            frame.compares = True
+        frame.part = len(self.output)
 
     def _operator(self, sign: str) -> None:
         frame = self.frames[-1]
@@ -313,12 +317,16 @@ class _Reader:
         self._argument("other")
         if not frame.arrays and self.last_use >= 0:
             self.result.uses[self.last_use] = self.result.uses[self.last_use]._replace(single=True)
-        self.output.append(sign)
+        if sign == "&" or sign in _COMPARISONS:
+            self._rewrite(sign)
+        else:
+            self.output.append(sign)
         self.operator = sign != "%"
         self.value = sign == "%"
         self.last_use = -1
 
     def _comma(self) -> None:
+        self._end_argument()
         frame = self.frames[-1]
         if frame.ours is not None:
             if frame.pieces == 0:
@@ -328,6 +336,7 @@ class _Reader:
         elif not frame.function:
             self._refuse("the formula joins several areas into one reference")
         frame.pieces = 0
+        frame.column = ""
         frame.index += 1
         self.output.append(",")
         self.operator = self.value = False
@@ -337,6 +346,7 @@ class _Reader:
         if len(self.frames) == 1:
             self._refuse("the formula has a closing parenthesis too many")
             return
+        self._end_argument()
         frame = self.frames.pop()
         if frame.ours is not None:
             if frame.pieces == 0 and len(frame.ours.arguments) > 1:
@@ -346,40 +356,22 @@ class _Reader:
         self.output.append(")")
         if frame.function:
             self.last_use = -1
+        if not frame.function or frame.function in BLOCKWISE_FUNCTIONS:
+            self.frames[-1].column = self.frames[-1].column or frame.column
         self.operator = False
         self.value = True
 
 
 _COLLECTING: Final = frozenset({"SUM", "AVERAGE", "MAX", "MIN", "PRODUCT", "SUMSQ", "SUBTOTAL"})
+_WHOLE: Final = re.compile(r"(?:[A-Z$]+:[A-Z$]+|[0-9$]+:[0-9$]+)\Z", re.IGNORECASE)
+_SECTION: Final = r'(?:"[^"]*"|[+\- ])*[#0,]*(?:\.[#0]*)?(?:"[^"]*"|[% ])*'
+_FORMAT: Final = re.compile(
+    rf"(?:{_SECTION}(?:;{_SECTION})?|\[h\]:mm|[ymdhs:/. -]+|General|@)\Z", re.IGNORECASE
+)
+_COMPARISONS: Final = frozenset({"=", "<>", "<", ">", "<=", ">="})
 _CHOOSING: Final = frozenset({"IF", "IFS", "SWITCH", "CHOOSE"})
 
 
 def analyse(text: str, resolve: Resolver) -> Analysis:
     """Read one formula, without the leading equals sign."""
     return _Reader(resolve).read(text)
-
-
-def shifted(text: str, rows: int, columns: int) -> str:
-    """Return the formula as it reads in a cell that many rows down and columns to the right."""
-
-    def one(token: re.Match[str]) -> str:
-        reference = token["ref"]
-        if reference is None:
-            return token[0]
-        return (token["where"] or "") + _PIECE.sub(lambda piece: _moved(piece, rows, columns), reference)
-
-    return _TOKEN.sub(one, text)
-
-
-_PIECE: Final = re.compile(r"(\$?)([A-Za-z]{1,3})?(?:(\$?)([1-9][0-9]*))?(?=:|$)")
-
-
-def _moved(piece: re.Match[str], rows: int, columns: int) -> str:
-    letters, digits = piece[2] or "", piece[4] or ""
-    fixed_column, fixed_row = piece[1], piece[3] or ""
-    if letters and not fixed_column:
-        letters = column_letters((column_number(letters) + columns - 1) % COLUMNS + 1)
-    row_is_fixed = fixed_row if letters else fixed_column
-    if digits and not row_is_fixed:
-        digits = str((int(digits) + rows - 1) % ROWS + 1)
-    return fixed_column + letters + fixed_row + digits

@@ -31,7 +31,7 @@ def test_formula_gives_the_value_from_outside(case: conformance.Case) -> None:
 
 @pytest.mark.parametrize("case", [c for c in conformance.CASES if c.engine], ids=lambda c: c.formula)
 def test_formula_that_the_engine_gets_wrong_is_refused(case: conformance.Case) -> None:
-    with pytest.raises(FormulaRefused, match=r"engine|no function"):
+    with pytest.raises(FormulaRefused, match=r"engine|no function|the whole of"):
         worked_out(case.formula)
 
 
