@@ -146,7 +146,10 @@ MOTION: Final = Record(
     entries=(
         Entry("omega", Spin(kinds.ANGULAR_VELOCITY), "angular velocity, ccw +"),
         Entry(
-            "alpha", Spin(kinds.ANGULAR_ACCELERATION), "angular acceleration, or unknown", words=(UNKNOWN,)
+            "alpha",
+            Spin(kinds.ANGULAR_ACCELERATION),
+            "angular acceleration, or unknown",
+            words=(UNKNOWN, *UNKNOWN_ABOUT),
         ),
         Entry(
             "gravity", Vector(kinds.ACCELERATION), "down (along -y), none, or a vector", words=(DOWN, NONE)
