@@ -130,7 +130,9 @@ def _left_free(equations: Equations, left: Array, right: Array, rank: int) -> Ph
     text = f"{lines}, so the body is" if lines else "The supports leave the body"
     text += f" free to {motion}" + (f" (one of {ways} free motions)" if ways > 1 else "")
     if not lines and rank < unknowns:
-        text += f", while {_fighting(equations, right[rank:])} share a load in no definite way"
+        stuck = _stuck(equations, right[rank:])
+        how = f"cannot be found together with {stuck[0]}" if stuck else "share a load in no definite way"
+        text += f", while {_fighting(equations, right[rank:])} {how}"
     turns = motion.startswith("rotate") and not equations.motions
     return PhysicsError(
         "", text, remedy="Add a support or a drive, or ask for alpha" if turns else "Add a support"
@@ -145,9 +147,9 @@ def _unasked(equations: Equations, free: Array) -> Array:
     left, values, _ = np.linalg.svd(supports)
     loose = left[:, int((values > SINGULAR * values[0]).sum()) :]
     asked = np.linalg.qr(np.array([_vector(equations, *twist) for twist in equations.twists]).T)[0]
-    rest = loose - asked @ (asked.T @ loose)
-    basis, sizes, _ = np.linalg.svd(rest, full_matrices=False)
-    unasked = basis[:, sizes > 1e-6]
+    # An asked motion is taken off only where the supports leave it free as it is: cosine one.
+    basis, cosines, _ = np.linalg.svd(loose.T @ asked)
+    unasked: Array = loose @ basis[:, int((cosines > 1.0 - 1e-9).sum()) :]
     return unasked if unasked.size else free
 
 
@@ -157,13 +159,6 @@ def _vector(equations: Equations, velocity: Triple, omega: Triple) -> Array:
     vector = np.array((velocity[0], velocity[1], turn[2]) if equations.planar else (*velocity, *turn))
     unit: Array = vector / np.sqrt(vector @ vector)
     return unit
-
-
-def _free_remedy(equations: Equations) -> str:
-    """Return what to change when a motion is left free."""
-    if equations.motions:
-        return "Add a support"
-    return "Add a support or a drive, or make alpha unknown"
 
 
 def _lines_of_action(equations: Equations, free: Array) -> str:
@@ -277,13 +272,18 @@ def _fighting(equations: Equations, null: Array) -> str:
     return text if len(text) <= LONGEST_LIST else _joined([short_name(name) for name in parts])
 
 
+def _stuck(equations: Equations, null: Array) -> list[str]:
+    """Return the unknown motions that take part in what the equations leave open."""
+    held = np.sqrt((null * null).sum(axis=0))[len(equations.holds) :] > PART_OF_IT
+    return [name for name, stuck in zip(equations.motions, held, strict=True) if stuck]
+
+
 def _too_many(equations: Equations, null: Array) -> PhysicsError:
     """Return the refusal that names the supports which hold the same motion."""
-    held = np.sqrt((null * null).sum(axis=0))[len(equations.holds) :] > PART_OF_IT
-    for name, stuck in zip(equations.motions, held, strict=True):
-        if stuck:
-            text = f"{name} cannot be unknown: the supports hold the body against it"
-            return PhysicsError("", text, remedy="Give its value, or free the supports")
+    stuck = _stuck(equations, null)
+    if stuck:
+        text = f"{stuck[0]} cannot be unknown: the supports hold the body against it"
+        return PhysicsError("", text, remedy="Give its value, or free the supports")
     text = (
         f"Too many supports by {len(null)}: {_fighting(equations, null)} work against each other, "
         "so their share depends on stiffness"
