@@ -141,7 +141,7 @@ def test_momentum_and_energy_are_the_sums_over_particles(seed):
     v = c.velocities()
     center_velocity = c.masses @ v / c.mass
     energy = float(c.masses @ (v * v).sum(axis=1)) / 2
-    about = c.pivot + [0.3, -2.0, 0.7]
+    about = c.pivot + np.array([0.3, -2.0, 0.7])
     momentum = np.cross(c.points - about, c.masses[:, None] * v).sum(axis=0)
     spin = np.cross(c.points - c.center, c.masses[:, None] * v).sum(axis=0)
     told = (

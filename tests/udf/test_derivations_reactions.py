@@ -237,6 +237,7 @@ def space_sets(case: Case):
     unit = lambda v: v / np.linalg.norm(v)  # noqa: E731
     q_up = p + 1.3 * Z
     six = [(f"L{k} tension", unit(d_), at) for k, (at, d_) in enumerate(case.rng.normal(size=(6, 2, 3)))]
+    rods = [space_line(f"L{k}", "link", at, to=at + 2 * u) for k, (_, u, at) in enumerate(six)]
     yield "fixed", [space_line("F", "fixed", p)], [*push("F", p), *twist("F")], []
     yield (
         "gate on two bearings and a slot",
@@ -257,7 +258,7 @@ def space_sets(case: Case):
     )
     yield (
         "six links",
-        [space_line(f"L{k}", "link", at, to=at + 2 * u) for k, (_, u, at) in enumerate(six)],
+        rods,
         six,
         [],
     )
@@ -433,10 +434,8 @@ def test_envelope_equals_numpy(seed):
         ("unit", "N*m"),
     ):
         assert ask("RB_ENVELOPE", table, what) == expected
-    mixed = [
-        [n, float(v), "N*m"] if k % 2 else [n, float(v / 1e3), "kN*m"]
-        for k, (n, v) in enumerate(zip(names, values, strict=True))
-    ]
+    mixed = [[n, float(v), "N*m"] for n, v in zip(names, values, strict=True)]
+    mixed[::2] = [[n, v / 1e3, "kN*m"] for n, v, _ in mixed[::2]]
     assert ask("RB_ENVELOPE", mixed, "governing") == names[np.abs(values).argmax()]
     assert number("RB_ENVELOPE", mixed, "largest") == pytest.approx(values.max() / 1e3, rel=1e-13)
 
