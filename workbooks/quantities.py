@@ -2,6 +2,10 @@
 
 from __future__ import annotations
 
+from functools import lru_cache
+
+from functools import lru_cache
+
 from rigidsheet.core.errors import RigidsheetError
 from rigidsheet.udf.arguments import is_unit_text
 from rigidsheet.udf.cells import Value
@@ -15,12 +19,17 @@ from .errors import InputRefused
 
 def unit_in(value: Value) -> str:
     """Return the unit text that a cell holds, or an empty text when it holds something else."""
-    if not isinstance(value, str) or len(value) > 30 or not is_unit_text(value):
-        return ""
+    return value if isinstance(value, str) and _is_unit(value) else ""
+
+
+@lru_cache(maxsize=4096)
+def _is_unit(text: str) -> bool:
+    if len(text) > 30 or not is_unit_text(text):
+        return False
     try:
-        return value if readings(value) else ""
+        return bool(readings(text))
     except RigidsheetError:
-        return ""
+        return False
 
 
 def common_unit_in(value: Value) -> str:
@@ -28,13 +37,18 @@ def common_unit_in(value: Value) -> str:
 
     Where a label may stand as well as a unit, a word such as Bar or Rod must not become one.
     """
-    if not isinstance(value, str) or len(value) > 30 or not is_unit_text(value):
-        return ""
+    return value if isinstance(value, str) and _is_common_unit(value) else ""
+
+
+@lru_cache(maxsize=4096)
+def _is_common_unit(text: str) -> bool:
+    if len(text) > 30 or not is_unit_text(text):
+        return False
     try:
-        text = canonical(value)
+        plain = canonical(text)
     except RigidsheetError:
-        return ""
-    return value if any(text in kind.spellings for kind in KINDS) else ""
+        return False
+    return any(plain in kind.spellings for kind in KINDS)
 
 
 def is_si_unit(unit: str) -> bool:

@@ -18,6 +18,7 @@ from rigidsheet.workbooks import recalculate
 from rigidsheet.workbooks.calls import gate
 from rigidsheet.workbooks.engine import Formualizer
 from rigidsheet.workbooks.errors import FileRefused, FormulaRefused, UnknownFunction
+from rigidsheet.workbooks.operators import compare
 
 VALUE = CellError("#VALUE!")
 
@@ -426,3 +427,31 @@ def test_inputs_can_be_put_into_a_loaded_workbook() -> None:
     sheets.put("S", 1, 1, 5.0)
     sheets.run()
     assert sheets.value("S", 1, 2) == 10.0
+
+
+@pytest.mark.parametrize(
+    ("sign", "left", "right", "expected"),
+    [
+        ("=", None, None, True),
+        ("=", None, 0.0, True),
+        ("=", None, "", True),
+        ("=", None, False, True),
+        ("<", None, "a", True),
+        (">", "a", 1e9, True),  # texts after numbers, booleans after texts
+        (">", False, "zz", True),
+        ("=", "Pin", "pIN", True),
+        ("=", 0.1 + 0.2, 0.3, True),
+        ("<>", 1.0, 1.0 + 1e-14, True),
+        ("=", 1.0, 1.0 + 1e-15, True),
+        ("<", 1e300, 1.1e300, True),
+        ("=", CellError("#N/A"), CellError("#NUM!"), CellError("#N/A")),
+        ("=", 1.0, CellError("#NUM!"), CellError("#NUM!")),
+        ("<", [[1.0, 3.0]], 2.0, [[True, False]]),
+        ("=", [[1.0, 2.0]], [[1.0], [2.0]], [[True, False], [False, True]]),
+        ("=", [[1.0, 2.0, 3.0]], [[1.0, 2.0]], [[True, True, CellError("#N/A")]]),
+    ],
+)
+def test_comparisons_follow_the_rules_of_spreadsheets(
+    sign: str, left: Any, right: Any, expected: Any
+) -> None:
+    assert compare(sign, left, right) == expected
