@@ -4,8 +4,6 @@ from __future__ import annotations
 
 from functools import lru_cache
 
-from functools import lru_cache
-
 from rigidsheet.core.errors import RigidsheetError
 from rigidsheet.udf.arguments import is_unit_text
 from rigidsheet.udf.cells import Value
