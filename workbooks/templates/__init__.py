@@ -22,4 +22,18 @@ class Template:
     write: Callable[[Path, bool], None]
 
 
-TEMPLATES: Final[Mapping[str, Template]] = MappingProxyType({})
+def _bin_tipper(path: Path, blank: bool) -> None:
+    from . import bin_tipper
+
+    bin_tipper.write(path, blank)
+
+
+_ALL: Final = (
+    Template(
+        "bin-tipper",
+        "Bin tipper",
+        "Drive torque, hinge loads and stops of a tilting table that tips bins, by cylinder or gearbox.",
+        _bin_tipper,
+    ),
+)
+TEMPLATES: Final[Mapping[str, Template]] = MappingProxyType({one.name: one for one in _ALL})

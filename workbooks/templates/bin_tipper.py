@@ -1,0 +1,406 @@
+"""Bin tipper: a tilting table that tips fruit bins into the flume, driven by a cylinder or a gearbox.
+
+x points along the level table away from the flume, y up, z along the hinge axis, which passes through the
+origin; the tilt counts counter-clockwise from the level table.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from pathlib import Path
+from typing import Any, Final
+
+from rigidsheet.udf import kinds
+from rigidsheet.udf.limits import AT_LEAST_ONE, FRACTION, NOT_NEGATIVE, POSITIVE
+
+from .kit import Book, Page, Place
+from .kit_parts import Part, PartsTable, parts_table
+
+TITLE: Final = "Bin tipper"
+LINE: Final = (
+    "Fruit-packing line, Windfall Hollow orchard co-operative: tilting table that tips bins into the flume"
+)
+INPUT_COLUMNS: Final = (2.5, 31.0, 7.0, 13.5, 9.0, 9.5, 8.5, *([7.4] * 9))
+STEEL: Final = 7850.0
+
+TABLE: Final[tuple[Part, ...]] = (
+    {
+        "part": "deck plate",
+        "qty": 1,
+        "shape": "box",
+        "density": STEEL,
+        "L": 1300,
+        "W": 6,
+        "H": 1100,
+        "x": 655,
+        "y": 63,
+        "z": 0,
+    },
+    {
+        "part": "cut-out in the deck",
+        "qty": -1,
+        "shape": "box",
+        "density": STEEL,
+        "L": 520,
+        "W": 6,
+        "H": 700,
+        "x": 690,
+        "y": 63,
+        "z": 0,
+    },
+    {
+        "part": "side rail, drive side",
+        "qty": 1,
+        "shape": "hollow box",
+        "density": STEEL,
+        "L": 1320,
+        "W": 100,
+        "H": 50,
+        "t": 4,
+        "x": 660,
+        "y": 10,
+        "z": -430,
+    },
+    {
+        "part": "side rail, far side",
+        "qty": 1,
+        "shape": "hollow box",
+        "density": STEEL,
+        "L": 1320,
+        "W": 100,
+        "H": 50,
+        "t": 4,
+        "x": 660,
+        "y": 10,
+        "z": 430,
+    },
+    {
+        "part": "hinge tube",
+        "qty": 1,
+        "shape": "tube",
+        "density": STEEL,
+        "L": 1180,
+        "OD": 76.1,
+        "ID": 60.3,
+        "x": 0,
+        "y": 0,
+        "z": 0,
+    },
+    {
+        "part": "fence plate",
+        "qty": 1,
+        "shape": "box",
+        "density": STEEL,
+        "L": 5,
+        "W": 640,
+        "H": 900,
+        "x": 60,
+        "y": 386,
+        "z": 0,
+    },
+    {
+        "part": "brace, turned",
+        "qty": 1,
+        "shape": "hollow box",
+        "density": STEEL,
+        "L": 330,
+        "W": 60,
+        "H": 40,
+        "t": 3,
+        "x": -70,
+        "y": 190,
+        "z": -430,
+        "turn z": 62,
+    },
+    {
+        "part": "drive lever",
+        "qty": 1,
+        "shape": "box",
+        "density": STEEL,
+        "L": 470,
+        "W": 110,
+        "H": 20,
+        "x": 200,
+        "y": -35,
+        "z": -480,
+        "turn z": -9,
+    },
+    {
+        "part": "hold-down bar",
+        "qty": 1,
+        "shape": "box",
+        "mass": 14.5,
+        "L": 60,
+        "W": 60,
+        "H": 1040,
+        "x": 1180,
+        "y": 862,
+        "z": 0,
+    },
+    {
+        "part": "bin, empty",
+        "qty": 1,
+        "shape": "closed hollow box",
+        "mass": 42,
+        "L": 1200,
+        "W": 760,
+        "H": 1000,
+        "t": 25,
+        "x": 680,
+        "y": 447,
+        "z": 0,
+    },
+)
+FRUIT: Final[Part] = {
+    "part": "fruit",
+    "qty": 1,
+    "shape": "box",
+    "mass": 385,
+    "L": 1130,
+    "W": 620,
+    "H": 930,
+    "x": 680,
+    "y": 400,
+    "z": 45,
+}
+FREE_ROWS: Final = 2
+
+
+@dataclass(frozen=True, slots=True)
+class Case:
+    """A load case: share of the fruit that stays (`stuck`) and that pours, direction, run or emergency stop."""
+
+    name: str
+    stuck: int
+    pours: int
+    direction: int
+    run: int
+    stop: int
+
+
+CASES: Final = (
+    Case("empty, returning", 0, 0, -1, 1, 0),
+    Case("full, pouring", 0, 1, 1, 1, 0),
+    Case("stuck, tipping", 1, 0, 1, 1, 0),
+    Case("stuck, returning", 1, 0, -1, 1, 0),
+    Case("stuck, stop while tipping", 1, 0, 1, 0, -1),
+    Case("stuck, stop while returning", 1, 0, -1, 0, 1),
+)
+WHOLE: Final = tuple(case.name for case in CASES if not case.pours)  # cases in which the body stays whole
+
+
+@dataclass(frozen=True, slots=True)
+class Inputs:
+    """Places of all inputs."""
+
+    hinge_1: Place
+    hinge_2: Place
+    tilt_end: Place
+    tilt_time: Place
+    ramp_time: Place
+    pour_from: Place
+    pour_to: Place
+    stop_by: Place
+    stop_angle: Place
+    stop_time: Place
+    drive: Place
+    cylinder: dict[str, Place]
+    gearbox: dict[str, Place]
+    pin_rating: Place
+    unevenness: Place
+    factor_drive: Place
+    factor_pins: Place
+    look_tilt: Place
+    look_case: Place
+    parts: PartsTable
+
+    @property
+    def by_cylinder(self) -> str:
+        return f'{self.drive.ref}="cylinder"'
+
+    @property
+    def by_gearbox(self) -> str:
+        return f'{self.drive.ref}="gearbox"'
+
+    @property
+    def table(self) -> str:
+        """The parts list without the fruit."""
+        return self.parts.through(self.parts.last - 1)
+
+    @property
+    def whole(self) -> str:
+        """The parts list with the fruit."""
+        return self.parts.through(self.parts.last)
+
+
+def write(path: Path, blank: bool) -> None:
+    """Write the workbook; with `blank` the cells that a person fills in are empty."""
+    from . import bin_tipper_checks as checks
+    from . import bin_tipper_sheets as sheets
+
+    book = Book(TITLE, LINE, blank)
+    given, page = inputs(book)
+    work = sheets.working(book, given)
+    tilt = sheets.tilt_table(book, given, work)
+    hinges = sheets.hinge_table(book, given, work, tilt)
+    compared = checks.position(book, given, work, tilt, hinges)
+    checks.checks(book, given, work, tilt, hinges, compared["gaps"])
+    checks.sketch(book, given, work, tilt, page)
+    book.save(path)
+
+
+def inputs(book: Book) -> tuple[Inputs, Page]:
+    """Write the sheet of inputs."""
+    page = book.page("Inputs", INPUT_COLUMNS, landscape=True)
+    page.title_block()
+    book.status(page)
+    got: dict[str, Any] = {}
+    _motion(page, got)
+    _hinges(page, got)
+    page.page_break()
+    _drive(page, got)
+    _looking(page, got)
+    page.page_break()
+    page.section("Parts list: table and bin, then the fruit in the last row")
+    got["parts"] = parts_table(page, [*TABLE, *([None] * FREE_ROWS), FRUIT])
+    page.prose(
+        (
+            "x, y, z: mass center of the part with the table level, from the hinge axis; z along the hinge. "
+            "turn z: turned about its own mass center, counter-clockwise.",
+            "Give the mass or the density of a part, not both. A quantity of -1 is a cut-out. "
+            "Boxes: L along x, W along y, H along z; tubes: L along z.",
+        )
+    )
+    page.section("Assumptions")
+    page.prose(
+        (
+            "Rigid table and frame; hinge friction is left out. The speed rises and falls evenly in time (constant acceleration).",
+            "Pouring fruit leaves evenly over the tilt between the two angles; what stays keeps its mass center. Stuck fruit stays to the end.",
+            "An emergency stop takes the full speed off evenly, and may act at any tilt, both ways.",
+            "The gearbox turns the hinge shaft with a couple; its torque arm puts no side load on the hinges. The cylinder's own mass is left out.",
+            "Each hinge carries its share by the places of mass and drive along the hinge axis, then the allowance for uneven bearing.",
+        )
+    )
+    page.cautions()
+    return Inputs(**got), page
+
+
+def _motion(page: Page, got: dict[str, Any]) -> None:
+    page.section("Motion", page.INPUT_WORDS)
+    angle, time = kinds.ANGLE, kinds.TIME
+    got["tilt_end"] = page.quantity("Tilt at the end", "φ₁", 110, "deg", "tilt_end", angle, limit=POSITIVE)
+    got["tilt_time"] = page.quantity(
+        "Time for the whole tilt", "T", 5.6, "s", "tilt_time", time, limit=POSITIVE
+    )
+    got["ramp_time"] = page.quantity(
+        "Time to speed up, and to slow down", "tᵣ", 0.8, "s", "ramp_time", time, limit=POSITIVE
+    )
+    got["pour_from"] = page.quantity(
+        "Fruit starts to leave at", "φₐ", 55, "deg", "pour_from", angle, limit=NOT_NEGATIVE
+    )
+    got["pour_to"] = page.quantity("Bin is empty at", "φₑ", 100, "deg", "pour_to", angle, limit=POSITIVE)
+    got["stop_by"] = page.choice("Emergency stop is given by", "", "angle", ("angle", "time"), "stop_by")
+    word = got["stop_by"].ref
+    got["stop_angle"] = page.quantity(
+        "Stops within an angle of",
+        "φₛ",
+        6,
+        "deg",
+        "stop_angle",
+        angle,
+        limit=POSITIVE,
+        when=f'{word}="angle"',
+    )
+    got["stop_time"] = page.quantity(
+        "Stops within a time of", "tₛ", 0.5, "s", "stop_time", time, limit=POSITIVE, when=f'{word}="time"'
+    )
+
+
+def _hinges(page: Page, got: dict[str, Any]) -> None:
+    page.section("Hinges", page.INPUT_WORDS)
+    length = kinds.LENGTH
+    got["hinge_1"] = page.quantity(
+        "Hinge 1 along the axis", "z₁", -560, "mm", "hinge_1_z", length, note="drive side"
+    )
+    got["hinge_2"] = page.quantity("Hinge 2 along the axis", "z₂", 560, "mm", "hinge_2_z", length)
+    got["pin_rating"] = page.quantity(
+        "Rated load of one hinge bearing", "F", 12, "kN", "pin_rating", kinds.FORCE, limit=POSITIVE
+    )
+    got["unevenness"] = page.quantity(
+        "Allowance for uneven bearing",
+        "kᵤ",
+        1.1,
+        "-",
+        "unevenness",
+        kinds.RATIO,
+        limit=AT_LEAST_ONE,
+        note="on each hinge's share",
+    )
+    page.section("Required factors", page.INPUT_WORDS)
+    got["factor_drive"] = page.quantity(
+        "Drive: capacity over demand", "kₘ", 1.3, "-", "factor_drive", kinds.RATIO, limit=POSITIVE
+    )
+    got["factor_pins"] = page.quantity(
+        "Hinge bearings: rating over demand", "kₚ", 2.0, "-", "factor_pins", kinds.RATIO, limit=POSITIVE
+    )
+
+
+def _drive(page: Page, got: dict[str, Any]) -> None:
+    page.section("Drive", page.INPUT_WORDS)
+    length, force = kinds.LENGTH, kinds.FORCE
+    got["drive"] = page.choice(
+        "The table is driven by a",
+        "",
+        "gearbox",
+        ("cylinder", "gearbox"),
+        "drive",
+        note="only the rows of this drive are needed",
+    )
+    when = f'{got["drive"].ref}="cylinder"'
+    rows: tuple[tuple[str, str, str, float, str, Any, Any, str], ...] = (
+        ("anchor_x", "Cylinder: eye on the frame, x", "xₐ", 780, "mm", length, None, ""),
+        ("anchor_y", "Cylinder: eye on the frame, y", "yₐ", -780, "mm", length, None, ""),
+        ("eye_x", "Cylinder: eye on the level table, x", "x_b", 390, "mm", length, None, ""),
+        ("eye_y", "Cylinder: eye on the level table, y", "y_b", -60, "mm", length, None, ""),
+        ("cylinder_z", "Cylinder: place along the hinge", "z_d", -480, "mm", length, None, ""),
+        ("push_rating", "Cylinder: rated push", "F₊", 40, "kN", force, POSITIVE, "at working pressure"),
+        ("pull_rating", "Cylinder: rated pull", "F₋", 31, "kN", force, POSITIVE, "on the rod side"),
+        ("closed_length", "Cylinder: length closed, eye to eye", "L₀", 790, "mm", length, POSITIVE, ""),
+        ("open_length", "Cylinder: length open, eye to eye", "L₁", 1480, "mm", length, POSITIVE, ""),
+        (
+            "least_arm",
+            "Cylinder: least arm allowed",
+            "h",
+            120,
+            "mm",
+            length,
+            POSITIVE,
+            "clear of dead center",
+        ),
+    )
+    got["cylinder"] = {
+        name: page.quantity(label, symbol, value, unit, name, kind, limit=limit, note=note, when=when)
+        for name, label, symbol, value, unit, kind, limit, note in rows
+    }
+    when = f'{got["drive"].ref}="gearbox"'
+    torque, speed = kinds.TORQUE, kinds.ANGULAR_VELOCITY
+    rows = (
+        ("ratio", "Gearbox: ratio, motor to hinge", "i", 320, "-", kinds.RATIO, POSITIVE, ""),
+        ("efficiency", "Gearbox: efficiency", "η", 0.92, "-", kinds.RATIO, FRACTION, "same both ways"),
+        ("gear_rating", "Gearbox: rated torque at the hinge", "M", 7500, "N*m", torque, POSITIVE, ""),
+        ("motor_rating", "Motor: rated torque", "Mₘ", 26, "N*m", torque, POSITIVE, ""),
+        ("motor_speed", "Motor: rated speed", "nₘ", 1440, "rpm", speed, POSITIVE, ""),
+        ("rotor", "Motor: inertia of rotor and brake", "J", 0.011, "kg*m^2", kinds.INERTIA, NOT_NEGATIVE, ""),
+    )
+    got["gearbox"] = {
+        name: page.quantity(label, symbol, value, unit, name, kind, limit=limit, note=note, when=when)
+        for name, label, symbol, value, unit, kind, limit, note in rows
+    }
+
+
+def _looking(page: Page, got: dict[str, Any]) -> None:
+    page.section("Position to look at: sketch and working", page.INPUT_WORDS)
+    got["look_tilt"] = page.quantity(
+        "Tilt", "φ", 35, "deg", "look_tilt", kinds.ANGLE, limit=NOT_NEGATIVE, note="up to the tilt at the end"
+    )
+    got["look_case"] = page.choice("Load case", "", "stuck, stop while returning", WHOLE, "look_case")

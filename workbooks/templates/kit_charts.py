@@ -1,0 +1,176 @@
+"""Native charts of the working sheets: curves over an input, and the sketch that is a drawing.
+
+A `Curve` names two ranges (x and y) and how its line looks. `line_chart` is for results over a position or a
+time; `sketch_chart` draws points of equal scale in both directions between -1 and 1, so its points are given
+as parts of the largest reach. Curves differ by dashes and width, so that they can be told apart without colour.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import Any, Final
+
+from openpyxl.chart import Reference, ScatterChart, Series
+from openpyxl.chart.layout import Layout, ManualLayout
+from openpyxl.chart.marker import Marker
+from openpyxl.chart.shapes import GraphicalProperties
+from openpyxl.chart.text import RichText
+from openpyxl.chart.title import Title
+from openpyxl.drawing.line import LineProperties
+from openpyxl.drawing.text import (
+    CharacterProperties,
+    Font,
+    Paragraph,
+    ParagraphProperties,
+    RegularTextRun,
+)
+
+from .kit_look import HAIR, INK, SANS, SOFT
+
+# Dash, width in points and colour of the curves of a chart, in order.
+LINES: Final = (
+    ("solid", 1.0, "7A9484"),
+    ("sysDash", 1.25, "7A9484"),
+    ("solid", 2.0, "2E4A3D"),
+    ("dash", 1.25, "2E4A3D"),
+    ("sysDot", 1.75, "A5622A"),
+    ("lgDashDot", 1.25, "A5622A"),
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Curve:
+    """A line through points; x and y are (sheet, column, first row, last row)."""
+
+    name: str
+    x: tuple[Any, int, int, int]
+    y: tuple[Any, int, int, int]
+    dash: str = "solid"
+    width: float = 1.25
+    color: str = INK
+    marker: str = ""
+    size: int = 6
+
+
+def _text(size: float, *, bold: bool = False, color: str = INK) -> CharacterProperties:
+    return CharacterProperties(
+        sz=int(size * 100), b=bold, solidFill=color, latin=Font(typeface=SANS), ea=Font(typeface=SANS)
+    )
+
+
+def _rich(size: float, *, color: str = INK) -> RichText:
+    style = ParagraphProperties(defRPr=_text(size, color=color))
+    return RichText(p=[Paragraph(pPr=style, endParaRPr=_text(size, color=color))])
+
+
+def _title(text: str, size: float, *, bold: bool = False) -> Title:
+    run = RegularTextRun(rPr=_text(size, bold=bold), t=text)
+    title = Title(overlay=False)
+    title.tx = None
+    from openpyxl.chart.text import Text
+
+    title.tx = Text(
+        rich=RichText(p=[Paragraph(pPr=ParagraphProperties(defRPr=_text(size, bold=bold)), r=[run])])
+    )
+    return title
+
+
+def _line(dash: str, width: float, color: str) -> LineProperties:
+    line = LineProperties(w=int(width * 12700), solidFill=color, cap="flat")
+    line.prstDash = dash
+    return line
+
+
+def _reference(place: tuple[Any, int, int, int]) -> Reference:
+    sheet, column, first, last = place
+    return Reference(sheet, min_col=column, min_row=first, max_row=last)
+
+
+def _series(curve: Curve) -> Series:
+    series = Series(_reference(curve.y), _reference(curve.x), title=curve.name)
+    series.smooth = False
+    properties = GraphicalProperties()
+    if curve.width > 0.0:
+        properties.line = _line(curve.dash, curve.width, curve.color)
+    else:
+        properties.line = LineProperties(noFill=True)
+    series.graphicalProperties = properties
+    series.marker = Marker(symbol=curve.marker or "none")
+    if curve.marker:
+        series.marker.size = curve.size
+        series.marker.graphicalProperties = GraphicalProperties(solidFill="FFFFFF")
+        series.marker.graphicalProperties.line = _line("solid", 1.25, curve.color)
+    return series
+
+
+def _bare_chart(width: float, height: float) -> ScatterChart:
+    chart = ScatterChart()
+    chart.style, chart.scatterStyle = 2, "lineMarker"
+    chart.width, chart.height = width / 10.0, height / 10.0
+    frame = GraphicalProperties(noFill=True)
+    frame.line = LineProperties(noFill=True)
+    chart.graphical_properties = frame
+    chart.roundedCorners = False
+    chart.display_blanks = "gap"
+    for axis in (chart.x_axis, chart.y_axis):
+        axis.delete = False
+        axis.majorGridlines.spPr = GraphicalProperties(ln=_line("solid", 0.5, "E1E5E2"))
+        axis.graphicalProperties = GraphicalProperties(ln=_line("solid", 0.75, SOFT))
+        axis.txPr = _rich(8, color=INK)
+        axis.majorTickMark = "out"
+    chart.x_axis.majorGridlines = None
+    return chart
+
+
+def line_chart(
+    page: Any,
+    anchor: str,
+    curves: Sequence[Curve],
+    *,
+    size: tuple[float, float],
+    title: str,
+    x_title: str,
+    y_title: str,
+) -> ScatterChart:
+    """Put curves over one axis into a page; size in mm."""
+    chart = _bare_chart(*size)
+    chart.title = _title(title, 9.5, bold=True)
+    chart.x_axis.title, chart.y_axis.title = _title(x_title, 8), _title(y_title, 8)
+    chart.x_axis.number_format, chart.y_axis.number_format = "0", "#,##0"
+    chart.x_axis.numFmt.sourceLinked = chart.y_axis.numFmt.sourceLinked = False
+    chart.x_axis.tickLblPos = chart.y_axis.tickLblPos = "low"
+    chart.legend.position = "r"
+    chart.legend.txPr = _rich(8)
+    for curve in curves:
+        chart.series.append(_series(curve))
+    page.sheet.add_chart(chart, anchor)
+    return chart
+
+
+def sketch_chart(
+    page: Any, anchor: str, curves: Sequence[Curve], *, size: float, title: str, limit: float = 1.05
+) -> ScatterChart:
+    """Put a drawing of equal scale into a page: a square of `size` mm between -limit and limit."""
+    title_height = 7.0
+    chart = _bare_chart(size, size + title_height)
+    chart.title = _title(title, 9.5, bold=True)
+    chart.legend = None
+    share = size / (size + title_height) * 0.97
+    chart.layout = Layout(
+        manualLayout=ManualLayout(
+            layoutTarget="inner", xMode="edge", yMode="edge", x=0.015, y=1.0 - share - 0.01, w=0.97, h=share
+        )
+    )
+    for axis in (chart.x_axis, chart.y_axis):
+        axis.scaling.min, axis.scaling.max = -limit, limit
+        axis.majorUnit = 0.25
+        axis.tickLblPos = "none"
+        axis.majorTickMark = "none"
+        axis.crosses = "autoZero"
+        axis.graphicalProperties = GraphicalProperties(ln=_line("lgDashDot", 0.5, HAIR))
+    chart.y_axis.majorGridlines = None
+    for curve in curves:
+        chart.series.append(_series(curve))
+    page.sheet.add_chart(chart, anchor)
+    return chart

@@ -1,0 +1,102 @@
+"""Checks of a working sheet: demand against capacity with the factor that is required, and the verdict."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any, Final
+
+from openpyxl.formatting.rule import CellIsRule
+from openpyxl.styles import Font, PatternFill
+
+from .kit import Book, Page
+
+COLUMNS: Final = (2.5, 37.0, 25.0, 9.0, 11.0, 8.5, 11.0, 8.5, 9.0, 9.0, 9.0, 9.0)
+CASE, AT, DEMAND, DEMAND_UNIT, CAPACITY, CAPACITY_UNIT, REQUIRED, FACTOR, MARGIN, VERDICT = range(3, 13)
+
+
+@dataclass(frozen=True, slots=True)
+class Check:
+    """One row: formulas as texts, without the leading equals sign.
+
+    `demand` is in the unit that `unit` (a formula) gives; `capacity` too. `when` is the condition under which
+    the check counts at all.
+    """
+
+    label: str
+    demand: str
+    unit: str
+    capacity: str
+    name: str
+    required: str = "1"
+    case: str = '""'
+    at: str = '""'
+    sense: str = "at most"
+    when: str = ""
+
+
+class Checks:
+    """The table of checks on a page."""
+
+    def __init__(self, book: Book, page: Page, at: str) -> None:
+        self.book, self.page = book, page
+        self.first = page.row + 1
+        words = ("Check", "Governing case", at, "Demand", "Unit", "Capacity", "Unit", "Required factor")
+        for column, word in enumerate((*words, "Actual factor", "Margin", "Verdict"), 2):
+            page.put(column, word, "RS head")
+        page.sheet.row_dimensions[page.row].height = 25.0
+        page.row += 1
+
+    def add(self, check: Check) -> None:
+        """Write a check and name its demand and its verdict."""
+        page, row = self.page, self.page.row
+        demand, capacity = (
+            page.span((row, DEMAND), (row, DEMAND_UNIT)),
+            page.span((row, CAPACITY), (row, CAPACITY_UNIT)),
+        )
+        required = page.at(REQUIRED)
+        page.sheet.row_dimensions[row].height = 16.0
+        page.put(2, check.label, "RS text")
+        for column, formula in (
+            (CASE, check.case),
+            (AT, check.at),
+            (DEMAND, check.demand),
+            (DEMAND_UNIT, check.unit),
+            (CAPACITY, check.capacity),
+            (CAPACITY_UNIT, check.unit),
+            (REQUIRED, check.required),
+        ):
+            style = "RS text" if column in (CASE, DEMAND_UNIT, CAPACITY_UNIT) else "RS value"
+            page.put(column, self._formula(formula, check.when), style)
+        page.sheet.cell(row, AT).number_format = "0.0"
+        page.sheet.cell(row, REQUIRED).number_format = "0.00"
+        pair = f"{demand},{capacity}" if check.sense == "at most" else f"{capacity},{demand}"
+        tested = page.at(DEMAND)
+        for column, what, form in ((FACTOR, "factor", "0.00"), (MARGIN, "margin", "+0%;-0%;0%")):
+            text = f'IF(ABS({tested})<1E-9,"none",RB_MARGIN({pair},{required},"{what}"))'
+            page.put(column, self._formula(text, check.when), "RS value", form=form)
+        verdict = f'RB_CHECK({demand},{capacity},"{check.sense}",{required})'
+        page.put(VERDICT, self._formula(verdict, check.when, "not used"), "RS verdict")
+        self.book.name(f"check_{check.name}", page.at(VERDICT))
+        self.book.name(f"demand_{check.name}", page.at(DEMAND))
+        page.row += 1
+
+    def _formula(self, text: str, when: str, otherwise: str = "") -> str:
+        return self.book.guarded(f'IF({when},{text},"{otherwise}")' if when else text)
+
+    def end(self) -> str:
+        """Mark failures, and return the formula of one sentence about all checks."""
+        page, last = self.page, self.page.row - 1
+        cells = page.span((self.first, VERDICT), (last, VERDICT))
+        local = cells.rpartition("!")[2].replace("$", "")
+        red: Any = PatternFill("solid", start_color="F3DAD3", end_color="F3DAD3")
+        page.sheet.conditional_formatting.add(
+            local,
+            CellIsRule(operator="equal", formula=['"FAIL"'], font=Font(bold=True, color="8E2A12"), fill=red),
+        )
+        page.sheet.conditional_formatting.add(
+            local, CellIsRule(operator="equal", formula=['"not used"'], font=Font(bold=False, color="8A918D"))
+        )
+        count = f'COUNTIF({cells},"FAIL")'
+        good = f'"All "&COUNTIF({cells},"OK")&" checks hold."'
+        bad = f'{count}&" of "&(COUNTIF({cells},"OK")+{count})&" checks fail."'
+        return f"IF({count}=0,{good},{bad})"
