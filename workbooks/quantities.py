@@ -49,6 +49,7 @@ def _is_common_unit(text: str) -> bool:
     return any(plain in kind.spellings for kind in KINDS)
 
 
+@lru_cache(maxsize=4096)
 def is_si_unit(unit: str) -> bool:
     """Tell whether a number in this unit is an SI number for some kind of quantity."""
     try:
