@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
+from collections import Counter
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Final, TypeAlias
 
@@ -13,6 +14,7 @@ from rigidsheet.udf.cells import CellError, Refusal, Value
 from .addresses import cell_name, row_column, size
 from .enginecopy import target_of
 from .errors import address
+from .formulas import Argument
 from .quantities import common_unit_in, unit_in
 from .reading import Place, Reading
 from .sheetxml import FormulaCell
@@ -46,7 +48,7 @@ class NamedResult:
 
 @dataclass(frozen=True)
 class Check:
-    """A verdict, and the numbers of its row where the column headers tell which they are."""
+    """A verdict, and its numbers: what RB_CHECK was given, else what the headers of its columns say."""
 
     name: str
     verdict: str
@@ -55,6 +57,8 @@ class Check:
     demand: Value = None
     capacity: Value = None
     margin: Value = None
+    demand_unit: str = ""
+    capacity_unit: str = ""
 
 
 # Sheet number: address: the error that the cell shows.
@@ -168,7 +172,9 @@ class Report:
                 verdict = value.text if isinstance(value, CellError) else str(value)
                 name = names.get((number, formula.ref)) or self._label(number, formula) or formula.ref
                 numbers = self._numbers(number, formula)
-                found.append(Check(name, verdict, sheet.name, formula.ref, **numbers))
+                check = Check(name, verdict, sheet.name, formula.ref, **numbers)
+                given = whole.arguments if whole is not None and whole.name == "RB_CHECK" else []
+                found.append(self._with_given(number, check, given))
         return tuple(found)
 
     def _label(self, number: int, formula: FormulaCell) -> str:
@@ -178,6 +184,20 @@ class Report:
             if isinstance(value, str) and value.strip():
                 return value.strip()
         return ""
+
+    def _with_given(self, number: int, check: Check, given: Sequence[Argument]) -> Check:
+        """Return the check with demand and capacity as the first two arguments of its formula hold them."""
+        for word, argument in zip(("demand", "capacity"), given, strict=False):
+            place = self.reading.place_of(number, argument.use) if argument.use is not None else None
+            if place is None:
+                continue
+            sheet, (top, left, bottom, right) = place
+            value = self.reading.value(sheet, cell_name(top, left))
+            beside = (bottom, right) if (bottom - top, right - left) in ((0, 1), (1, 0)) else None
+            unit = unit_in(self.reading.value(sheet, cell_name(*beside))) if beside else ""
+            if beside or (top, left) == (bottom, right):
+                check = replace(check, **{word: value, f"{word}_unit": unit})  # type: ignore[arg-type]
+        return check
 
     def _numbers(self, number: int, formula: FormulaCell) -> dict[str, Value]:
         """Return demand, capacity and margin of the row, by the nearest header above that says so."""
@@ -200,5 +220,9 @@ class Report:
                 if place is None or not isinstance(value, str) or len(value) > 40:
                     continue
                 found += [(*place, word) for word, pattern in _HEADERS.items() if pattern.match(value)]
-            kept[number] = sorted(found, key=lambda header: (header[0], -header[1]))
+            # One such word alone in its row is a label, not the header of a column.
+            words = Counter(row for row, _, _ in found)
+            kept[number] = sorted(
+                (h for h in found if words[h[0]] > 1), key=lambda header: (header[0], -header[1])
+            )
         return kept[number]

@@ -59,8 +59,8 @@ def _show_checks(checks: tuple[Check, ...]) -> None:
         (
             one.name,
             one.verdict,
-            shown(one.demand),
-            shown(one.capacity),
+            united(one.demand, one.demand_unit),
+            united(one.capacity, one.capacity_unit),
             shown(one.margin),
             address(one.sheet, one.cell),
         )
@@ -68,6 +68,11 @@ def _show_checks(checks: tuple[Check, ...]) -> None:
     ]
     heads = ("check", "verdict", "demand", "capacity", "margin", "cell")
     table(heads, rows, numbers=("demand", "capacity", "margin"))
+
+
+def united(value: Value, unit: str) -> str:
+    """Return a number with the unit that it was given in."""
+    return f"{shown(value)} {unit}".rstrip()
 
 
 def summary(result: Recalculation) -> str:
@@ -99,7 +104,7 @@ def complaint(result: Recalculation) -> str:
         return ""
     first_check = failing[0]
     numbers = [
-        f"{word} {shown(value)}"
+        f"{word} {united(value, getattr(first_check, f'{word}_unit', ''))}"
         for word in ("demand", "capacity", "margin")
         if (value := getattr(first_check, word)) is not None
     ]
@@ -135,7 +140,9 @@ def document(file: str, result: Recalculation, code: int) -> dict[str, Any]:
                 "name": one.name,
                 "verdict": one.verdict,
                 "demand": plain(one.demand),
+                "demand_unit": one.demand_unit,
                 "capacity": plain(one.capacity),
+                "capacity_unit": one.capacity_unit,
                 "margin": plain(one.margin),
                 "cell": address(one.sheet, one.cell),
             }
