@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import lru_cache
 from typing import Any
 
 import numpy as np
@@ -23,6 +24,7 @@ def kinds_text(unit: str) -> str:
     return " or ".join(dict.fromkeys(kind.name for kind, _ in readings(unit)))
 
 
+@lru_cache(maxsize=4096)
 def shared_kind(argument: str, first: str, second: str) -> tuple[Kind, float, float]:
     """Return the one kind two units share and their factors; `argument` names the second in a refusal."""
     common = common_kinds(first, second)

@@ -64,7 +64,8 @@ def shown(kind: Kind) -> str:
     return kind.si
 
 
-def readings(unit: str) -> list[tuple[Kind, float]]:
+@lru_cache(maxsize=4096)
+def readings(unit: str) -> tuple[tuple[Kind, float], ...]:
     """Return every kind that a unit text can mean, the most usual first, with its factor to SI.
 
     Raises
@@ -81,7 +82,7 @@ def readings(unit: str) -> list[tuple[Kind, float]]:
     except InputError as wrong:
         raise _syntax(wrong, unit, "unit") from None
     if found:
-        return found
+        return tuple(found)
     if remedy is None:
         raise KindError("unit", "a unit of a known kind of quantity", Found(unit))
     raise KindError("unit", "a known unit", Found(unit), remedy=remedy)
