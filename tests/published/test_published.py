@@ -147,6 +147,27 @@ def test_rows_are_complete():
             assert entry["unit"], where
             assert (row["origin"] == EVALUATED) == ("formula" in entry), where
             assert digits_fit(entry["printed"], entry["digits"]), f"{where}: {entry}"
+            assert names_in(entry["value"]) & from_cells(row), (
+                f"{where}: {entry} is arithmetic without a function"
+            )
+
+
+def names_in(cell: Any) -> set[str]:
+    """Return the names of earlier results in a cell or an expression."""
+    if isinstance(cell, list):
+        return set().union(*map(names_in, cell))
+    if isinstance(cell, str) and cell.startswith("="):
+        return {n.id for n in ast.walk(ast.parse(cell[1:], mode="eval")) if isinstance(n, ast.Name)}
+    return set()
+
+
+def from_cells(row: dict[str, Any]) -> set[str]:
+    """Return the results of a row that come from a function, directly or through arithmetic."""
+    out: set[str] = set()
+    for step in row["steps"]:
+        if "call" in step or names_in(step["arithmetic"]) & out:
+            out.add(step["name"])
+    return out
 
 
 def digits_fit(printed: str, digits: int | str) -> bool:
