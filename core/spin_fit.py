@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -26,20 +28,20 @@ class InstantCenter:
 
     Parameters
     ----------
-    center : ndarray, shape (3,)
+    center : ndarray, shape (..., 3)
         Point of the body (or of its extension) that is at rest at this instant [m].
-    omega : float
+    omega : ndarray, shape (...)
         Angular velocity about z, counter-clockwise positive [rad/s].
-    stretch : float
+    stretch : ndarray, shape (...)
         Speed at which the two points move apart; zero for a rigid body [m/s].
-    misfit : float
+    misfit : ndarray, shape (...)
         `stretch` as part of the greater of the two speeds [-].
     """
 
     center: Array
-    omega: float
-    stretch: float
-    misfit: float
+    omega: Array
+    stretch: Array
+    misfit: Array
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -138,9 +140,9 @@ def instant_center_two(
 
     Parameters
     ----------
-    point_a, point_b : ndarray, shape (3,)
+    point_a, point_b : ndarray, shape (..., 3)
         Positions of the points, z = 0 [m].
-    velocity_a, velocity_b : ndarray, shape (3,)
+    velocity_a, velocity_b : ndarray, shape (..., 3)
         Velocities of the points, z = 0 [m/s].
     tolerance : float
         Largest stretching speed that still counts as rigid, as part of the greater speed [-].
@@ -167,28 +169,49 @@ def instant_center_two(
     ----------
     R. C. Hibbeler, Engineering Mechanics: Dynamics, instantaneous center of zero velocity.
     """
-    ax, ay = float(point_a[0]), float(point_a[1])
-    rx, ry = float(point_b[0]) - ax, float(point_b[1]) - ay
-    length = float(np.hypot(rx, ry))
-    if length <= 1e-12 * max(abs(ax), abs(ay), length) or length == 0.0:
-        raise InputError("point_b", "another point than point A, as one point cannot tell the spin")
-    vax, vay, vbx, vby = (float(v) for v in (*velocity_a[:2], *velocity_b[:2]))
-    dx, dy = vbx - vax, vby - vay
-    speed = max(float(np.hypot(vax, vay)), float(np.hypot(vbx, vby)))
-    stretch = (dx * rx + dy * ry) / length
-    turning = (rx * dy - ry * dx) / length
-    misfit = abs(stretch) / speed if speed else 0.0
-    if misfit > tolerance:
-        raise PhysicsError("", _stretch_sentence(stretch, misfit))
-    if speed == 0.0:
-        raise PhysicsError("", "Both points are at rest, so the body is at rest and has no instant center")
-    if abs(turning) <= TURN_TOLERANCE * speed:
-        raise PhysicsError(
-            "", "The two velocities are equal: the body only translates and has no instant center"
-        )
+    arm, change = (point_b - point_a)[..., :2], (velocity_b - velocity_a)[..., :2]
+    length = np.hypot(arm[..., 0], arm[..., 1])
+    reach = np.maximum(np.abs(point_a[..., :2]).max(axis=-1), length)
+    _refuse_rows(
+        length <= 1e-12 * reach,
+        lambda k: InputError(
+            "point_b", "another point than point A, as one point cannot tell the spin", where=_row(length, k)
+        ),
+    )
+    speeds = (np.hypot(v[..., 0], v[..., 1]) for v in (velocity_a, velocity_b))
+    speed = np.maximum(*speeds)
+    stretch = (change * arm).sum(axis=-1) / length
+    turning = (arm[..., 0] * change[..., 1] - arm[..., 1] * change[..., 0]) / length
+    misfit = np.abs(stretch) / np.where(speed > 0.0, speed, 1.0)
+    _refuse_rows(
+        misfit > tolerance,
+        lambda k: PhysicsError(
+            "", _stretch_sentence(np.ravel(stretch)[k], np.ravel(misfit)[k]), where=_row(misfit, k)
+        ),
+    )
+    at_rest = "Both points are at rest, so the body is at rest and has no instant center"
+    equal = "The two velocities are equal: the body only translates and has no instant center"
+    _refuse_rows(speed == 0.0, lambda k: PhysicsError("", at_rest, where=_row(speed, k)))
+    _refuse_rows(
+        np.abs(turning) <= TURN_TOLERANCE * speed, lambda k: PhysicsError("", equal, where=_row(speed, k))
+    )
     omega = turning / length
-    center = np.array([ax + rx / 2 - (vay + vby) / 2 / omega, ay + ry / 2 + (vax + vbx) / 2 / omega, 0.0])
+    center = np.zeros((*omega.shape, 3))
+    middle, mean = point_a[..., :2] + arm / 2, (velocity_a + velocity_b) / 2
+    center[..., 0] = middle[..., 0] - mean[..., 1] / omega
+    center[..., 1] = middle[..., 1] + mean[..., 0] / omega
     return InstantCenter(center, omega, stretch, misfit)
+
+
+def _refuse_rows(bad: Any, refusal: Callable[[int], Exception]) -> None:
+    """Raise for the first row that breaks a rule."""
+    if np.any(bad):
+        raise refusal(int(np.argmax(np.ravel(bad))))
+
+
+def _row(values: Any, position: int) -> str:
+    """Name a row where there are several."""
+    return f"row {position + 1}" if np.ndim(values) else ""
 
 
 def _stretch_sentence(stretch: float, misfit: float) -> str:

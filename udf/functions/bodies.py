@@ -10,7 +10,7 @@ import numpy as np
 from ...core.body import combine_arrays, inertia_about
 from ...core.errors import InputError
 from ...core.plates import plate_body
-from ...core.tensors import offset_tensor
+from ...core.tensors import offset_tensor, turned
 from ...core.vectors import rotation_matrix
 from .. import kinds
 from ..arguments import Scalar, Vector
@@ -139,10 +139,19 @@ def moved(body: Any, axis: Any, angle: Any, through: Any) -> BodyTerms:
     point = rigid.center if isinstance(through, str) and through == AT_CENTER else through
     if isinstance(point, str):
         point = np.zeros(3)
-    if type(angle) is not float or np.ndim(point) != 1:
-        raise InputError("angle", "one angle and one line for one body; got a column")
-    turned = rigid.turned(rotation_matrix(direction_of("axis", axis), angle), point)
-    return BodyTerms(turned.mass, turned.center, turned.inertia)
+    direction = direction_of("axis", axis)
+    for name, value in (("axis", direction), ("through", point)):
+        if np.ndim(value) != 1:
+            raise InputError(name, "one row: a body turns about one line; only `angle` may be a column")
+    rotation = rotation_matrix(direction, angle)
+    center = point + rotation @ (rigid.center - point)
+    problem = "" if type(angle) is float else "given when columns are handed in: one result for each row"
+    return BodyTerms(
+        np.full(np.shape(angle), rigid.mass),
+        center,
+        turned(rigid.inertia, rotation),
+        record_problem=problem,
+    )
 
 
 def moved_working(values: tuple[Any, ...], answer: BodyTerms) -> list[str]:

@@ -47,9 +47,10 @@ def moment_sum(inertia: Any, mass: Any, center_arm: Any, omega: Any, alpha: Any,
     if is_tensor(inertia):
         return balance.moment_sum(inertia, mass, center_arm, omega, alpha, acceleration_b).total
     planar_only(omega, alpha)
-    return balance.moment_sum_planar(
+    about_z: Any = balance.moment_sum_planar(
         inertia, mass, center_arm, omega[..., 2], alpha[..., 2], acceleration_b
     ).total
+    return about_z[..., None] if np.ndim(about_z) else about_z
 
 
 def planar_only(omega: Any, alpha: Any) -> None:

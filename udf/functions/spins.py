@@ -12,26 +12,24 @@ from .. import kinds
 from ..arguments import Spin, Vector
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..working import num, vec
-from .motion import OMEGA, planar_spin
+from .motion import OMEGA
 
 GROUP = "Motion"
 INSTANT = "Instantaneous center of zero velocity (Meriam, Kraige: Dynamics, plane kinematics)"
 
 
-def one_row(**vectors: Any) -> None:
-    """Refuse columns where one instant is asked, and vectors out of the plane."""
+def in_plane(**vectors: Any) -> None:
+    """Refuse vectors out of the plane."""
     for name, v in vectors.items():
-        if v.ndim != 1:
-            raise InputError(name, "one row; this function answers one instant a call")
-        if v[2] != 0.0:
+        if np.any(v[..., 2] != 0.0):
             raise InputError(name, "in the x-y plane: an instant center exists in planar motion only")
 
 
 def instant_center(point_a: Any, velocity_a: Any, omega: Any) -> Any:
-    one_row(point_a=point_a, velocity_a=velocity_a)
-    if omega.ndim != 1 or not planar_spin(omega):
+    in_plane(point_a=point_a, velocity_a=velocity_a)
+    if np.any(omega[..., :2] != 0.0):
         raise InputError("omega", "one number about z")
-    return spin_fit.instant_center(point_a, velocity_a, float(omega[2]))
+    return spin_fit.instant_center(point_a, velocity_a, omega[..., 2])
 
 
 def instant_center_working(values: tuple[Any, ...], answer: Any) -> list[str]:
@@ -45,7 +43,7 @@ def instant_center_working(values: tuple[Any, ...], answer: Any) -> list[str]:
 
 
 def instant_center_2(point_a: Any, velocity_a: Any, point_b: Any, velocity_b: Any) -> Any:
-    one_row(point_a=point_a, velocity_a=velocity_a, point_b=point_b, velocity_b=velocity_b)
+    in_plane(point_a=point_a, velocity_a=velocity_a, point_b=point_b, velocity_b=velocity_b)
     return spin_fit.instant_center_two(point_a, velocity_a, point_b, velocity_b).center
 
 
