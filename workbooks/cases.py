@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import csv
 import io
+import marshal
 import re
 from collections.abc import Iterator, Mapping, Sequence
 from contextlib import contextmanager
@@ -16,16 +17,19 @@ from rigidsheet.udf.cells import CellError, Refusal, Value
 
 from . import saving
 from .addresses import row_column
+from .calls import Function
 from .engine import Sheets
 from .errors import FileRefused, InputRefused, address
 from .inputs import Filled, input_cell, input_value
 from .quantities import converted, quantity, unit_in
 from .reading import Place
-from .recalc import Run, located
+from .recalc import Finder, Run, located
 from .report import Check, NamedResult, Report
 
 MARKS: Final = ",;\t"
 _UNIT: Final = re.compile(r"\s*(?P<name>.*?)\s*\[(?P<unit>[^\]]*)\]\s*\Z", re.DOTALL)
+MEMORY: Final = 20_000  # calls of one function that are remembered
+_BY_VALUE: Final = 2  # the marshal format that writes floats as bits and no references
 _LABELS: Final = ("case", "load case")
 
 
@@ -120,12 +124,45 @@ def _table(path: Path, numbered: list[tuple[int, list[str]]]) -> Table:
     return Table(tuple(columns), tuple(rows))
 
 
+def remembering(find: Finder) -> Finder:
+    """Return the cell functions with a memory: from case to case most calls get the same cells again.
+
+    A cell function depends on nothing but its cells. They are compared bit by bit, so that TRUE is not 1
+    and minus zero is not zero.
+    """
+
+    def found(name: str) -> Function | None:
+        function = find(name)
+        return _remembering(function) if function is not None else None
+
+    return found
+
+
+def _remembering(function: Function) -> Function:
+    memory: dict[bytes, Any] = {}
+
+    def called(*cells: Any) -> Any:
+        try:
+            key = marshal.dumps(cells, _BY_VALUE)
+        except ValueError:  # an error or an omitted argument among the cells
+            return function(*cells)
+        answer = memory.get(key)
+        if answer is None:
+            if len(memory) >= MEMORY:
+                memory.clear()
+            answer = memory[key] = function(*cells)
+        return answer
+
+    return called
+
+
 class Cases:
     """A workbook loaded once; iterating works the load cases out one after the other."""
 
     def __init__(self, data: bytes, table: Table, inputs: Mapping[str, object]) -> None:
         self.table = table
         self.run = Run(data, inputs, None, None)
+        self.run.functions = remembering(self.run.functions)
         self.reading = Filled(self.run.prepared, self.run.results)
         self.reasons: dict[Place, tuple[str, Refusal]] = {}
         self.report = Report(self.reading, self.reasons)
