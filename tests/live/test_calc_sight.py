@@ -103,3 +103,34 @@ def test_named_cells_and_other_sheets(calc: LiveCalc, tmp_path: Path) -> None:
     calc.ask("calculate", doc)
     assert [r[0] for r in calc.read(doc, "Work", "A1:A2")] == [VALUE, VALUE]
     calc.ask("close", doc)
+
+
+def test_a_text_answer_is_the_same_text_as_a_typed_one(calc: LiveCalc, doc: int) -> None:
+    formulas = {
+        "A1": '=RB_CHECK("6 kN","15 kN")',
+        "A2": '=IF(A1="OK",1,2)',
+        "A3": '=IF(RB_CHECK("6 kN","15 kN")="OK",1,2)',
+        "A4": '=COUNTIF(A1:A1,"OK")',
+        "A5": '=MATCH("OK",A1:A1,0)',
+        "A6": '=IF(RB_KIND("mm")="length",1,2)',
+        "A7": '=ISERROR(RB_KIND("furlongs"))*1',
+    }
+    calc.ask("put", doc, 0, formulas)
+    assert [r[0] for r in calc.read(doc, 0, "A1:A7")] == ["OK", 1.0, 1.0, 1.0, 1.0, 1.0, 1.0]
+
+
+def test_one_number_counts_as_a_number_everywhere(calc: LiveCalc, doc: int) -> None:
+    formulas = {
+        "A1": '=RB_CONVERT("1 m","mm")',
+        "A2": '=SUM(A1,RB_CONVERT("1 m","mm"))',
+        "A3": '=IF(RB_CONVERT("1 m","mm")>999,1,2)',
+        "A4": '=ROUND(RB_CONVERT("1 in","mm")/2,1)',
+        "A5": '="is "&RB_CONVERT("1 m","mm")',
+        "A6": "=COUNT(A1:A4)",
+        "A7": '=RB_CONVERT(RB_CONVERT("1 m","mm")&" mm","m")',
+        "A8": '=SUM(RB_ARM("(0, 0) m","(3, 4) m"))',
+        "A9": "=SUM(A1,RB_KIND(1))",
+    }
+    calc.ask("put", doc, 0, formulas)
+    got = [r[0] for r in calc.read(doc, 0, "A1:A9")]
+    assert got == [1000.0, 2000.0, 1.0, 12.7, "is 1000", 4.0, 1.0, 7.0, VALUE]

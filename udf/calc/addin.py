@@ -102,7 +102,7 @@ class Functions(unohelper.Base, XFunctions, XServiceInfo, XServiceName):
         return (CONFIG["service"], "com.sun.star.sheet.AddIn")
 
 
-def method_of(name: str, own: str) -> Any:
+def method_of(name: str, own: str, one_text: bool) -> Any:
     """Return the method behind a function; arguments omitted at the end are dropped."""
 
     def method(self: Functions, *arguments: Any) -> Any:
@@ -110,14 +110,17 @@ def method_of(name: str, own: str) -> Any:
             arguments = arguments[:-1]
         return answer(name, own, arguments)
 
-    return method
+    def text_method(self: Functions, *arguments: Any) -> Any:
+        return method(self, *arguments)[0][0]
+
+    return text_method if one_text else method
 
 
-for _name, _method in CONFIG["functions"].items():
-    setattr(Functions, _method, method_of(_name, _method))
+for _name, (_method, _one_text) in CONFIG["functions"].items():
+    setattr(Functions, _method, method_of(_name, _method, _one_text))
 
 NAMES = frozenset(name.lower() for name in CONFIG["functions"]) | frozenset(
-    f"{CONFIG['service']}.{method}".lower() for method in CONFIG["functions"].values()
+    f"{CONFIG['service']}.{method}".lower() for method, _ in CONFIG["functions"].values()
 )
 
 

@@ -11,7 +11,7 @@ from typing import Any, Final
 from ..catalogue import FUNCTIONS
 from ..cells import OMITTED, Answer, Cell, Refusal, Value
 from ..compiling import arguments_of
-from ..declaration import Arg, CellFunction
+from ..declaration import Arg, CellFunction, Form
 from ..words import Rest
 
 # A reference to whole columns or rows arrives in full; its blank end is not meant.
@@ -44,6 +44,16 @@ def host_arguments(f: CellFunction) -> tuple[Arg, ...]:
     last = arguments[-1]
     longest = max(len(arguments_of(g)) for g in FUNCTIONS.values())
     return (*arguments[:-1], *(replace(last, name=f"argument_{i}") for i in range(1, longest + 1)))
+
+
+def gives_one_text(f: CellFunction) -> bool:
+    """Say whether a function always gives one text.
+
+    Calc finds a text that came inside a block unequal to the same text typed in a cell, so that
+    IF(RB_CHECK(...)="OK", ...) needs the text by itself.
+    """
+    fields = f.result.fields
+    return not f.result.open and len(fields) == 1 and fields[0].form is Form.TEXT
 
 
 def normalise(arguments: tuple[Any, ...]) -> list[Cell]:
