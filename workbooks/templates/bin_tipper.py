@@ -183,8 +183,8 @@ CASES: Final = (
     Case("full, pouring", 0, 1, 1, 1, 0),
     Case("stuck, tipping", 1, 0, 1, 1, 0),
     Case("stuck, returning", 1, 0, -1, 1, 0),
-    Case("stuck, stop while tipping", 1, 0, 1, 0, -1),
-    Case("stuck, stop while returning", 1, 0, -1, 0, 1),
+    Case("stuck, stop tipping", 1, 0, 1, 0, -1),
+    Case("stuck, stop returning", 1, 0, -1, 0, 1),
 )
 WHOLE: Final = tuple(case.name for case in CASES if not case.pours)  # cases in which the body stays whole
 
@@ -236,16 +236,18 @@ class Inputs:
 def write(path: Path, blank: bool) -> None:
     """Write the workbook; with `blank` the cells that a person fills in are empty."""
     from . import bin_tipper_checks as checks
+    from . import bin_tipper_position as positions
     from . import bin_tipper_sheets as sheets
+    from . import bin_tipper_sketch as sketches
 
     book = Book(TITLE, LINE, blank)
     given, page = inputs(book)
     work = sheets.working(book, given)
     tilt = sheets.tilt_table(book, given, work)
     hinges = sheets.hinge_table(book, given, work, tilt)
-    compared = checks.position(book, given, work, tilt, hinges)
-    checks.checks(book, given, work, tilt, hinges, compared["gaps"])
-    checks.sketch(book, given, work, tilt, page)
+    looked = positions.position(book, given, work, tilt, hinges)
+    checks.checks(book, given, work, tilt, hinges, looked.gaps)
+    sketches.sketch(book, given, work, tilt, looked, page, row=7)
     book.save(path)
 
 
@@ -255,14 +257,17 @@ def inputs(book: Book) -> tuple[Inputs, Page]:
     page.title_block()
     book.status(page)
     got: dict[str, Any] = {}
+    page.rule_to = page.SI_UNIT  # the sketch stands beside the first page
     _motion(page, got)
-    _hinges(page, got)
-    page.page_break()
     _drive(page, got)
-    _looking(page, got)
+    _hinges(page, got)
+    page.rule_to = page.columns
     page.page_break()
+    _factors(page, got)
+    _looking(page, got)
     page.section("Parts list: table and bin, then the fruit in the last row")
     got["parts"] = parts_table(page, [*TABLE, *([None] * FREE_ROWS), FRUIT])
+    page.skip(height=4.0)
     page.prose(
         (
             "x, y, z: mass center of the part with the table level, from the hinge axis; z along the hinge. "
@@ -288,22 +293,22 @@ def inputs(book: Book) -> tuple[Inputs, Page]:
 def _motion(page: Page, got: dict[str, Any]) -> None:
     page.section("Motion", page.INPUT_WORDS)
     angle, time = kinds.ANGLE, kinds.TIME
-    got["tilt_end"] = page.quantity("Tilt at the end", "φ₁", 110, "deg", "tilt_end", angle, limit=POSITIVE)
+    got["tilt_end"] = page.quantity("Tilt at the end", "φ_1", 110, "deg", "tilt_end", angle, limit=POSITIVE)
     got["tilt_time"] = page.quantity(
         "Time for the whole tilt", "T", 5.6, "s", "tilt_time", time, limit=POSITIVE
     )
     got["ramp_time"] = page.quantity(
-        "Time to speed up, and to slow down", "tᵣ", 0.8, "s", "ramp_time", time, limit=POSITIVE
+        "Time to speed up, and to slow down", "t_r", 0.8, "s", "ramp_time", time, limit=POSITIVE
     )
     got["pour_from"] = page.quantity(
-        "Fruit starts to leave at", "φₐ", 55, "deg", "pour_from", angle, limit=NOT_NEGATIVE
+        "Fruit starts to leave at", "φ_a", 55, "deg", "pour_from", angle, limit=NOT_NEGATIVE
     )
-    got["pour_to"] = page.quantity("Bin is empty at", "φₑ", 100, "deg", "pour_to", angle, limit=POSITIVE)
+    got["pour_to"] = page.quantity("Bin is empty at", "φ_e", 100, "deg", "pour_to", angle, limit=POSITIVE)
     got["stop_by"] = page.choice("Emergency stop is given by", "", "angle", ("angle", "time"), "stop_by")
     word = got["stop_by"].ref
     got["stop_angle"] = page.quantity(
         "Stops within an angle of",
-        "φₛ",
+        "φ_s",
         6,
         "deg",
         "stop_angle",
@@ -312,7 +317,7 @@ def _motion(page: Page, got: dict[str, Any]) -> None:
         when=f'{word}="angle"',
     )
     got["stop_time"] = page.quantity(
-        "Stops within a time of", "tₛ", 0.5, "s", "stop_time", time, limit=POSITIVE, when=f'{word}="time"'
+        "Stops within a time of", "t_s", 0.5, "s", "stop_time", time, limit=POSITIVE, when=f'{word}="time"'
     )
 
 
@@ -320,15 +325,15 @@ def _hinges(page: Page, got: dict[str, Any]) -> None:
     page.section("Hinges", page.INPUT_WORDS)
     length = kinds.LENGTH
     got["hinge_1"] = page.quantity(
-        "Hinge 1 along the axis", "z₁", -560, "mm", "hinge_1_z", length, note="drive side"
+        "Hinge 1 along the axis", "z_1", -560, "mm", "hinge_1_z", length, note="drive side"
     )
-    got["hinge_2"] = page.quantity("Hinge 2 along the axis", "z₂", 560, "mm", "hinge_2_z", length)
+    got["hinge_2"] = page.quantity("Hinge 2 along the axis", "z_2", 560, "mm", "hinge_2_z", length)
     got["pin_rating"] = page.quantity(
-        "Rated load of one hinge bearing", "F", 12, "kN", "pin_rating", kinds.FORCE, limit=POSITIVE
+        "Rated load of one hinge bearing", "F_R", 12, "kN", "pin_rating", kinds.FORCE, limit=POSITIVE
     )
     got["unevenness"] = page.quantity(
         "Allowance for uneven bearing",
-        "kᵤ",
+        "k_u",
         1.1,
         "-",
         "unevenness",
@@ -336,12 +341,15 @@ def _hinges(page: Page, got: dict[str, Any]) -> None:
         limit=AT_LEAST_ONE,
         note="on each hinge's share",
     )
+
+
+def _factors(page: Page, got: dict[str, Any]) -> None:
     page.section("Required factors", page.INPUT_WORDS)
     got["factor_drive"] = page.quantity(
-        "Drive: capacity over demand", "kₘ", 1.3, "-", "factor_drive", kinds.RATIO, limit=POSITIVE
+        "Drive: capacity over demand", "k_m", 1.3, "-", "factor_drive", kinds.RATIO, limit=POSITIVE
     )
     got["factor_pins"] = page.quantity(
-        "Hinge bearings: rating over demand", "kₚ", 2.0, "-", "factor_pins", kinds.RATIO, limit=POSITIVE
+        "Hinge bearings: rating over demand", "k_p", 2.0, "-", "factor_pins", kinds.RATIO, limit=POSITIVE
     )
 
 
@@ -358,15 +366,15 @@ def _drive(page: Page, got: dict[str, Any]) -> None:
     )
     when = f'{got["drive"].ref}="cylinder"'
     rows: tuple[tuple[str, str, str, float, str, Any, Any, str], ...] = (
-        ("anchor_x", "Cylinder: eye on the frame, x", "xₐ", 780, "mm", length, None, ""),
-        ("anchor_y", "Cylinder: eye on the frame, y", "yₐ", -780, "mm", length, None, ""),
+        ("anchor_x", "Cylinder: eye on the frame, x", "x_a", 780, "mm", length, None, ""),
+        ("anchor_y", "Cylinder: eye on the frame, y", "y_a", -780, "mm", length, None, ""),
         ("eye_x", "Cylinder: eye on the level table, x", "x_b", 390, "mm", length, None, ""),
         ("eye_y", "Cylinder: eye on the level table, y", "y_b", -60, "mm", length, None, ""),
         ("cylinder_z", "Cylinder: place along the hinge", "z_d", -480, "mm", length, None, ""),
-        ("push_rating", "Cylinder: rated push", "F₊", 40, "kN", force, POSITIVE, "at working pressure"),
-        ("pull_rating", "Cylinder: rated pull", "F₋", 31, "kN", force, POSITIVE, "on the rod side"),
-        ("closed_length", "Cylinder: length closed, eye to eye", "L₀", 790, "mm", length, POSITIVE, ""),
-        ("open_length", "Cylinder: length open, eye to eye", "L₁", 1480, "mm", length, POSITIVE, ""),
+        ("push_rating", "Cylinder: rated push", "F_{push}", 40, "kN", force, POSITIVE, "at working pressure"),
+        ("pull_rating", "Cylinder: rated pull", "F_{pull}", 31, "kN", force, POSITIVE, "on the rod side"),
+        ("closed_length", "Cylinder: length closed, eye to eye", "L_0", 790, "mm", length, POSITIVE, ""),
+        ("open_length", "Cylinder: length open, eye to eye", "L_1", 1480, "mm", length, POSITIVE, ""),
         (
             "least_arm",
             "Cylinder: least arm allowed",
@@ -388,8 +396,8 @@ def _drive(page: Page, got: dict[str, Any]) -> None:
         ("ratio", "Gearbox: ratio, motor to hinge", "i", 320, "-", kinds.RATIO, POSITIVE, ""),
         ("efficiency", "Gearbox: efficiency", "η", 0.92, "-", kinds.RATIO, FRACTION, "same both ways"),
         ("gear_rating", "Gearbox: rated torque at the hinge", "M", 7500, "N*m", torque, POSITIVE, ""),
-        ("motor_rating", "Motor: rated torque", "Mₘ", 26, "N*m", torque, POSITIVE, ""),
-        ("motor_speed", "Motor: rated speed", "nₘ", 1440, "rpm", speed, POSITIVE, ""),
+        ("motor_rating", "Motor: rated torque", "M_m", 26, "N*m", torque, POSITIVE, ""),
+        ("motor_speed", "Motor: rated speed", "n_m", 1440, "rpm", speed, POSITIVE, ""),
         ("rotor", "Motor: inertia of rotor and brake", "J", 0.011, "kg*m^2", kinds.INERTIA, NOT_NEGATIVE, ""),
     )
     got["gearbox"] = {
@@ -403,4 +411,4 @@ def _looking(page: Page, got: dict[str, Any]) -> None:
     got["look_tilt"] = page.quantity(
         "Tilt", "φ", 35, "deg", "look_tilt", kinds.ANGLE, limit=NOT_NEGATIVE, note="up to the tilt at the end"
     )
-    got["look_case"] = page.choice("Load case", "", "stuck, stop while returning", WHOLE, "look_case")
+    got["look_case"] = page.choice("Load case", "", "stuck, stop returning", WHOLE, "look_case")

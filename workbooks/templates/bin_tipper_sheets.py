@@ -12,6 +12,7 @@ from rigidsheet.udf.states import STANDARD_GRAVITY
 
 from .bin_tipper import CASES, Case, Inputs
 from .kit import Book, Page, Place
+from .kit_look import SOFT, rich
 
 WORK_COLUMNS: Final = (2.5, 36.0, 8.0, 12.5, 10.0, 12.5, 9.0, *([9.0] * 6))
 RAMP_STEPS, STEADY_STEPS = 8, 40
@@ -54,8 +55,8 @@ def working(book: Book, given: Inputs) -> Work:
         "empty": _rolled_up(page, given.table, "Table with the empty bin", "empty"),
         "whole": _rolled_up(page, given.whole, "Table and bin with all fruit", "full"),
     }
-    page.page_break()
     gravity, speed, acceleration, ramp, stop = _motion(page, given)
+    page.page_break()
     bodies = _sums(page, given, rolled)
     return Work(
         page,
@@ -90,7 +91,7 @@ def _rolled_up(page: Page, parts: str, title: str, word: str) -> dict[str, Place
         (
             "Izx",
             "Product of inertia about the hinge",
-            "I_zx",
+            "I_{zx}",
             "origin",
             kinds.INERTIA,
             "kg*m^2",
@@ -99,7 +100,7 @@ def _rolled_up(page: Page, parts: str, title: str, word: str) -> dict[str, Place
         (
             "Iyz",
             "Product of inertia about the hinge",
-            "I_yz",
+            "I_{yz}",
             "origin",
             kinds.INERTIA,
             "kg*m^2",
@@ -137,12 +138,12 @@ def _motion(page: Page, given: Inputs) -> tuple[Place, Place, Place, Place, Plac
     gravity = page.derived("Standard gravity", "g", f"{STANDARD_GRAVITY}", kinds.ACCELERATION, "m/s^2")
     speed = page.derived(
         "Steady speed",
-        "ω₀",
+        "ω_0",
         f"{end}/({whole}-{ramp})",
         kinds.ANGULAR_VELOCITY,
         "deg/s",
         "steady_speed",
-        note="ω₀ = φ₁ / (T − tᵣ)",
+        note="ω_0 = φ_1 / (T − t_r)",
     )
     acceleration = page.derived(
         "Acceleration while speeding up and slowing down",
@@ -151,25 +152,25 @@ def _motion(page: Page, given: Inputs) -> tuple[Place, Place, Place, Place, Plac
         kinds.ANGULAR_ACCELERATION,
         "deg/s^2",
         "ramp_acceleration",
-        note="α = ω₀ / tᵣ",
+        note="α = ω_0 / t_r",
     )
     angle = page.derived(
         "Tilt taken to speed up",
-        "φᵣ",
+        "φ_r",
         f"{speed.si}*{ramp}/2",
         kinds.ANGLE,
         "deg",
         "ramp_angle",
-        note="φᵣ = ω₀ tᵣ / 2",
+        note="φ_r = ω_0 t_r / 2",
     )
     stop = page.derived(
         "Deceleration of an emergency stop",
-        "αₛ",
+        "α_s",
         f"IF({given.stop_by.si}=1,{speed.si}^2/(2*{given.stop_angle.si}),{speed.si}/{given.stop_time.si})",
         kinds.ANGULAR_ACCELERATION,
         "deg/s^2",
         "stop_deceleration",
-        note="αₛ = ω₀² / (2 φₛ) within an angle, ω₀ / tₛ within a time",
+        note="α_s = ω_0² / (2 φ_s) within an angle, ω_0 / t_s within a time",
     )
     return gravity, speed, acceleration, angle, stop
 
@@ -200,30 +201,35 @@ def _sums(page: Page, given: Inputs, rolled: dict[str, dict[str, Place]]) -> dic
 
     texts = (
         ("Mass", "m", "kg", ""),
-        ("First moment of mass along x", "Sx", "kg*m", "Sx = m x_G"),
-        ("First moment of mass along y", "Sy", "kg*m", "Sy = m y_G"),
+        ("First moment of mass along x", "S_x", "kg*m", "S_x = m x_G"),
+        ("First moment of mass along y", "S_y", "kg*m", "S_y = m y_G"),
         ("Moment of inertia about the hinge", "I_O", "kg*m^2", "fruit: all fruit less empty"),
-        ("First moment of mass along the hinge", "Sz", "kg*m", "Sz = m z_G"),
-        ("Sum of z x m", "K_x", "kg*m^2", "K_x = −I_zx about the hinge"),
-        ("Sum of z y m", "K_y", "kg*m^2", "K_y = −I_yz about the hinge"),
+        ("First moment of mass along the hinge", "S_z", "kg*m", "S_z = m z_G"),
+        ("Sum of z x m", "K_x", "kg*m^2", "K_x = −I_{zx} about the hinge"),
+        ("Sum of z y m", "K_y", "kg*m^2", "K_y = −I_{yz} about the hinge"),
     )
     for text, empty, whole in zip(texts, sums(e), sums(w), strict=True):
         rows.append(_sum_row(page, text, empty, whole))
     for name, other, span in (("1", z2, f"({z1}-{z2})"), ("2", z1, f"({z2}-{z1})")):
         for label, symbol, across, along, unit in (
             ("Mass", "m", 4, 0, "kg"),
-            ("First moment along x", "Sx", 5, 1, "kg*m"),
-            ("First moment along y", "Sy", 6, 2, "kg*m"),
+            ("First moment along x", "S_x", 5, 1, "kg*m"),
+            ("First moment along y", "S_y", 6, 2, "kg*m"),
         ):
             cells = [f"({rows[across][k]}-{other}*{rows[along][k]})/{span}" for k in (0, 2)]
-            far = "z₂" if name == "1" else "z₁"
-            sign = "(z₁ − z₂)" if name == "1" else "(z₂ − z₁)"
+            far = "z_2" if name == "1" else "z_1"
+            sign = "(z_1 − z_2)" if name == "1" else "(z_2 − z_1)"
             rule = {
-                "m": f"(Sz − {far} m) / {sign}",
-                "Sx": f"(K_x − {far} Sx) / {sign}",
-                "Sy": f"(K_y − {far} Sy) / {sign}",
+                "m": f"(S_z − {far} m) / {sign}",
+                "S_x": f"(K_x − {far} S_x) / {sign}",
+                "S_y": f"(K_y − {far} S_y) / {sign}",
             }
-            text = (f"{label} that counts for hinge {name}", f"{symbol}·{name}", unit, rule[symbol])
+            text = (
+                f"{label} that counts for hinge {name}",
+                f"{symbol.replace('_', '_{')}{',' if '_' in symbol else '_{'}h{name}}}",
+                unit,
+                rule[symbol],
+            )
             rows.append(_sum_row(page, text, *cells))
     return {
         state: Body(
@@ -241,12 +247,12 @@ def _sums(page: Page, given: Inputs, rolled: dict[str, dict[str, Place]]) -> dic
 def _sum_row(page: Page, text: tuple[str, str, str, str], empty: str, whole: str) -> tuple[str, str, str]:
     label, symbol, unit, note = text
     page.put(2, label, "RS label")
-    page.put(3, symbol, "RS symbol")
+    page.put(3, rich(symbol, 10, italic=True, serif=True), "RS symbol")
     cells = page.at(4), page.at(5), page.at(6)
     for column, formula in ((4, empty), (5, f"{cells[2]}-{cells[0]}"), (6, whole)):
         page.put(column, page.book.guarded(formula), "RS number")
     page.put(7, unit, "RS unit fixed")
-    page.put(8, note or None, "RS note")
+    page.put(8, rich(note, 8, italic=True, color=SOFT) or None, "RS note")
     page.row += 1
     return cells
 
@@ -290,12 +296,14 @@ def sums_of(case: Case, tilt: Table, work: Work, row: int, pick: Any) -> str:
 
 def tilt_table(book: Book, given: Inputs, work: Work) -> Table:
     """Write the table of motion, torque and energy."""
-    page = book.page("Tilt", (7.0, 6.2, 7.2, 7.8, 6.2, 7.0, 7.0, 6.8, 6.8, *([8.2] * 6), 8.0, 8.0, 7.0))
+    page = book.page(
+        "Tilt", (7.0, 6.2, 7.2, 7.8, 6.2, 7.0, 7.0, 6.8, 6.8, *([8.2] * 6), 8.0, 8.0, 7.0), lead=1
+    )
     page.title_block(repeat_rows=10)
     page.prose(
         (
             "Table over the tilt in SI (tilt in degrees). The ends of speeding up and slowing down stand twice, once on each side.",
-            "T = I_O α + g (Sx cos φ − Sy sin φ); work = sum of (T + T before) Δφ / 2; energy = g (Sx sin φ + Sy cos φ − Sy) + I_O ω² / 2, for "
+            "T = I_O α + g (S_x cos φ − S_y sin φ); work = sum of (T + T before) Δφ / 2; energy = g (S_x sin φ + S_y cos φ − S_y) + I_O ω² / 2, for "
             + f"{ENERGY_CASE.name}.",
             "Cylinder: L from eye to eye, arm about the hinge, u its direction on the table. Fruit: what is left while it pours.",
         )
@@ -329,7 +337,7 @@ def _heads(page: Page, words: tuple[str, ...], units: tuple[str, ...], groups: l
     page.row += 1
     page.sheet.row_dimensions[page.row].height = 46.0
     for column, (word, unit) in enumerate(zip(words, units, strict=True), 1):
-        page.put(column, word, "RS head")
+        page.put(column, rich(word, 8), "RS head")
         page.put(column, unit, "RS column", row=page.row + 1)
     page.row += 2
     page.sheet.freeze_panes = page.sheet.cell(page.row, 2)
@@ -337,15 +345,15 @@ def _heads(page: Page, words: tuple[str, ...], units: tuple[str, ...], groups: l
 
 def _extremes(table: Table, columns: range) -> None:
     page = table.page
-    for name in ("MAX", "MIN"):
-        page.put(1, {"MAX": "largest", "MIN": "smallest"}[name], "RS head")
+    for name, word in (("MAX", "largest"), ("MIN", "smallest")):
+        for column in range(1, page.columns + 1):
+            page.put(column, None, "RS total")
+        page.put(1, word, "RS total")
         for column in columns:
-            page.put(
-                column, page.book.guarded(f"{name}({table.column(column)})"), "RS head", form="#,##0;-#,##0"
-            )
+            form = page.sheet.cell(table.first, column).number_format
+            page.put(column, page.book.guarded(f"{name}({table.column(column)})"), "RS total", form=form)
         page.row += 1
-    page.put(1, "position", "RS status", row=table.look - 1)
-    page.put(2, "looked at, between the rows above", "RS line", row=table.look - 1)
+    page.put(1, "The position looked at, by the same formulas", "RS line", row=table.look - 1)
 
 
 def _phase(given: Inputs, work: Work, i: int) -> tuple[str, str, str]:
@@ -444,7 +452,7 @@ def _energy(table: Table, work: Work, row: int, phi: str, i: int) -> dict[int, s
 
 def hinge_table(book: Book, given: Inputs, work: Work, tilt: Table) -> Table:
     """Write the table of the drive's effort and of the two hinges."""
-    page = book.page("Hinges", (7.0, *([6.9] * 18)))
+    page = book.page("Hinges", (7.0, *([6.9] * 18)), lead=1)
     page.title_block(repeat_rows=10)
     page.prose(
         (
@@ -469,7 +477,7 @@ def hinge_table(book: Book, given: Inputs, work: Work, tilt: Table) -> Table:
         page.put(1, book.guarded(tilt.cell(TILT, row)), "RS number", row=row + shift, form="0.00")
         for k, case in enumerate(CASES):
             for column, formula, form in (
-                (EFFORT + k, _effort(case, k, given, work, tilt, row), "[>=1000]#,##0;[<=-1000]-#,##0;0.0"),
+                (EFFORT + k, _effort(case, k, given, work, tilt, row), "#,##0.0"),
                 (HINGE_1 + k, _hinge(case, k, given, work, tilt, table, row, 1), "#,##0"),
                 (HINGE_2 + k, _hinge(case, k, given, work, tilt, table, row, 2), "#,##0"),
             ):

@@ -50,7 +50,7 @@ from rigidsheet.udf.arguments import asked
 from rigidsheet.udf.kinds import Kind
 from rigidsheet.udf.limits import Limit
 
-from .kit_look import HAIR, MARK, RULE, SOFT, add_styles
+from .kit_look import HAIR, MARK, RULE, SOFT, add_styles, rich
 
 # What the unit cells offer, most usual first; each can be typed over with any unit of the kind.
 UNITS: Final[Mapping[str, tuple[str, ...]]] = {
@@ -137,9 +137,9 @@ class Book:
         self._needed: dict[str, int] = {}  # condition (empty: always) -> how many numbers in SI
         self._si: list[str] = []  # those cells, page by page
 
-    def page(self, name: str, widths: Sequence[float], *, landscape: bool = False) -> Page:
-        """Add a sheet with columns of these widths, printed so that they fill the page."""
-        made = Page(self, self.workbook.create_sheet(name), widths, landscape)
+    def page(self, name: str, widths: Sequence[float], *, landscape: bool = False, lead: int = 2) -> Page:
+        """Add a sheet with columns of these widths, printed so that they fill the page; texts start at `lead`."""
+        made = Page(self, self.workbook.create_sheet(name), widths, landscape, lead)
         self.pages[name] = made
         return made
 
@@ -170,8 +170,9 @@ class Book:
         page, row = self._status
         count = self.missing()
         page.put(page.SI, f"=IF({count}=0,1,0)", "RS si", row=row, form=";;;")
-        text = f'({count})&" inputs are missing or refused. Fill in the boxed cells marked {MARK}; a refusal shows beside them."'
-        legend = f'"Boxed cells marked {MARK} are yours to fill in; dotted cells hold units. All inputs are there."'
+        text = f'({count})&" inputs are missing or refused. Fill in the boxed cells marked {MARK};'
+        text += ' a refusal shows beside them."'
+        legend = f'"Boxed cells marked {MARK} are yours to fill in; finely framed cells hold units. All inputs are there."'
         page.put(2, f"=IF({self.ready_ref}=1,{legend},{text})", "RS line", row=row)
 
     def guarded(self, formula: str) -> str:
@@ -195,15 +196,19 @@ class Page:
     MARK, LABEL, SYMBOL, VALUE, UNIT, SI, SI_UNIT, NOTE = range(1, 9)
     INPUT_WORDS: Final = {VALUE: "value", UNIT: "unit", SI: "in SI"}
 
-    def __init__(self, book: Book, sheet: Any, widths: Sequence[float], landscape: bool) -> None:
+    def __init__(
+        self, book: Book, sheet: Any, widths: Sequence[float], landscape: bool, lead: int = 2
+    ) -> None:
         self.book, self.sheet, self.widths = book, sheet, tuple(widths)
-        self.name = sheet.title
+        self.name, self.lead = sheet.title, lead
+        self.rule_to = len(self.widths)  # how far the lines under headings reach; less beside a sketch
         self.row = 1
         self.sections = 0
         self._validations: dict[tuple[str, ...], Any] = {}
         for i, width in enumerate(self.widths, 1):
             sheet.column_dimensions[get_column_letter(i)].width = width
         sheet.sheet_view.showGridLines = False
+        sheet.sheet_format.defaultRowHeight, sheet.sheet_format.customHeight = 13.5, True
         self._print(landscape)
 
     @property
@@ -257,28 +262,24 @@ class Page:
     def title_block(self, repeat_rows: int = 0) -> None:
         """Write title and the fields drawing, revision, date, by, checked; the first page holds the fields."""
         sheet, first = self.sheet, not self.book.fields
-        sheet.row_dimensions[1].height, sheet.row_dimensions[2].height = 24.0, 12.0
-        self.put(2, self.book.title, "RS title", row=1)
-        self.put(2, self.book.line, "RS line", row=3)
-        starts = self._field_columns()
-        for name, (begin, end) in zip(FIELDS, starts, strict=True):
-            self.put(begin, name, "RS field name", row=2)
+        for row, height in ((1, 24.0), (2, 16.0), (3, 14.0), (4, 4.0)):
+            sheet.row_dimensions[row].height = height
+        self.put(self.lead, self.book.title, "RS title", row=1)
+        self.put(self.lead, self.book.line, "RS line", row=3)
+        for name, (begin, end) in zip(FIELDS, self._field_columns(), strict=True):
+            self.put(begin, name, "RS field name", row=1)
             for column in range(begin, end + 1):
-                self.put(column, None, "RS field" if first else "RS field shown", row=3)
-                self.put(column, None, "RS field name", row=2)
-            self.sheet.cell(2, begin).value = name
+                self.put(column, None, "RS field" if first else "RS field shown", row=2)
             if end > begin:
-                sheet.merge_cells(start_row=3, start_column=begin, end_row=3, end_column=end)
-            cell = sheet.cell(3, begin)
+                sheet.merge_cells(start_row=2, start_column=begin, end_row=2, end_column=end)
             if first:
-                self.book.fields[name] = self.at(begin, 3)
-                self.book.name(f"sheet_{name.lower()}", self.at(begin, 3))
+                self.book.fields[name] = self.at(begin, 2)
+                self.book.name(f"sheet_{name.lower()}", self.at(begin, 2))
             else:
                 home = self.book.fields[name]
-                cell.value = f'=IF({home}="","",{home})'
-        for column in range(2, self.columns + 1):
+                sheet.cell(2, begin).value = f'=IF({home}="","",{home})'
+        for column in range(self.lead, self.columns + 1):
             self.put(column, None, "RS rule", row=4)
-        sheet.row_dimensions[3].height, sheet.row_dimensions[4].height = 16.0, 5.0
         sheet.print_title_rows = f"1:{max(repeat_rows, 4)}"
         self.row = 5
 
@@ -288,7 +289,7 @@ class Page:
         column = self.columns
         for _ in FIELDS:
             end, width = column, 0.0
-            while width < 12.0 and column > 3:
+            while width < 12.0 and column > self.lead + 1:
                 width += self.widths[column - 1]
                 column -= 1
             spans.append((column + 1, end))
@@ -300,9 +301,9 @@ class Page:
         self.sheet.row_dimensions[self.row].height = 8.0
         self.row += 1
         self.sheet.row_dimensions[self.row].height = 17.0
-        for column in range(2, self.columns + 1):
+        for column in range(self.lead, self.rule_to + 1):
             self.put(column, None, "RS heading")
-        self.put(2, f"{self.sections}   {title}", "RS heading")
+        self.put(self.lead, f"{self.sections}   {title}", "RS heading")
         for column, word in (columns or {}).items():
             cell = self.put(column, word, "RS column")
             cell.border = Border(bottom=Side("thin", color=RULE))
@@ -327,14 +328,15 @@ class Page:
         place = Place(self.name, self.row, self.VALUE, self.UNIT, self.SI)
         plain = kind.si in ("", "-")
         self._input_row(label, symbol, None if self.book.blank else value, "RS input", name, note)
-        self.put(self.UNIT, unit, "RS unit fixed" if plain else "RS unit")
+        self.put(self.UNIT, None if plain else unit, "RS unit fixed" if plain else "RS unit")
         si = (
             f'RB_CONVERT({place.pair},"{kind.si}")'
             if not plain
             else f"IF(ISNUMBER({place.ref}),{place.ref},NA())"
         )
-        self.put(self.SI, f'=IF({when},{si},"not used")' if when else f"={si}", "RS si", form="0.0000##")
-        self.put(self.SI_UNIT, "-" if plain else kind.si, "RS unit fixed")
+        self.put(self.SI, f'=IF({when},{si},"not used")' if when else f"={si}", "RS si")
+        si_unit = f'=IF({when},"{kind.si}","")' if when else kind.si
+        self.put(self.SI_UNIT, None if plain else si_unit, "RS unit fixed")
         self._grey_errors(self.SI)
         self.book.need(place.si, when)
         if not plain:
@@ -349,6 +351,10 @@ class Page:
         """Write an input that is one of some words; its SI cell holds the position of the word from 1."""
         place = Place(self.name, self.row, self.VALUE, self.UNIT, self.SI)
         self._input_row(label, symbol, None if self.book.blank else value, "RS input text", name, note)
+        self.put(self.UNIT, None, "RS input text")
+        self.sheet.merge_cells(
+            start_row=self.row, start_column=self.VALUE, end_row=self.row, end_column=self.UNIT
+        )
         number = "NA()"
         for i, word in reversed(list(enumerate(words, 1))):
             number = f'IF({place.ref}="{word}",{i},{number})'
@@ -363,9 +369,9 @@ class Page:
         self.sheet.row_dimensions[self.row].height = 14.5
         self.put(self.MARK, MARK, "RS mark")
         self.put(self.LABEL, label, "RS label")
-        self.put(self.SYMBOL, symbol or None, "RS symbol")
+        self.put(self.SYMBOL, rich(symbol, 10, italic=True, serif=True) or None, "RS symbol")
         self.put(self.VALUE, value, style)
-        self.put(self.NOTE, note or None, "RS note")
+        self.put(self.NOTE, rich(note, 8, italic=True, color=SOFT) or None, "RS note")
         self.book.name(name, self.at(self.VALUE))
 
     def _grey_errors(self, column: int) -> None:
@@ -465,19 +471,19 @@ class Page:
         place = Place(self.name, self.row, self.VALUE, self.UNIT, self.SI)
         plain = kind.si in ("", "-")
         self.put(self.LABEL, label, "RS label")
-        self.put(self.SYMBOL, symbol or None, "RS symbol")
-        self.put(self.UNIT, unit, "RS unit fixed" if plain else "RS unit")
-        self.put(self.SI_UNIT, "-" if plain else kind.si, "RS unit fixed")
+        self.put(self.SYMBOL, rich(symbol, 10, italic=True, serif=True) or None, "RS symbol")
+        self.put(self.UNIT, None if plain else unit, "RS unit fixed" if plain else "RS unit")
+        self.put(self.SI_UNIT, None if plain else kind.si, "RS unit fixed")
         if not plain:
             self.unit_choices(self.UNIT, kind)
-        self.put(self.NOTE, note or None, "RS note")
+        self.put(self.NOTE, rich(note, 8, italic=True, color=SOFT) or None, "RS note")
         if name:
             self.book.name(name, place.ref)
         return place
 
     def _result_values(self, place: Place, shown: str, si: str, strong: bool) -> None:
         self.put(self.VALUE, shown, "RS result" if strong else "RS value")
-        self.put(self.SI, si, "RS si", form="0.0000##")
+        self.put(self.SI, si, "RS si")
 
     # -- print ---------------------------------------------------------------------------------------------
 
@@ -485,14 +491,10 @@ class Page:
         """Start a new printed page above the present row."""
         self.sheet.row_breaks.append(Break(id=self.row - 1))
 
-    def prose(self, lines: Sequence[str], last_column: int = 0, height: float = 12.5) -> None:
+    def prose(self, lines: Sequence[str], height: float = 12.5) -> None:
         """Write sentences, one a row, across the page."""
         for line in lines:
-            self.put(2, line, "RS prose")
-            if last_column:
-                self.sheet.merge_cells(
-                    start_row=self.row, start_column=2, end_row=self.row, end_column=last_column
-                )
+            self.put(self.lead, rich(line, 8.5), "RS prose")
             self.sheet.row_dimensions[self.row].height = height
             self.row += 1
 

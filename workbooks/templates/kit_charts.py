@@ -12,10 +12,13 @@ from dataclasses import dataclass
 from typing import Any, Final
 
 from openpyxl.chart import Reference, ScatterChart, Series
+from openpyxl.chart.data_source import StrRef
+from openpyxl.chart.label import DataLabelList
 from openpyxl.chart.layout import Layout, ManualLayout
 from openpyxl.chart.marker import Marker
+from openpyxl.chart.series import SeriesLabel
 from openpyxl.chart.shapes import GraphicalProperties
-from openpyxl.chart.text import RichText
+from openpyxl.chart.text import RichText, Text
 from openpyxl.chart.title import Title
 from openpyxl.drawing.line import LineProperties
 from openpyxl.drawing.text import (
@@ -26,7 +29,7 @@ from openpyxl.drawing.text import (
     RegularTextRun,
 )
 
-from .kit_look import HAIR, INK, SANS, SOFT
+from .kit_look import INK, SANS, SOFT
 
 # Dash, width in points and colour of the curves of a chart, in order.
 LINES: Final = (
@@ -51,6 +54,7 @@ class Curve:
     color: str = INK
     marker: str = ""
     size: int = 6
+    label: str = ""  # cell like Inputs!$R$6 whose text stands beside the first point
 
 
 def _text(size: float, *, bold: bool = False, color: str = INK) -> CharacterProperties:
@@ -66,14 +70,8 @@ def _rich(size: float, *, color: str = INK) -> RichText:
 
 def _title(text: str, size: float, *, bold: bool = False) -> Title:
     run = RegularTextRun(rPr=_text(size, bold=bold), t=text)
-    title = Title(overlay=False)
-    title.tx = None
-    from openpyxl.chart.text import Text
-
-    title.tx = Text(
-        rich=RichText(p=[Paragraph(pPr=ParagraphProperties(defRPr=_text(size, bold=bold)), r=[run])])
-    )
-    return title
+    paragraph = Paragraph(pPr=ParagraphProperties(defRPr=_text(size, bold=bold)), r=[run])
+    return Title(tx=Text(rich=RichText(p=[paragraph])), overlay=False)
 
 
 def _line(dash: str, width: float, color: str) -> LineProperties:
@@ -101,6 +99,11 @@ def _series(curve: Curve) -> Series:
         series.marker.size = curve.size
         series.marker.graphicalProperties = GraphicalProperties(solidFill="FFFFFF")
         series.marker.graphicalProperties.line = _line("solid", 1.25, curve.color)
+    if curve.label:
+        series.tx = SeriesLabel(strRef=StrRef(curve.label))
+        series.dLbls = DataLabelList(dLblPos="r", showSerName=True, showVal=False)
+        series.dLbls.showCatName = series.dLbls.showLegendKey = series.dLbls.showPercent = False
+        series.dLbls.txPr = _rich(8, color=curve.color)
     return series
 
 
@@ -149,27 +152,36 @@ def line_chart(
 
 
 def sketch_chart(
-    page: Any, anchor: str, curves: Sequence[Curve], *, size: float, title: str, limit: float = 1.05
+    page: Any,
+    anchor: str,
+    curves: Sequence[Curve],
+    *,
+    width: float,
+    title: str,
+    window: tuple[float, float, float, float] = (-1.05, 1.05, -0.65, 1.05),
 ) -> ScatterChart:
-    """Put a drawing of equal scale into a page: a square of `size` mm between -limit and limit."""
-    title_height = 7.0
-    chart = _bare_chart(size, size + title_height)
+    """Put a drawing of equal scale into a page: `width` in mm for the window (left, right, low, high)."""
+    left, right, low, high = window
+    drawn, head = width * (high - low) / (right - left), 7.0
+    chart = _bare_chart(width, drawn + head)
     chart.title = _title(title, 9.5, bold=True)
     chart.legend = None
-    share = size / (size + title_height) * 0.97
+    share = drawn / (drawn + head)
     chart.layout = Layout(
         manualLayout=ManualLayout(
-            layoutTarget="inner", xMode="edge", yMode="edge", x=0.015, y=1.0 - share - 0.01, w=0.97, h=share
+            layoutTarget="inner",
+            xMode="edge",
+            yMode="edge",
+            x=0.01,
+            y=0.99 - share * 0.98,
+            w=0.98,
+            h=share * 0.98,
         )
     )
-    for axis in (chart.x_axis, chart.y_axis):
-        axis.scaling.min, axis.scaling.max = -limit, limit
-        axis.majorUnit = 0.25
-        axis.tickLblPos = "none"
-        axis.majorTickMark = "none"
-        axis.crosses = "autoZero"
-        axis.graphicalProperties = GraphicalProperties(ln=_line("lgDashDot", 0.5, HAIR))
-    chart.y_axis.majorGridlines = None
+    for axis, lowest, highest in ((chart.x_axis, left, right), (chart.y_axis, low, high)):
+        axis.scaling.min, axis.scaling.max = lowest, highest
+        axis.delete = True
+        axis.majorGridlines = None
     for curve in curves:
         chart.series.append(_series(curve))
     page.sheet.add_chart(chart, anchor)

@@ -32,6 +32,7 @@ class Check:
     at: str = '""'
     sense: str = "at most"
     when: str = ""
+    plain: bool = False  # a check of the calculation itself: no factor and no margin to show
 
 
 class Checks:
@@ -68,10 +69,13 @@ class Checks:
             style = "RS text" if column in (CASE, DEMAND_UNIT, CAPACITY_UNIT) else "RS value"
             page.put(column, self._formula(formula, check.when), style)
         page.sheet.cell(row, AT).number_format = "0.0"
-        page.sheet.cell(row, REQUIRED).number_format = "0.00"
+        page.sheet.cell(row, REQUIRED).number_format = "0.00;;" if check.plain else "0.00"
         pair = f"{demand},{capacity}" if check.sense == "at most" else f"{capacity},{demand}"
         tested = page.at(DEMAND)
         for column, what, form in ((FACTOR, "factor", "0.00"), (MARGIN, "margin", "+0%;-0%;0%")):
+            if check.plain:
+                page.put(column, None, "RS value")
+                continue
             text = f'IF(ABS({tested})<1E-9,"none",RB_MARGIN({pair},{required},"{what}"))'
             page.put(column, self._formula(text, check.when), "RS value", form=form)
         verdict = f'RB_CHECK({demand},{capacity},"{check.sense}",{required})'

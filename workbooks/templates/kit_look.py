@@ -7,8 +7,11 @@ medium line around the value, and a mark in front of the row.
 
 from __future__ import annotations
 
+import re
 from typing import Any, Final
 
+from openpyxl.cell.rich_text import CellRichText, TextBlock
+from openpyxl.cell.text import InlineFont
 from openpyxl.styles import Alignment, Border, Font, NamedStyle, PatternFill, Side
 
 SANS, SERIF = "Arial", "Times New Roman"  # both have twins of the same widths where they are missing
@@ -16,8 +19,8 @@ INK, SOFT, RULE, HAIR = "1B1F1D", "5C6460", "2E4A3D", "BCC4BF"
 TINT, BAND = "FFFBEA", "EEF2EF"  # inputs, table heads
 MARK: Final = "►"
 
-# Whole numbers from a thousand on, else three decimals: four digits or more of what a designer works with.
-AUTO: Final = "[>=1000]#,##0;[<=-1000]-#,##0;0.000"
+# Conditions in a format can hide a minus sign in one program or the other, so there are none.
+AUTO: Final = "#,##0.000"
 PERCENT: Final = "0.00%"
 
 
@@ -36,7 +39,7 @@ def _box(style: str = "thin", color: str = INK) -> Any:
     return Border(left=side, right=side, top=side, bottom=side)
 
 
-def _under(style: str = "hair", color: str = SOFT) -> Any:
+def _under(style: str = "hair", color: str = HAIR) -> Any:
     return Border(bottom=_side(style, color))
 
 
@@ -47,9 +50,10 @@ def _fill(color: str) -> Any:
 _MIDDLE: Final[dict[str, Any]] = {"vertical": "center"}
 LEFT = Alignment(horizontal="left", **_MIDDLE)
 RIGHT = Alignment(horizontal="right", **_MIDDLE)
+INNER = Alignment(horizontal="right", indent=1, **_MIDDLE)  # keeps digits off the lines of a box
 CENTER = Alignment(horizontal="center", **_MIDDLE)
-WRAP = Alignment(horizontal="left", vertical="top", wrap_text=True)
 HEAD = Alignment(horizontal="center", vertical="center", wrap_text=True)
+FOOT = Alignment(horizontal="left", vertical="bottom")
 INDENT = Alignment(horizontal="left", indent=1, **_MIDDLE)
 
 
@@ -59,7 +63,7 @@ def _styles() -> dict[str, dict[str, Any]]:
         "RS title": {"font": _font(17, bold=True, color=RULE), "alignment": LEFT},
         "RS line": {"font": _font(9, color=SOFT), "alignment": LEFT},
         "RS rule": {"font": _font(9), "border": Border(bottom=_side("medium", RULE))},
-        "RS field name": {"font": _font(7, color=SOFT), "alignment": LEFT, "border": _under("hair", HAIR)},
+        "RS field name": {"font": _font(7, color=SOFT), "alignment": FOOT},
         "RS field": {"font": _font(9), "alignment": LEFT, "fill": _fill(TINT), "border": input_box},
         "RS field shown": {"font": _font(9), "alignment": LEFT, "border": _under()},
         "RS heading": {
@@ -73,7 +77,7 @@ def _styles() -> dict[str, dict[str, Any]]:
         "RS symbol": {"font": _font(10, italic=True, name=SERIF), "alignment": CENTER},
         "RS input": {
             "font": _font(9.5, bold=True),
-            "alignment": RIGHT,
+            "alignment": INNER,
             "fill": _fill(TINT),
             "border": input_box,
         },
@@ -83,9 +87,14 @@ def _styles() -> dict[str, dict[str, Any]]:
             "fill": _fill(TINT),
             "border": input_box,
         },
-        "RS entry": {"font": _font(8.5), "alignment": RIGHT, "fill": _fill(TINT), "border": _box("thin")},
-        "RS entry text": {"font": _font(8.5), "alignment": LEFT, "fill": _fill(TINT), "border": _box("thin")},
-        "RS unit": {"font": _font(9), "alignment": CENTER, "border": _box("dotted", SOFT)},
+        "RS entry": {"font": _font(8.5), "alignment": INNER, "fill": _fill(TINT), "border": _box("thin")},
+        "RS entry text": {
+            "font": _font(8.5),
+            "alignment": INDENT,
+            "fill": _fill(TINT),
+            "border": _box("thin"),
+        },
+        "RS unit": {"font": _font(9), "alignment": CENTER, "border": _box("hair", SOFT)},
         "RS unit fixed": {"font": _font(9, color=SOFT), "alignment": LEFT},
         "RS si": {"font": _font(8.5, color=SOFT), "alignment": RIGHT, "number_format": "General"},
         "RS note": {"font": _font(8, italic=True, color=SOFT), "alignment": INDENT},
@@ -107,11 +116,17 @@ def _styles() -> dict[str, dict[str, Any]]:
             "font": _font(8.5),
             "alignment": RIGHT,
             "number_format": AUTO,
-            "border": _under("hair", HAIR),
+            "border": _under(),
+        },
+        "RS total": {
+            "font": _font(8.5, bold=True),
+            "alignment": RIGHT,
+            "number_format": AUTO,
+            "border": Border(top=_side("thin", RULE)),
         },
         "RS verdict": {"font": _font(9.5, bold=True), "alignment": CENTER, "border": _box("thin")},
         "RS step": {"font": _font(8.5, name="Courier New"), "alignment": LEFT},
-        "RS prose": {"font": _font(8.5), "alignment": WRAP},
+        "RS prose": {"font": _font(8.5), "alignment": LEFT},
         "RS status": {"font": _font(9, bold=True), "alignment": LEFT},
     }
 
@@ -125,3 +140,21 @@ def add_styles(book: Any) -> None:
         for part, value in parts.items():
             setattr(style, part, value)
         book.add_named_style(style)
+
+
+def rich(text: str, size: float = 9.0, *, italic: bool = False, serif: bool = False, color: str = INK) -> Any:
+    """Return a text in which x_1 and x_{max} stand with an index; plain text stays plain."""
+    if "_" not in text:
+        return text
+
+    def run(piece: str, low: bool) -> Any:
+        font = InlineFont(rFont=SERIF if serif else SANS, sz=size, i=italic or None, color=color)
+        font.vertAlign = "subscript" if low else None
+        return TextBlock(font, piece)
+
+    pieces = INDEX.split(text)
+    return CellRichText([run(piece.strip("{}"), k % 2 == 1) for k, piece in enumerate(pieces) if piece])
+
+
+# An index hangs on a single letter, so that names of functions stay as they are.
+INDEX: Final = re.compile(r"(?<=\b\w)_(\{[^}]*\}|\w)")

@@ -32,6 +32,12 @@ class Points:
         self.curves.append(Curve(name, x, y, **look))
         self.column += 2
 
+    def label(self, text: str, point: tuple[str, str], **look: Any) -> None:
+        """Add a text beside a point; `text` is a formula, so that it can hold a number of the sheet."""
+        place = self.page.at(self.column, self.row)
+        self.add("", [point], **{"width": 0.0, "label": place, **look})
+        self.page.put(self.column - 2, self.page.book.guarded(text), "RS column", row=self.row)
+
     def arrow(self, name: str, tail: tuple[str, str], step: tuple[str, str], **look: Any) -> None:
         """Add an arrow from a point by a step; its head keeps its proportions."""
         (x, y), (dx, dy) = tail, step
