@@ -1,0 +1,118 @@
+"""The table of built-in formulas in a live Calc, and whole workbooks against the headless recalculation."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from pathlib import Path
+from typing import Any
+
+import conformance
+import gate_book
+import openpyxl
+import pytest
+from live_calc import LiveCalc
+
+from rigidsheet.udf.cells import CellError
+from rigidsheet.workbooks import recalculate
+from rigidsheet.workbooks.templates import TEMPLATES
+
+pytestmark = pytest.mark.live
+
+
+def test_built_in_formulas(calc: LiveCalc, tmp_path: Path) -> None:
+    book = openpyxl.Workbook()
+    formulas = book.active
+    formulas.title = "Formulas"
+    data = book.create_sheet("Data")
+    for where, value in conformance.DATA.items():
+        data[where] = value
+    for row, case in enumerate(conformance.CASES, start=1):
+        formulas.cell(row, 1, f"={case.formula}")
+    path = tmp_path / "formulas.xlsx"
+    book.save(path)
+    doc = calc.ask("load", str(path))
+    calc.ask("calculate", doc)
+    got = [row[0] for row in calc.read(doc, "Formulas", f"A1:A{len(conformance.CASES)}")]
+    calc.ask("close", doc)
+    wrong = []
+    for case, found in zip(conformance.CASES, got, strict=True):
+        wanted = case.value if case.calc is None else case.calc
+        if isinstance(wanted, bool):
+            wanted = float(wanted)
+        same = (
+            found == pytest.approx(wanted, rel=1e-12, abs=1e-14)
+            if isinstance(wanted, float) and isinstance(found, float)
+            else found == wanted
+        )
+        if not same:
+            wrong.append(f"{case.formula}: expected {wanted!r}, got {found!r}")
+    assert wrong == []
+
+
+def write_gate(path: Path) -> None:
+    gate_book.write(path)
+
+
+BOOKS: dict[str, Callable[[Path], Any]] = {
+    "gate": write_gate,
+    **{name: lambda path, t=t: t.write(path, False) for name, t in TEMPLATES.items()},
+    **{f"{name} blank": lambda path, t=t: t.write(path, True) for name, t in TEMPLATES.items()},
+}
+
+
+def differing(calc: LiveCalc, doc: int, values: Any) -> list[str]:
+    """Return the formula cells of an open document that are not what the headless run gave."""
+    wrong = []
+    sheets: dict[str, list[str]] = {}
+    for sheet, where in values:
+        sheets.setdefault(sheet, []).append(where)
+    for sheet, places in sheets.items():
+        for where, block in zip(places, calc.read_each(doc, sheet, places), strict=True):
+            wanted, found = values[sheet, where], block[0][0]
+            if not agree(wanted, found):
+                wrong.append(f"{sheet}!{where}: expected {wanted!r}, got {found!r}")
+    return wrong
+
+
+def agree(wanted: Any, found: Any) -> bool:
+    if isinstance(wanted, CellError):
+        # an error inside a range that is handed to a function is Err:504 in Calc, whichever it was
+        return found in ({"error": wanted.text}, {"error": "Err:504"})
+    if isinstance(wanted, (bool, float)) and isinstance(found, float):
+        return bool(found == pytest.approx(float(wanted), rel=1e-12, abs=1e-13))
+    return bool(wanted == found or (wanted in (None, "") and found in (None, "")))
+
+
+@pytest.mark.parametrize("name", BOOKS)
+def test_a_workbook_in_calc_and_saved_by_calc(calc: LiveCalc, tmp_path: Path, name: str) -> None:
+    path = tmp_path / "book.xlsx"
+    BOOKS[name](path)
+    values = recalculate(path, write=False).values
+    assert len(values) > 5
+    doc = calc.ask("load", str(path))
+    assert differing(calc, doc, values) == []
+    calc.ask("calculate", doc)
+    assert differing(calc, doc, values) == []
+    saved = {ending: tmp_path / f"saved{ending}" for ending in (".xlsx", ".ods")}
+    for copy in saved.values():
+        calc.ask("save", doc, str(copy))
+    calc.ask("close", doc)
+    doc = calc.ask("load", str(saved[".ods"]))
+    calc.ask("calculate", doc)
+    assert differing(calc, doc, values) == []
+    from_ods = tmp_path / "from ods.xlsx"
+    calc.ask("save", doc, str(from_ods))
+    calc.ask("close", doc)
+    for copy in (saved[".xlsx"], from_ods):
+        again = recalculate(copy, write=False).values
+        assert [
+            f"{cell}: {value!r}, saved by Calc {again.get(cell)!r}"
+            for cell, value in values.items()
+            if not same_headless(value, again.get(cell))
+        ] == []
+
+
+def same_headless(first: Any, second: Any) -> bool:
+    if isinstance(first, (bool, float)) and isinstance(second, (bool, float)):
+        return bool(float(first) == pytest.approx(float(second), rel=1e-12, abs=1e-13))
+    return bool(first == second)
