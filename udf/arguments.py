@@ -47,6 +47,8 @@ def shown(cell: object) -> str:
             return "NaN, which is not a number"
         return f"{cell:.10g}" if abs(cell) != math.inf else "a number beyond all bounds"
     text = str(cell)
+    if text.startswith("the single number "):
+        return text
     return f"'{text if len(text) <= 40 else text[:37] + '...'}'"
 
 
@@ -144,9 +146,9 @@ def beside_unit(argument: str, kind: Kind, cell: Value, unit: str, where: str = 
 
 def blank_unit(argument: str, kind: Kind, cell: Block) -> None:
     """Refuse numbers beside units where one of the unit cells is blank."""
-    if any(is_unit_text(row[1]) for row in cell):
+    if any(is_unit_text(row[-1]) for row in cell):
         for i, row in enumerate(cell, 1):
-            if row[1] is None or row[1] == "":
+            if row[-1] is None or row[-1] == "":
                 raise InputError(
                     argument,
                     f"{asked(kind)} with a unit in each row; the unit cell is blank",
@@ -204,7 +206,7 @@ class Scalar:
         rows, columns = len(cell), len(cell[0])
         if rows * columns == 2:
             first, second = (cell[0][0], cell[0][1]) if columns == 2 else (cell[0][0], cell[1][0])
-            if type(first) is float and type(second) is str:
+            if type(first) is float and type(second) is str and second != "":
                 f = spellings.get(second)
                 if f is not None or second.strip() in ("-", "1"):
                     f = unit_factor(argument, self.kind, second) if f is None else f
@@ -319,7 +321,7 @@ class Vector:
             if type(cell) is str and cell.lstrip().startswith("("):
                 return vector_text(argument, kind, cell, rule)
             if type(cell) is float:
-                raise wrong(argument, rule, f"the single number {cell:.6g}")
+                raise wrong(argument, rule, single(cell))
             raise wrong(argument, rule, cell)
 
         return read
@@ -382,6 +384,11 @@ class Spin:
         return 1.25
 
 
+def single(cell: float) -> Value:
+    """Return how one number is named where several are asked."""
+    return f"the single number {cell:.6g}" if math.isfinite(cell) else cell
+
+
 def vector_text(argument: str, kind: Kind, text: str, rule: str) -> Array:
     """Read '(0.4, 0, -0.2) m', the way a vector is written in one cell."""
     inside, closed, unit = text.strip()[1:].partition(")")
@@ -434,6 +441,8 @@ def many_vectors(argument: str, kind: Kind, cell: Block, rule: str) -> Array:
     if units is None and columns in (3, 4) and all(is_unit_text(r[-1]) for r in cell):
         body = [line(argument, kind, r, rule, f"row {i}") for i, r in enumerate(cell, 1)]
         return np.array(body)
+    if units is None and columns in (3, 4):
+        blank_unit(argument, kind, cell)
     if columns not in (2, 3) or not cell:
         raise wrong(argument, rule, cell)
     out = np.empty((len(cell), columns))
@@ -448,6 +457,8 @@ def line(argument: str, kind: Kind, cells: Sequence[Value], rule: str, where: st
     count = len(cells)
     unit = str(cells[-1]) if count in (3, 4) and is_unit_text(cells[-1]) else None
     body = cells[:-1] if unit is not None else cells
+    if len(body) == 2 and unit is None and type(cells[0]) is float and is_unit_text(cells[1]):
+        raise wrong(argument, rule, single(cells[0]), where=where)
     if len(body) not in (2, 3):
         raise wrong(argument, rule, [list(cells)], where=where)
     if is_unit_text(body[0]):

@@ -14,7 +14,7 @@ from .arguments import is_unit_text, shown, wrong
 from .cells import Block, Cell, Value
 from .declaration import Reader, Role
 from .limits import Limit
-from .tables import HEADER, TOTAL
+from .tables import TOTAL, label_and_unit
 from .units import readings
 from .words import one_amount
 
@@ -62,7 +62,7 @@ def read_cases(argument: str, cell: Block) -> CaseValues:
         head = rows[0][1]
         rows = rows[1:]
         last = next((c for c in reversed(head) if type(c) is str and c.strip()), "")
-        unit = HEADER.match(str(last)).group(2) or ""  # type: ignore[union-attr]
+        unit = label_and_unit(str(last))[1] or ""
     if not rows:
         raise InputError(argument, "load cases with rows; only the header is filled in")
     beside = all(is_unit_text(r[-1]) for _, r in rows) and len(rows[0][1]) > 2

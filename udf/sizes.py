@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from types import MappingProxyType
@@ -9,7 +10,7 @@ from typing import Any, Final
 
 import numpy as np
 
-from ..core.errors import InputError
+from ..core.errors import InputError, RigidsheetError
 from ..core.shapes import SHAPES
 from . import kinds
 from .arguments import Scalar, folded, is_unit_text, numbers, quantity, shown, unit_factor, wrong
@@ -17,7 +18,7 @@ from .cells import Block, Cell
 from .declaration import Reader, Role
 from .kinds import Kind
 from .limits import Limit
-from .tables import HEADER, Column, block_lines
+from .tables import Column, block_lines, label_and_unit
 from .words import hint
 
 
@@ -62,6 +63,12 @@ def kind_of(argument: str, label: str, where: str = "") -> Kind:
 def size_texts(argument: str, text: str, where: str = "") -> dict[str, float]:
     """Read 'OD 114.3 mm; ID 101.7 mm; L 520 mm' as labels with SI numbers."""
     out: dict[str, float] = {}
+    if re.search(r",\s*[A-Za-z]", text):
+        raise InputError(
+            argument,
+            f"sizes parted by semicolons, like 'OD 114.3 mm; L 520 mm'; got {shown(text)}",
+            where=where,
+        )
     for piece in text.split(";"):
         tokens = piece.replace("=", " ", 1).split()
         if not tokens:
@@ -81,11 +88,16 @@ def _add(argument: str, out: dict[str, Any], label: str, cell: Cell, where: str)
     kind = kind_of(argument, label, where)
     if label in out:
         raise InputError(argument, f"sizes with each label once; '{label}' stands twice", where=where)
-    place = f"'{label}'" + (f", {where}" if where else "")
+    place = f"{argument}, {where}" if where else argument
     if type(cell) is list:
-        value = Scalar(kind).reader(f"{argument}", None)(cell)
+        try:
+            value = Scalar(kind).reader(label, None)(cell)
+        except RigidsheetError as refused:
+            raise type(refused)(
+                label, refused.rule, refused.value, remedy=refused.remedy, where=place
+            ) from None
     else:
-        value = quantity(argument, kind, cell, place)  # type: ignore[arg-type]
+        value = quantity(label, kind, cell, place)  # type: ignore[arg-type]
     out[label] = value
 
 
@@ -137,12 +149,20 @@ def size_columns(argument: str, cell: Block) -> dict[str, Any]:
     """Read columns of sizes under labels like `OD [mm]`."""
     out: dict[str, Any] = {}
     for j, head in enumerate(cell[0]):
-        label, unit = HEADER.match(str(head)).groups()  # type: ignore[union-attr]
+        label, unit = label_and_unit(str(head))
         kind = kind_of(argument, label, "row 1")
         if label in out:
             raise InputError(argument, f"sizes with each label once; '{label}' stands twice", where="row 1")
-        f = unit_factor(argument, kind, unit, f"column '{label}'") if unit else 1.0
-        column = numbers(argument, kind, [row[j] for row in cell[1:]], 2, united=bool(unit))
+        f = unit_factor(label, kind, unit, f"{argument}, row 1") if unit else 1.0
+        cells = [row[j] for row in cell[1:]]
+        if not unit and any(type(c) is float for c in cells):
+            raise InputError(
+                argument,
+                f"sizes with units; column '{label}' has none",
+                remedy=f"Write the header as '{label} [{kind.si}]'",
+                where="row 1",
+            )
+        column = numbers(label, kind, cells, 2, united=bool(unit))
         out[label] = column * f if unit else column
         if len(column) == 1:
             out[label] = float(np.ravel(out[label])[0])

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import difflib
 import re
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, field
@@ -28,7 +29,15 @@ from .limits import Limit
 from .words import hint, nearest
 
 HEADER: Final = re.compile(r"\s*(.*?)\s*(?:\[\s*(.*?)\s*\])?\s*\Z")
+ROUND: Final = re.compile(r"\s*(.*?)\s*\(\s*([^()]*(?:\([^()]*\)[^()]*)*?)\s*\)\s*\Z")
 TOTAL: Final = re.compile(r"(grand |sub)?-?\s*(total|sum)s?\b[\s:=]*\Z", re.IGNORECASE)
+
+
+def label_and_unit(text: str) -> tuple[str, str | None]:
+    """Split 'mass [kg]' or 'mass (kg)' into the label and the unit text, None where there is no unit."""
+    found = ROUND.match(text) or HEADER.match(text)
+    assert found is not None  # HEADER matches every text
+    return found[1], found[2]
 
 
 @dataclass(frozen=True, slots=True)
@@ -164,9 +173,10 @@ class Table:
                     f"a {self.what} whose first row is the header; got {shown(head)} in it",
                     where="row 1",
                 )
-            label, unit = HEADER.match(head).groups()  # type: ignore[union-attr]
+            label, unit = label_and_unit(head)
             c = known.get(folded(label)) or self._further(label)
             if c is None:
+                self._lookalike(argument, head, label)
                 close = nearest(label, [*(n for k in self.columns for n in (k.label, *k.also)), *self.more])
                 if close is not None:
                     raise InputError(
@@ -194,6 +204,24 @@ class Table:
             )
         return heads
 
+    def _lookalike(self, argument: str, head: str, label: str) -> None:
+        """Refuse an unknown header that begins like a column of numbers, which must not be passed over."""
+        first = folded(re.split(r"[\s,;:/(]", label.strip(), maxsplit=1)[0])
+        alike = [
+            n
+            for c in (*self.columns, *self.more.values())
+            for n in (c.label, *c.also)
+            if c.kind is not None and folded(n).split()[0] == first
+        ]
+        if alike:
+            close = difflib.get_close_matches(label, alike, n=1, cutoff=0.0)[0]
+            raise InputError(
+                argument,
+                f"a {self.what} with known columns; got {shown(head)}",
+                remedy=f"Write '{close}' and its unit in square brackets, or rename what is only a remark",
+                where="row 1",
+            )
+
     def _further(self, label: str) -> Column | None:
         """Return a further column by its exact label, or by the only one that differs in case."""
         if label in self.more:
@@ -209,27 +237,27 @@ class Table:
         dimensionless = c.kind.si in ("", "-", "1")
         f = 1.0
         if unit:
-            f = unit_factor(argument, c.kind, unit, f"column '{c.label}'")
+            f = unit_factor(c.label, c.kind, unit, f"{argument}, row 1")
         types = set(map(type, cells))
         if types == {float} and (unit or dimensionless):
             values: NDArray[np.float64] = np.array(cells, dtype=float)
             if not np.isfinite(values).all():
-                raise InputError(argument, "finite numbers", where=f"column '{c.label}'")
+                i = int(np.flatnonzero(~np.isfinite(values))[0])
+                raise wrong(c.label, "a finite number", cells[i], where=f"{argument}, {data.where(i)}")
             values = values * f
         else:
             values = np.empty(len(cells))
             for i, v in enumerate(cells):
-                values[i] = self._number(argument, c, unit, f, v, data.where(i))
+                values[i] = self._number(argument, c, unit, f, v, f"{argument}, {data.where(i)}")
         self._limited(argument, c, values, data)
         return values
 
-    def _number(self, argument: str, c: Column, unit: str | None, f: float, v: Value, row: str) -> float:
-        place = f"{row}, column '{c.label}'"
+    def _number(self, argument: str, c: Column, unit: str | None, f: float, v: Value, place: str) -> float:
         kind = c.kind
         assert kind is not None
         if v is None or v == "":
             if c.required or not c.blanks:
-                raise wrong(argument, asked(kind), v, where=place)
+                raise wrong(c.label, asked(kind), v, where=place)
             return float("nan")
         if type(v) is float and v - v == 0.0:
             if unit or kind.si in ("", "-", "1"):
@@ -238,14 +266,14 @@ class Table:
                 argument,
                 f"a {self.what} with units; column '{c.label}' has none",
                 remedy=f"Write the header as '{header_of(c)}'",
-                where=row,
+                where=place.removeprefix(f"{argument}, "),
             )
         if type(v) is str and unit:
-            value = quantity(argument, kind, v, place)
+            value = quantity(c.label, kind, v, place)
             if v.strip()[-1] in "0123456789.":  # a number kept as text: in the column's unit
                 value *= f
             return value
-        return quantity(argument, kind, v, place)
+        return quantity(c.label, kind, v, place)
 
     def _limited(self, argument: str, c: Column, values: NDArray[np.float64], data: TableData) -> None:
         if c.limit is None:
@@ -256,9 +284,8 @@ class Table:
         for i in np.flatnonzero(~np.isnan(values)):
             if not c.limit.allows(float(values[i])):
                 assert c.kind is not None
-                check_limit(
-                    argument, c.kind, c.limit, float(values[i]), f"{data.where(int(i))}, column '{c.label}'"
-                )
+                place = f"{argument}, {data.where(int(i))}"
+                check_limit(c.label, c.kind, c.limit, float(values[i]), place)
 
     def _texts(self, argument: str, c: Column, cells: Sequence[Value], data: TableData) -> list[str]:
         out = []
@@ -267,10 +294,10 @@ class Table:
                 v = ""
             if type(v) is float:
                 v = f"{v:.10g}"
-            if type(v) is not str:
-                raise wrong(argument, f"a text in column '{c.label}'", v, where=data.where(i))
-            if c.required and not v.strip():
-                raise wrong(argument, f"a text in column '{c.label}'", v, where=data.where(i))
+            if type(v) is not str or (c.required and not v.strip()):
+                raise wrong(
+                    argument, f"a {self.what} with a text in column '{c.label}'", v, where=data.where(i)
+                )
             out.append(v.strip())
         return out
 
@@ -360,16 +387,16 @@ def entry_value(argument: str, e: Entry, reader: Reader | None, value: Cell, whe
         if word is not None:
             return word
     if reader is None:
-        raise wrong(
-            argument, f"one of {', '.join(repr(w) for w in e.words)} for '{e.label}'", value, where=where
-        )
+        place = f"{argument}, {where}" if where else argument
+        raise wrong(e.label, f"one of the words {', '.join(repr(w) for w in e.words)}", value, where=place)
     try:
         return reader(value)
     except RigidsheetError as refused:
-        place = f"'{e.label}'" + (f", {where}" if where else "")
-        raise type(refused)(
-            refused.argument, refused.rule, refused.value, remedy=refused.remedy, where=place
-        ) from None
+        place = f"{argument}, {where}" if where else argument
+        remedy = refused.remedy
+        if e.words and not remedy:
+            remedy = "Or write " + " or ".join(f"'{w}'" for w in e.words)
+        raise type(refused)(e.label, refused.rule, refused.value, remedy=remedy, where=place) from None
 
 
 def block_lines(argument: str, cell: Block, what: str) -> list[tuple[str, Cell, str]]:
@@ -385,12 +412,14 @@ def block_lines(argument: str, cell: Block, what: str) -> list[tuple[str, Cell, 
             raise InputError(
                 argument, f"a {what} with the label in the first column; got {shown(label)}", where=where
             )
-        label, unit = HEADER.match(label).groups()  # type: ignore[union-attr]
+        label, unit = label_and_unit(label)
         if i == 1 and folded(label) in ("label", "item", "name") and type(row[1]) is str:
             continue
         values = list(row[1 : filled[-1] + 1])
         if not values:
             values = [row[1]]
+        if len(filled) == 3 and filled[1] == 1 and is_unit_text(values[-1]):
+            values = [values[0], values[-1]]  # one number, its unit in the column of units
         if unit:  # 'omega [rpm] | 30': the unit stands with the label
             if len(values) > 1 and is_unit_text(values[-1]):
                 raise InputError(

@@ -36,7 +36,7 @@ def refused(name: str, cells: list[Any], *says: str, error: str = "#VALUE!") -> 
 
 # `argument` must be RULE; got VALUE. Remedy. (where) -- or a whole sentence, then remedy and place.
 FORM = re.compile(
-    r"(`\w+` (must be|holds) \S.*|[A-Z][^`].*)[.?!](\.\.)?( \([^()]*(\([^()]*\)[^()]*)*\))?\Z", re.DOTALL
+    r"(`[\w ]+` (must be|holds) \S.*|[A-Z][^`].*)[.?!](\.\.)?( \([^()]*(\([^()]*\)[^()]*)*\))?\Z", re.DOTALL
 )
 
 
