@@ -231,6 +231,8 @@ class Cases:
         )
 
     def _error(self) -> str:
+        if not any(type(value) is CellError for value in self.run.results.values()):
+            return ""
         errors = self.report.errors()
         if not errors:
             return ""

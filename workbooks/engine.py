@@ -149,12 +149,11 @@ class Formualizer:
 
 def _adapted(function: Callback) -> Callable[..., Any]:
     def called(*values: Any) -> Any:
-        answer = function(
-            *(
-                value if type(value) is float or type(value) is str else _from_engine(value)
-                for value in values
-            )
-        )
-        return answer if type(answer) is float or type(answer) is str else _to_engine(answer)
+        plain = _PLAIN.issuperset(map(type, values))
+        answer = function(*values) if plain else function(*map(_from_engine, values))
+        return answer if type(answer) in _PLAIN else _to_engine(answer)
 
     return called
+
+
+_PLAIN: Final = frozenset({float, str})

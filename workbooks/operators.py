@@ -31,6 +31,14 @@ def rounded(number: float) -> float:
 def compare(sign: Any, left: Any, right: Any) -> Any:
     """Return whether the comparison holds, cell by cell when a block is compared."""
     holds = _HOLDS[sign]
+    if type(left) is float and type(right) is float:
+        if left == right:
+            return holds(0)
+        if abs(left - right) > 1e-14 * max(abs(left), abs(right)):  # more than a step of the 15th digit
+            return holds(-1 if left < right else 1)
+    elif type(left) is str and type(right) is str:
+        a, b = left.casefold(), right.casefold()
+        return holds(-1 if a < b else int(a > b))
     if isinstance(left, list) or isinstance(right, list):
         return _blockwise(lambda a, b: _compared(holds, a, b), left, right)
     return _compared(holds, left, right)
@@ -66,6 +74,8 @@ def _typed(value: Value, other: Value) -> tuple[int, Any]:
 
 def digits(value: Any) -> Any:
     """Return a value as it goes into a text: numbers with 15 significant digits, a blank as no text."""
+    if type(value) is str:
+        return value
     if isinstance(value, list):
         return [[digits(item) for item in row] for row in value]
     if isinstance(value, float):
