@@ -129,7 +129,31 @@ def read_parts(argument: str, data: TableData) -> PartsList:
                 remedy="Add a row with that name as part and 'assembly' as shape",
                 where=data.where(i),
             )
+    reached = _reached(data, groups)
+    for i, g in enumerate(groups):
+        if g not in reached:
+            raise _circular(data, i)
     return _group(data, groups, "", ())
+
+
+def _reached(data: TableData, groups: list[str]) -> set[str]:
+    """Return the sub-assemblies that are placed, through others or not, in the whole, which is ''."""
+    rows = [
+        (folded(data.labels[i]), groups[i])
+        for i, s in enumerate(data.texts("shape"))
+        if folded(s) == ASSEMBLY
+    ]
+    reached, count = {""}, 0
+    while len(reached) > count:
+        count = len(reached)
+        reached |= {name for name, outer in rows if outer in reached}
+    return reached
+
+
+def _circular(data: TableData, i: int) -> InputError:
+    return InputError(
+        "parts", "a parts list whose sub-assemblies do not contain themselves", where=data.where(i)
+    )
 
 
 def _group(data: TableData, groups: list[str], name: str, above: tuple[str, ...]) -> PartsList:
@@ -139,9 +163,7 @@ def _group(data: TableData, groups: list[str], name: str, above: tuple[str, ...]
     def placed(i: int) -> RigidBody:
         own = folded(part.labels[i])
         if own in (*above, name):
-            raise InputError(
-                "parts", "a parts list whose sub-assemblies do not contain themselves", where=part.where(i)
-            )
+            raise _circular(part, i)
         if own not in groups:
             raise InputError(
                 "parts",

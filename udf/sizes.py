@@ -18,6 +18,7 @@ from .cells import Block, Cell
 from .declaration import Reader, Role
 from .kinds import Kind
 from .limits import Limit
+from .memory import remembered
 from .tables import Column, block_lines, label_and_unit
 from .words import hint
 
@@ -125,7 +126,8 @@ class Sizes:
                 _add(argument, out, label, value, where)
             return out
 
-        return read
+        kept = remembered(read)
+        return lambda cell: dict(kept(cell))
 
     def words(self) -> str:
         return "sizes by label: 'OD 114.3 mm; L 520 mm', or rows of label, value, unit"
@@ -140,7 +142,8 @@ def is_header(cell: Block) -> bool:
         len(cell) > 1
         and all(type(c) is str and c.strip() for c in cell[0])
         and all(
-            type(row[0]) is float or (type(row[0]) is str and not is_unit_text(row[0])) for row in cell[1:]
+            row[0] is None or type(row[0]) is float or (type(row[0]) is str and not is_unit_text(row[0]))
+            for row in cell[1:]
         )
     )
 
