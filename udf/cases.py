@@ -14,6 +14,7 @@ from .arguments import is_unit_text, shown, wrong
 from .cells import Block, Cell, Value
 from .declaration import Reader, Role
 from .limits import Limit
+from .memory import remembered
 from .tables import TOTAL, label_and_unit
 from .units import readings
 from .words import one_amount
@@ -42,7 +43,7 @@ class Cases:
                 raise wrong(argument, rule, cell)
             return read_cases(argument, cell)
 
-        return read
+        return remembered(read)
 
     def words(self) -> str:
         return "rows of case name and value"

@@ -14,6 +14,7 @@ from .arguments import Vector, folded, wrong
 from .cells import Cell
 from .declaration import Reader, Role
 from .limits import POSITIVE, Limit
+from .memory import remembered
 from .tables import Column, Table, TableData
 
 Array = NDArray[np.float64]
@@ -67,7 +68,7 @@ class Outline:
                     return OutlineRead(found, {}, np.empty((0, 3)))
             raise wrong(argument, "three or more corners in order, a row of x y each, then the unit", cell)
 
-        return read
+        return remembered(read)
 
     def words(self) -> str:
         return "corners x y in rows [m], or a table loop, x [mm], y [mm], D [mm]"

@@ -26,6 +26,7 @@ from .cells import Block, Cell, Value
 from .declaration import Reader, Role, Shape
 from .kinds import Kind
 from .limits import Limit
+from .memory import remembered
 from .words import hint, nearest
 
 HEADER: Final = re.compile(r"\s*(.*?)\s*(?:\[\s*(.*?)\s*\])?\s*\Z")
@@ -119,7 +120,7 @@ class Table:
                 raise wrong(argument, f"a {self.what}: a header row and rows below it{none}", cell)
             return self._table(argument, cell, known)
 
-        return read
+        return remembered(read)
 
     def _table(self, argument: str, cell: Block, known: Mapping[str, Column]) -> TableData:
         heads = self._heads(argument, cell[0], known)
@@ -371,7 +372,7 @@ class Record:
                 out[e.label] = entry_value(argument, e, readers[e.label], value, where)
             return out if self.finish is None else self.finish(argument, out)
 
-        return read
+        return remembered(read)
 
     def words(self) -> str:
         return f"{self.what}: label, value, unit (" + ", ".join(e.label for e in self.entries[:8]) + ")"
