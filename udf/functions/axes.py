@@ -17,7 +17,7 @@ from ..arguments import Scalar, Tensor, Vector
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..limits import NOT_NEGATIVE, POSITIVE
 from ..working import num, tensor_rows, vec
-from .tensors import DYNAMICS, GROUP, need_vector
+from .tensors import DYNAMICS, GROUP
 
 
 def direction_of(argument: str, axis: Any) -> Any:
@@ -55,7 +55,7 @@ def about_axis(inertia: Any, direction: Any, mass: Any, offset: Any) -> Any:
     if (mass is None) != (offset is None):
         missing = "mass" if mass is None else "offset"
         raise InputError(missing, "given too: the parallel axis needs mass and offset")
-    tensor = inertia if mass is None else shift_from_center(inertia, mass, need_vector(offset))
+    tensor = inertia if mass is None else shift_from_center(inertia, mass, offset)
     return tensors.axis_inertia(tensor, unit)
 
 

@@ -70,9 +70,9 @@ def shifted(inertia: Any, mass: Any, offset: Any) -> Any:
 
 def shifted_back(inertia: Any, mass: Any, offset: Any) -> Any:
     if is_tensor(inertia):
-        if need_vector(offset).ndim != 1 or np.ndim(mass):
-            raise InputError("offset", "one vector and one mass for a tensor; got a column")
-        result = shift_to_center(inertia, mass, offset)
+        if np.ndim(mass):
+            raise InputError("mass", "one mass for a tensor; got a column")
+        result = shift_to_center(inertia, mass, need_vector(offset))
         problem = tensor_problem(result)
         if problem:
             raise PhysicsError("", f"The tensor is too small for this mass and offset: {problem}")
@@ -98,6 +98,8 @@ def need_vector(offset: Any) -> Any:
             "a vector x y z for a tensor; a distance does not tell the direction",
             remedy="Give the offset of the mass center in three cells",
         )
+    if offset.ndim != 1:  # distances in a column lie along x by rule, which says nothing of a direction
+        raise InputError("offset", "one vector for a tensor; a column of distances has no direction")
     return offset
 
 
