@@ -13,156 +13,15 @@ from typing import Any, Final
 from rigidsheet.udf import kinds
 from rigidsheet.udf.limits import AT_LEAST_ONE, FRACTION, NOT_NEGATIVE, POSITIVE
 
+from .bin_tipper_parts import FRUIT, TABLE
 from .kit import Book, Page, Place
-from .kit_parts import Part, PartsTable, parts_table
+from .kit_parts import PartsTable, parts_table
 
 TITLE: Final = "Bin tipper"
 LINE: Final = (
     "Fruit-packing line, Windfall Hollow orchard co-operative: tilting table that tips bins into the flume"
 )
-INPUT_COLUMNS: Final = (2.5, 31.0, 7.0, 13.5, 9.0, 9.5, 8.5, *([7.4] * 9))
-STEEL: Final = 7850.0
-
-TABLE: Final[tuple[Part, ...]] = (
-    {
-        "part": "deck plate",
-        "qty": 1,
-        "shape": "box",
-        "density": STEEL,
-        "L": 1300,
-        "W": 6,
-        "H": 1100,
-        "x": 655,
-        "y": 63,
-        "z": 0,
-    },
-    {
-        "part": "cut-out in the deck",
-        "qty": -1,
-        "shape": "box",
-        "density": STEEL,
-        "L": 520,
-        "W": 6,
-        "H": 700,
-        "x": 690,
-        "y": 63,
-        "z": 0,
-    },
-    {
-        "part": "side rail, drive side",
-        "qty": 1,
-        "shape": "hollow box",
-        "density": STEEL,
-        "L": 1320,
-        "W": 100,
-        "H": 50,
-        "t": 4,
-        "x": 660,
-        "y": 10,
-        "z": -430,
-    },
-    {
-        "part": "side rail, far side",
-        "qty": 1,
-        "shape": "hollow box",
-        "density": STEEL,
-        "L": 1320,
-        "W": 100,
-        "H": 50,
-        "t": 4,
-        "x": 660,
-        "y": 10,
-        "z": 430,
-    },
-    {
-        "part": "hinge tube",
-        "qty": 1,
-        "shape": "tube",
-        "density": STEEL,
-        "L": 1180,
-        "OD": 76.1,
-        "ID": 60.3,
-        "x": 0,
-        "y": 0,
-        "z": 0,
-    },
-    {
-        "part": "fence plate",
-        "qty": 1,
-        "shape": "box",
-        "density": STEEL,
-        "L": 5,
-        "W": 640,
-        "H": 900,
-        "x": 60,
-        "y": 386,
-        "z": 0,
-    },
-    {
-        "part": "brace, turned",
-        "qty": 1,
-        "shape": "hollow box",
-        "density": STEEL,
-        "L": 330,
-        "W": 60,
-        "H": 40,
-        "t": 3,
-        "x": -70,
-        "y": 190,
-        "z": -430,
-        "turn z": 62,
-    },
-    {
-        "part": "drive lever",
-        "qty": 1,
-        "shape": "box",
-        "density": STEEL,
-        "L": 470,
-        "W": 110,
-        "H": 20,
-        "x": 200,
-        "y": -35,
-        "z": -480,
-        "turn z": -9,
-    },
-    {
-        "part": "hold-down bar",
-        "qty": 1,
-        "shape": "box",
-        "mass": 14.5,
-        "L": 60,
-        "W": 60,
-        "H": 1040,
-        "x": 1180,
-        "y": 862,
-        "z": 0,
-    },
-    {
-        "part": "bin, empty",
-        "qty": 1,
-        "shape": "closed hollow box",
-        "mass": 42,
-        "L": 1200,
-        "W": 760,
-        "H": 1000,
-        "t": 25,
-        "x": 680,
-        "y": 447,
-        "z": 0,
-    },
-)
-FRUIT: Final[Part] = {
-    "part": "fruit",
-    "qty": 1,
-    "shape": "box",
-    "mass": 385,
-    "L": 1130,
-    "W": 620,
-    "H": 930,
-    "x": 680,
-    "y": 400,
-    "z": 45,
-}
+INPUT_COLUMNS: Final = (2.5, 31.0, 7.0, 13.5, 9.0, 10.5, 8.5, *([7.3] * 9))
 FREE_ROWS: Final = 2
 
 
@@ -237,14 +96,15 @@ def write(path: Path, blank: bool) -> None:
     """Write the workbook; with `blank` the cells that a person fills in are empty."""
     from . import bin_tipper_checks as checks
     from . import bin_tipper_position as positions
-    from . import bin_tipper_sheets as sheets
     from . import bin_tipper_sketch as sketches
+    from . import bin_tipper_tables as tables
+    from . import bin_tipper_working as sheet
 
     book = Book(TITLE, LINE, blank)
     given, page = inputs(book)
-    work = sheets.working(book, given)
-    tilt = sheets.tilt_table(book, given, work)
-    hinges = sheets.hinge_table(book, given, work, tilt)
+    work = sheet.working(book, given)
+    tilt = tables.tilt_table(book, given, work)
+    hinges = tables.hinge_table(book, given, work, tilt)
     looked = positions.position(book, given, work, tilt, hinges)
     checks.checks(book, given, work, tilt, hinges, looked.gaps)
     sketches.sketch(book, given, work, tilt, looked, page, row=7)
@@ -279,11 +139,13 @@ def inputs(book: Book) -> tuple[Inputs, Page]:
     page.section("Assumptions")
     page.prose(
         (
-            "Rigid table and frame; hinge friction is left out. The speed rises and falls evenly in time (constant acceleration).",
-            "Pouring fruit leaves evenly over the tilt between the two angles; what stays keeps its mass center. Stuck fruit stays to the end.",
+            "Rigid table and frame; hinge friction is left out. Speed rises and falls evenly in time.",
+            "Pouring fruit leaves evenly over the tilt; what stays keeps its mass center. Stuck fruit stays to the end.",
             "An emergency stop takes the full speed off evenly, and may act at any tilt, both ways.",
-            "The gearbox turns the hinge shaft with a couple; its torque arm puts no side load on the hinges. The cylinder's own mass is left out.",
-            "Each hinge carries its share by the places of mass and drive along the hinge axis, then the allowance for uneven bearing.",
+            "The gearbox turns the hinge shaft with a couple and puts no side load on the hinges. "
+            "The cylinder's own mass is left out.",
+            "Each hinge takes its share by the places of masses and drive along the hinge, "
+            "then the allowance for uneven bearing.",
         )
     )
     page.cautions()

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Final
 
 from .bin_tipper import CASES, Inputs
-from .bin_tipper_sheets import (
+from .bin_tipper_tables import (
     ARM,
     EFFORT,
     ENERGY,
@@ -18,12 +18,12 @@ from .bin_tipper_sheets import (
     TILT,
     TORQUE,
     Table,
-    Work,
 )
+from .bin_tipper_working import Work
 from .kit import Book, Page
 from .kit_charts import LINES, Curve, line_chart
 from .kit_checks import COLUMNS as CHECK_COLUMNS
-from .kit_checks import Check, Checks
+from .kit_checks import CaseTable, Check, Checks
 
 ENERGY_TOLERANCE: Final = 0.005  # of the largest energy over the tilt: what a sum of trapezoids leaves
 LARGEST_STEP: Final = 3.0  # deg, so that no peak falls between two rows
@@ -40,7 +40,12 @@ def checks(book: Book, given: Inputs, work: Work, tilt: Table, hinges: Table, ga
     cases = _load_cases(book, page, given, tilt, hinges)
     page.section("Checks")
     table = Checks(book, page, "at tilt [deg]")
-    for check in _checks(book, page, given, work, tilt, hinges, cases, gaps):
+    for check in (
+        *_gearbox(given, work, cases),
+        *_cylinder(given, tilt, cases),
+        *_hinges(given, cases),
+        *_calculation(given, work, tilt, gaps),
+    ):
         table.add(check)
     sentence = table.end()
     book.name("verdict", page.at(2, head))
@@ -79,204 +84,114 @@ def checks(book: Book, given: Inputs, work: Work, tilt: Table, hinges: Table, ga
     page.row = anchor + 36
 
 
-CASE_VALUES = ("torque", "effort", "hinge_1", "hinge_2")
+# Columns of the table of load cases; the tilt of each value stands right of it.
+TORQUE_AT, MOST_AT, LEAST_AT, HINGE_1_AT, HINGE_2_AT = 4, 6, 8, 10, 12
 
 
-def _load_cases(
-    book: Book, page: Page, given: Inputs, tilt: Table, hinges: Table
-) -> dict[str, tuple[str, str]]:
-    """Write the largest values of each case; give (range for RB_ENVELOPE, range of tilts) of each value."""
-    effort = f'=IF({given.by_cylinder},"Cylinder force [N]","Motor torque [N*m]")'
-    heads = (
-        "Load case",
-        "Fruit in the bin",
-        "Drive torque [N*m]",
-        "at tilt [deg]",
-        effort,
-        "at tilt [deg]",
-        "Hinge 1 [N]",
-        "at tilt [deg]",
-        "Hinge 2 [N]",
-        "at tilt [deg]",
-    )
-    for column, word in enumerate(heads, 2):
-        page.put(column, word, "RS head")
-    page.put(12, None, "RS head")
-    page.sheet.row_dimensions[page.row].height = 36.0
-    page.row += 1
-    top = page.row
+def _load_cases(book: Book, page: Page, given: Inputs, tilt: Table, hinges: Table) -> CaseTable:
+    """Write the largest values of each load case and where over the tilt they come."""
+    word = f'IF({given.by_cylinder},"Cylinder, ","Motor, ")'
+    unit = f'IF({given.by_cylinder}," [N]"," [N*m]")'
+    at = "at tilt [deg]"
+    most, least = (f'={word}&"{side}"&{unit}' for side in ("largest", "smallest"))
+    heads = ("Load case", "Fruit in the bin", "Drive torque [N*m]", at, most, at, least, at)
+    table = CaseTable(book, page, (*heads, "Hinge 1 [N]", at, "Hinge 2 [N]", at))
     for k, case in enumerate(CASES):
-        fruit = "all, to the end" if case.stuck else ("pours out" if case.pours else "none")
-        page.put(2, case.name, "RS text")
-        page.put(3, fruit, "RS text")
-        for i, (table, start) in enumerate(
-            ((tilt, TORQUE), (hinges, EFFORT), (hinges, HINGE_1), (hinges, HINGE_2))
+        values: list[tuple[str, str]] = []
+        for source, start, what in (
+            (tilt, TORQUE, "either"),
+            (hinges, EFFORT, "MAX"),
+            (hinges, EFFORT, "MIN"),
+            (hinges, HINGE_1, "MAX"),
+            (hinges, HINGE_2, "MAX"),
         ):
-            values, tilts = table.column(start + k), table.column(TILT)
-            largest = f"IF(MAX({values})>=-MIN({values}),MAX({values}),MIN({values}))"
-            column = 4 + 2 * i
-            form = "#,##0.0" if i == 1 else "#,##0;-#,##0"
-            page.put(column, book.guarded(largest), "RS value", form=form)
-            at = f"INDEX({tilts},MATCH({page.at(column)},{values},0))"
-            page.put(column + 1, book.guarded(at), "RS value", form="0.0")
-        page.row += 1
-    last = page.row - 1
-    return {
-        name: (page.span((top, 2), (last, 4 + 2 * i)), page.span((top, 5 + 2 * i), (last, 5 + 2 * i)))
-        for i, name in enumerate(CASE_VALUES)
-    }
-
-
-def _checks(
-    book: Book,
-    page: Page,
-    given: Inputs,
-    work: Work,
-    tilt: Table,
-    hinges: Table,
-    cases: dict[str, tuple[str, str]],
-    gaps: str,
-) -> list[Check]:
-    c, g = given.cylinder, given.gearbox
-    cylinder, gearbox = given.by_cylinder, given.by_gearbox
-    drive, pins = given.factor_drive.si, given.factor_pins.si
-
-    def governing(value: str) -> dict[str, str]:
-        names, tilts = cases[value]
-        name = f'RB_ENVELOPE({names},"governing")'
-        first = names.partition(":")[0] + ":" + "$B$" + names.rpartition("$")[2]
-        return {"case": name, "at": f"INDEX({tilts},MATCH({name},{first},0))"}
-
-    def size(value: str, si: str, unit: str) -> str:
-        return f'RB_ENVELOPE({cases[value][0]},"magnitude")*RB_CONVERT("1 {si}",{unit})'
-
-    def side(function: str) -> str:
-        ranges = [hinges.column(EFFORT + k) for k in range(len(CASES))]
-        return f"{function}({','.join(ranges)})"
-
-    uneven = given.unevenness.si
-    made = [
-        Check(
-            "Gearbox: torque at the hinge",
-            size("torque", "N*m", g["gear_rating"].unit),
-            g["gear_rating"].unit,
-            g["gear_rating"].ref,
-            "gearbox_torque",
-            drive,
-            when=gearbox,
-            **governing("torque"),
-        ),
-        Check(
-            "Motor: torque",
-            size("effort", "N*m", g["motor_rating"].unit),
-            g["motor_rating"].unit,
-            g["motor_rating"].ref,
-            "motor_torque",
-            drive,
-            when=gearbox,
-            **governing("effort"),
-        ),
-        Check(
-            "Motor: speed",
-            f'{work.speed.si}*{g["ratio"].si}*RB_CONVERT("1 rad/s",{g["motor_speed"].unit})',
-            g["motor_speed"].unit,
-            g["motor_speed"].ref,
-            "motor_speed",
-            when=gearbox,
-        ),
-        Check(
-            "Cylinder: push",
-            f'MAX(0,{side("MAX")})*RB_CONVERT("1 N",{c["push_rating"].unit})',
-            c["push_rating"].unit,
-            c["push_rating"].ref,
-            "push",
-            drive,
-            when=cylinder,
-        ),
-        Check(
-            "Cylinder: pull",
-            f'MAX(0,-{side("MIN")})*RB_CONVERT("1 N",{c["pull_rating"].unit})',
-            c["pull_rating"].unit,
-            c["pull_rating"].ref,
-            "pull",
-            drive,
-            when=cylinder,
-        ),
-        Check(
-            "Cylinder: shortest length",
-            f'MIN({tilt.column(LENGTH)})*RB_CONVERT("1 m",{c["closed_length"].unit})',
-            c["closed_length"].unit,
-            c["closed_length"].ref,
-            "shortest",
-            sense="at least",
-            when=cylinder,
-        ),
-        Check(
-            "Cylinder: longest length",
-            f'MAX({tilt.column(LENGTH)})*RB_CONVERT("1 m",{c["open_length"].unit})',
-            c["open_length"].unit,
-            c["open_length"].ref,
-            "longest",
-            when=cylinder,
-        ),
-        Check(
-            "Cylinder: smallest arm",
-            f'MAX(0,MIN({tilt.column(ARM)}))*RB_CONVERT("1 m",{c["least_arm"].unit})',
-            c["least_arm"].unit,
-            c["least_arm"].ref,
-            "arm",
-            sense="at least",
-            when=cylinder,
-        ),
-    ]
-    for n in ("1", "2"):
-        demand = f"{uneven}*{size(f'hinge_{n}', 'N', given.pin_rating.unit)}"
-        made.append(
-            Check(
-                f"Hinge {n}: bearing load, with allowance",
-                demand,
-                given.pin_rating.unit,
-                given.pin_rating.ref,
-                f"hinge_{n}",
-                pins,
-                **governing(f"hinge_{n}"),
+            cells, here = source.column(start + k), page.at(4 + len(values))
+            either = f"IF(MAX({cells})>=-MIN({cells}),MAX({cells}),MIN({cells}))"
+            values.append(
+                (
+                    either if what == "either" else f"{what}({cells})",
+                    "#,##0.0" if start == EFFORT else "#,##0",
+                )
             )
-        )
-    energy, gap = tilt.column(ENERGY), tilt.column(GAP)
-    largest = f"MAX(MAX({energy}),-MIN({energy}))"
-    steps = (
-        f"MAX(({given.tilt_end.si}-2*{work.ramp_angle.si})/{STEADY_STEPS},{work.ramp_angle.si}/{RAMP_STEPS})"
-    )
-    made += [
-        Check(
-            "Work of the drive against energy: gap",
-            f"MAX(MAX({gap}),-MIN({gap}))",
-            '"J"',
-            f"{ENERGY_TOLERANCE}*{largest}",
-            "energy",
-            plain=True,
+            values.append((f"INDEX({source.column(TILT)},MATCH({here},{cells},0))", "0.0"))
+        fruit = "all, to the end" if case.stuck else ("pours out" if case.pours else "none")
+        table.add(case.name, fruit, values)
+    return table
+
+
+def _governing(cases: CaseTable, column: int, what: str = "governing") -> dict[str, str]:
+    return {"case": cases.envelope(column, what), "at": cases.beside(column, what, column + 1)}
+
+
+def _gearbox(given: Inputs, work: Work, cases: CaseTable) -> list[Check]:
+    g, factor = given.gearbox, given.factor_drive.si
+    most, least = cases.envelope(MOST_AT, "largest"), cases.envelope(LEAST_AT, "smallest")
+    sides = _governing(cases, MOST_AT, "largest case"), _governing(cases, LEAST_AT, "smallest case")
+    either = {key: f"IF({most}>=-{least},{sides[0][key]},{sides[1][key]})" for key in ("case", "at")}
+    turns = f"{work.speed.si}*{g['ratio'].si}"
+    torque = cases.envelope(TORQUE_AT, "magnitude")
+    rest = {"required": factor, "when": given.by_gearbox}
+    return [
+        Check.against(
+            "Gearbox: torque at the hinge", torque, "N*m", g["gear_rating"], "gearbox_torque",
+            **rest, **_governing(cases, TORQUE_AT),
         ),
+        Check.against(
+            "Motor: torque", f"MAX({most},-{least})", "N*m", g["motor_rating"], "motor_torque", **rest, **either
+        ),
+        Check.against("Motor: speed", turns, "rad/s", g["motor_speed"], "motor_speed", when=given.by_gearbox),
+    ]  # fmt: skip
+
+
+def _cylinder(given: Inputs, tilt: Table, cases: CaseTable) -> list[Check]:
+    c, when = given.cylinder, given.by_cylinder
+    push, pull = cases.envelope(MOST_AT, "largest"), cases.envelope(LEAST_AT, "smallest")
+    length, arm = tilt.column(LENGTH), tilt.column(ARM)
+    rest = {"required": given.factor_drive.si, "when": when}
+    return [
+        Check.against(
+            "Cylinder: push", f"MAX(0,{push})", "N", c["push_rating"], "push",
+            **rest, **_governing(cases, MOST_AT, "largest case"),
+        ),
+        Check.against(
+            "Cylinder: pull", f"MAX(0,-{pull})", "N", c["pull_rating"], "pull",
+            **rest, **_governing(cases, LEAST_AT, "smallest case"),
+        ),
+        Check.against(
+            "Cylinder: shortest length", f"MIN({length})", "m", c["closed_length"], "shortest",
+            when=when, sense="at least",
+        ),
+        Check.against("Cylinder: longest length", f"MAX({length})", "m", c["open_length"], "longest", when=when),
+        Check.against(
+            "Cylinder: smallest arm", f"MAX(0,MIN({arm}))", "m", c["least_arm"], "arm", when=when, sense="at least"
+        ),
+    ]  # fmt: skip
+
+
+def _hinges(given: Inputs, cases: CaseTable) -> list[Check]:
+    made = []
+    for n, column in (("1", HINGE_1_AT), ("2", HINGE_2_AT)):
+        load = f"{given.unevenness.si}*{cases.envelope(column, 'magnitude')}"
+        rest = {"required": given.factor_pins.si, **_governing(cases, column)}
+        label = f"Hinge {n}: bearing load, with allowance"
+        made.append(Check.against(label, load, "N", given.pin_rating, f"hinge_{n}", **rest))
+    return made
+
+
+def _calculation(given: Inputs, work: Work, tilt: Table, gaps: str) -> list[Check]:
+    """Return the checks of the calculation itself."""
+    energy, gap = tilt.column(ENERGY), tilt.column(GAP)
+    allowed = f"{ENERGY_TOLERANCE}*MAX(MAX({energy}),-MIN({energy}))"
+    end, ramp = given.tilt_end.si, work.ramp_angle.si
+    step = f"DEGREES(MAX(({end}-2*{ramp})/{STEADY_STEPS},{ramp}/{RAMP_STEPS}))"
+    largest = f"MAX(MAX({gap}),-MIN({gap}))"
+    ramps, look = f"2*{given.ramp_time.si}", given.look_tilt.si
+    return [
+        Check("Work of the drive against energy: gap", largest, '"J"', allowed, "energy", plain=True),
         Check(
             "Tables against the functions: gap", f"100*MAX({gaps})", '"%"', "0.001", "agreement", plain=True
         ),
-        Check(
-            "Largest step of the tables", f"DEGREES({steps})", '"deg"', f"{LARGEST_STEP}", "step", plain=True
-        ),
-        Check(
-            "Speeding up and slowing down fit",
-            f'2*{given.ramp_time.si}*RB_CONVERT("1 s",{given.tilt_time.unit})',
-            given.tilt_time.unit,
-            given.tilt_time.ref,
-            "ramps",
-            plain=True,
-        ),
-        Check(
-            "Position looked at: within the tilt",
-            f'{given.look_tilt.si}*RB_CONVERT("1 rad",{given.tilt_end.unit})',
-            given.tilt_end.unit,
-            given.tilt_end.ref,
-            "look",
-            plain=True,
-        ),
+        Check("Largest step of the tables", step, '"deg"', f"{LARGEST_STEP}", "step", plain=True),
+        Check.against("Speeding up and slowing down fit", ramps, "s", given.tilt_time, "ramps", plain=True),
+        Check.against("Position looked at: within the tilt", look, "rad", given.tilt_end, "look", plain=True),
     ]
-    return made

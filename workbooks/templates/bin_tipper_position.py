@@ -5,14 +5,16 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from .bin_tipper import CASES, WHOLE, Inputs
-from .bin_tipper_sheets import ACCELERATION, EFFORT, HINGE_1, HINGE_2, SPEED, TILT, TORQUE, Table, Work
+from .bin_tipper_tables import ACCELERATION, EFFORT, HINGE_1, HINGE_2, SPEED, TILT, TORQUE, Table
+from .bin_tipper_working import Work
 from .kit import Book, Page
 from .kit_look import LEFT
 
 TERMS = ("Ixx", "Iyy", "Izz", "Ixy", "Iyz", "Izx")
 SUPPORT_HEADS = (
-    "support", "type", "x [m]", "y [m]", "z [m]", "along x", "along y", "along z", "to x [m]", "to y [m]", "to z [m]", "holds",
-)  # fmt: skip
+    *("support", "type", "x [m]", "y [m]", "z [m]", "along x", "along y", "along z"),
+    *("to x [m]", "to y [m]", "to z [m]", "holds"),
+)
 STEPS = {"RB_DRIVE_TORQUE": 7, "RB_REACTIONS_3D": 12}
 
 

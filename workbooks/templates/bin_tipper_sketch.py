@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from .bin_tipper import Inputs
 from .bin_tipper_position import Looked
-from .bin_tipper_sheets import ALONG_X, ALONG_Y, Table, Work
+from .bin_tipper_tables import ALONG_X, ALONG_Y, Table
+from .bin_tipper_working import Work
 from .kit import Book, Page
 from .kit_charts import sketch_chart
 from .kit_look import INK, RULE, SOFT
@@ -35,9 +36,16 @@ def sketch(book: Book, given: Inputs, work: Work, tilt: Table, looked: Looked, p
     points.add("sweep", arc, dash="sysDash", width=0.75, color=SOFT)
     _marks(points, work, phi)
     _forces(points, given, tilt, looked, phi, reach)
-    sketch_chart(page, f"J{row}", points.curves, width=103.0, title="Position looked at")
-    key = f'"Mass center: ○ with all fruit, ◇ with the empty bin. Dashed arc: radius "&ROUND(1000*{reach},0)&" mm."'
-    page.put(10, book.guarded(key), "RS note", row=row + 18)
+    sketch_chart(
+        page,
+        f"J{row}",
+        points.curves,
+        width=103.0,
+        title="Position looked at",
+        window=(-0.9, 1.05, -0.65, 1.05),
+    )
+    key = f'"Mass center: ● all fruit, ◆ empty bin. Arc: "&ROUND(1000*{reach},0)&" mm."'
+    page.put(10, book.guarded(key), "RS note", row=row + 20)
 
 
 def _outlines(points: Points, given: Inputs, phi: str) -> None:
@@ -101,7 +109,8 @@ def _forces(points: Points, given: Inputs, tilt: Table, looked: Looked, phi: str
     for name, tail, (fx, fy), color, amount in forces:
         points.arrow(name, tail, (f"({fx})*{scale}", f"({fy})*{scale}"), color=color)
         tip = (f"({tail[0]})+({fx})*{scale}", f"({tail[1]})+({fy})*{scale}")
-        points.label(f'"{name} "&ROUND({amount},0)&" N"', tip, color=color)
+        side = "l" if name == "hinges" else "r"
+        points.label(f'"{name} "&ROUND({amount},0)&" N"', tip, color=color, side=side)
     along = [f"IF({cylinder},{tilt.cell(column, row)},0)" for column in (ALONG_X, ALONG_Y)]
     points.arrow(
         "drive force", (x, y), (f"{effort}*{along[0]}*{scale}", f"{effort}*{along[1]}*{scale}"), color=RULE

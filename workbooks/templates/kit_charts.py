@@ -55,6 +55,7 @@ class Curve:
     marker: str = ""
     size: int = 6
     label: str = ""  # cell like Inputs!$R$6 whose text stands beside the first point
+    side: str = "r"  # of the point: r, l, t, b
 
 
 def _text(size: float, *, bold: bool = False, color: str = INK) -> CharacterProperties:
@@ -97,11 +98,11 @@ def _series(curve: Curve) -> Series:
     series.marker = Marker(symbol=curve.marker or "none")
     if curve.marker:
         series.marker.size = curve.size
-        series.marker.graphicalProperties = GraphicalProperties(solidFill="FFFFFF")
-        series.marker.graphicalProperties.line = _line("solid", 1.25, curve.color)
+        series.marker.graphicalProperties = GraphicalProperties(solidFill=curve.color)
+        series.marker.graphicalProperties.line = _line("solid", 0.75, curve.color)
     if curve.label:
         series.tx = SeriesLabel(strRef=StrRef(curve.label))
-        series.dLbls = DataLabelList(dLblPos="r", showSerName=True, showVal=False)
+        series.dLbls = DataLabelList(dLblPos=curve.side, showSerName=True, showVal=False)
         series.dLbls.showCatName = series.dLbls.showLegendKey = series.dLbls.showPercent = False
         series.dLbls.txPr = _rich(8, color=curve.color)
     return series

@@ -1,17 +1,23 @@
-"""Checks of a working sheet: demand against capacity with the factor that is required, and the verdict."""
+"""Load cases and checks of a working sheet.
+
+`CaseTable` holds one row a load case with what is largest in it; RB_ENVELOPE says which case governs a column.
+`Checks` is the table of demand against capacity with required and actual factor, margin and verdict.
+"""
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any, Final
 
 from openpyxl.formatting.rule import CellIsRule
 from openpyxl.styles import Font, PatternFill
 
-from .kit import Book, Page
+from .kit import Book, Page, Place
 
-COLUMNS: Final = (2.5, 37.0, 25.0, 9.0, 11.0, 8.5, 11.0, 8.5, 9.0, 9.0, 9.0, 9.0)
-CASE, AT, DEMAND, DEMAND_UNIT, CAPACITY, CAPACITY_UNIT, REQUIRED, FACTOR, MARGIN, VERDICT = range(3, 13)
+COLUMNS: Final = (2.5, 34.0, 22.0, 8.5, 11.0, 8.5, 11.0, 8.5, 9.0, 9.0, 9.0, 9.0, 9.5)
+CASE, AT, DEMAND, DEMAND_UNIT, CAPACITY, CAPACITY_UNIT, REQUIRED, FACTOR, USED, MARGIN, VERDICT = range(3, 14)
+SHOWN: Final = ((FACTOR, "factor", "0.00"), (USED, "utilization", "0%"), (MARGIN, "margin", "+0%;-0%;0%"))
 
 
 @dataclass(frozen=True, slots=True)
@@ -34,6 +40,44 @@ class Check:
     when: str = ""
     plain: bool = False  # a check of the calculation itself: no factor and no margin to show
 
+    @classmethod
+    def against(cls, label: str, demand: str, si: str, capacity: Place, name: str, **rest: Any) -> Check:
+        """Return the check of a demand in SI against a capacity that was entered, in the unit of that."""
+        shown = f'({demand})*RB_CONVERT("1 {si}",{capacity.unit})'
+        return cls(label, shown, capacity.unit, capacity.ref, name, **rest)
+
+
+class CaseTable:
+    """Load cases by name with their values in columns; the first column after the names may hold a text."""
+
+    def __init__(self, book: Book, page: Page, heads: Sequence[str], height: float = 36.0) -> None:
+        self.book, self.page = book, page
+        for column in range(2, page.columns + 1):
+            page.put(column, heads[column - 2] if column - 2 < len(heads) else None, "RS head")
+        page.sheet.row_dimensions[page.row].height = height
+        page.row += 1
+        self.first = self.last = page.row
+
+    def add(self, name: str, text: str, values: Sequence[tuple[str, str]]) -> None:
+        """Write a case: its name, a text, and formulas with their number formats."""
+        page = self.page
+        page.put(2, name, "RS text")
+        page.put(3, text, "RS text")
+        for column, (formula, form) in enumerate(values, 4):
+            page.put(column, self.book.guarded(formula), "RS value", form=form)
+        self.last = page.row
+        page.row += 1
+
+    def envelope(self, column: int, what: str) -> str:
+        """Return RB_ENVELOPE of a column as formula text: "magnitude", "governing", "largest case", ..."""
+        return f'RB_ENVELOPE({self.page.span((self.first, 2), (self.last, column))},"{what}")'
+
+    def beside(self, column: int, what: str, wanted: int) -> str:
+        """Return what stands in another column for the case that RB_ENVELOPE names."""
+        cells = self.page.span((self.first, wanted), (self.last, wanted))
+        names = self.page.span((self.first, 2), (self.last, 2))
+        return f"INDEX({cells},MATCH({self.envelope(column, what)},{names},0))"
+
 
 class Checks:
     """The table of checks on a page."""
@@ -42,7 +86,7 @@ class Checks:
         self.book, self.page = book, page
         self.first = page.row + 1
         words = ("Check", "Governing case", at, "Demand", "Unit", "Capacity", "Unit", "Required factor")
-        for column, word in enumerate((*words, "Actual factor", "Margin", "Verdict"), 2):
+        for column, word in enumerate((*words, "Actual factor", "Used", "Margin", "Verdict"), 2):
             page.put(column, word, "RS head")
         page.sheet.row_dimensions[page.row].height = 25.0
         page.row += 1
@@ -72,7 +116,7 @@ class Checks:
         page.sheet.cell(row, REQUIRED).number_format = "0.00;;" if check.plain else "0.00"
         pair = f"{demand},{capacity}" if check.sense == "at most" else f"{capacity},{demand}"
         tested = page.at(DEMAND)
-        for column, what, form in ((FACTOR, "factor", "0.00"), (MARGIN, "margin", "+0%;-0%;0%")):
+        for column, what, form in SHOWN:
             if check.plain:
                 page.put(column, None, "RS value")
                 continue

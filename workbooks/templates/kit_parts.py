@@ -32,7 +32,13 @@ COLUMNS: Final = (
     ("z", kinds.LENGTH, "mm"),
     ("turn z", kinds.ANGLE, "deg"),
 )
+Labelled = tuple[str, Kind | None, str]
 Part = Mapping[str, Any]
+
+
+def turned_about(axis: str) -> tuple[Labelled, ...]:
+    """Return the columns for parts that are turned about this axis of the sheet."""
+    return tuple((f"turn {axis}" if name == "turn z" else name, *rest) for name, *rest in COLUMNS)  # type: ignore[misc]
 
 
 @dataclass(frozen=True, slots=True)
