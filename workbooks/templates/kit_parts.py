@@ -9,13 +9,15 @@ from typing import Any, Final
 from openpyxl.utils import get_column_letter
 
 from rigidsheet.udf import kinds
+from rigidsheet.udf.kinds import Kind
 from rigidsheet.udf.limits import POSITIVE
 
 from .kit import Page
 from .kit_look import MARK
 
+Labels = tuple[tuple[str, Kind | None, str], ...]
 # Label of the column, its kind (None: text or count), and the unit it starts with.
-COLUMNS: Final = (
+COLUMNS: Final[Labels] = (
     ("part", None, ""),
     ("qty", None, ""),
     ("shape", None, ""),
@@ -32,13 +34,12 @@ COLUMNS: Final = (
     ("z", kinds.LENGTH, "mm"),
     ("turn z", kinds.ANGLE, "deg"),
 )
-Labelled = tuple[str, Kind | None, str]
 Part = Mapping[str, Any]
 
 
-def turned_about(axis: str) -> tuple[Labelled, ...]:
-    """Return the columns for parts that are turned about this axis of the sheet."""
-    return tuple((f"turn {axis}" if name == "turn z" else name, *rest) for name, *rest in COLUMNS)  # type: ignore[misc]
+def turned_about(axis: str) -> Labels:
+    """Return the columns for parts that lie turned about another axis of the sheet."""
+    return (*COLUMNS[:-1], (f"turn {axis}", kinds.ANGLE, "deg"))
 
 
 @dataclass(frozen=True, slots=True)
@@ -49,10 +50,11 @@ class PartsTable:
     head: int
     first: int
     last: int
+    columns: Labels = COLUMNS
 
     def through(self, row: int) -> str:
         """Return the range from the labels down to a row."""
-        return self.page.span((self.head, 2), (row, 1 + len(COLUMNS)))
+        return self.page.span((self.head, 2), (row, 1 + len(self.columns)))
 
     def cell(self, label: str, row: int) -> str:
         """Return the cell of a part under a label."""
@@ -60,20 +62,19 @@ class PartsTable:
 
     def si(self, label: str, row: int) -> str:
         """Return the formula text of a number of a part in SI; a blank counts as zero."""
-        kind = next(kind for name, kind, _ in COLUMNS if name == label)
+        kind = next(kind for name, kind, _ in self.columns if name == label)
         assert kind is not None
         return f'N({self.cell(label, row)})*RB_CONVERT("1 "&{self.cell(label, self.head + 1)},"{kind.si}")'
 
-    @staticmethod
-    def _column(label: str) -> int:
-        return 2 + [name for name, _, _ in COLUMNS].index(label)
+    def _column(self, label: str) -> int:
+        return 2 + [name for name, _, _ in self.columns].index(label)
 
 
-def parts_table(page: Page, parts: Sequence[Part | None]) -> PartsTable:
+def parts_table(page: Page, parts: Sequence[Part | None], columns: Labels = COLUMNS) -> PartsTable:
     """Write a parts list; None is a row left free for a further part."""
     head = page.row
     sheet, blank = page.sheet, page.book.blank
-    for column, (label, kind, unit) in enumerate(COLUMNS, 2):
+    for column, (label, kind, unit) in enumerate(columns, 2):
         page.put(column, label, "RS head")
         page.put(column, unit or None, "RS unit" if kind is not None else "RS unit fixed", row=head + 1)
         if kind is not None:
@@ -82,12 +83,12 @@ def parts_table(page: Page, parts: Sequence[Part | None]) -> PartsTable:
     for row, part in enumerate(parts, head + 2):
         sheet.row_dimensions[row].height = 13.5
         page.put(1, MARK, "RS mark", row=row)
-        for column, (label, _, _) in enumerate(COLUMNS, 2):
+        for column, (label, _, _) in enumerate(columns, 2):
             value = None if blank or part is None else part.get(label)
             page.put(column, value, "RS entry text" if label in ("part", "shape") else "RS entry", row=row)
     last = head + 1 + len(parts)
     for label, kind in (("mass", kinds.MASS), ("density", kinds.DENSITY)):
-        letter = get_column_letter(2 + [name for name, _, _ in COLUMNS].index(label))
+        letter = get_column_letter(2 + [name for name, _, _ in columns].index(label))
         page.limited(f"{letter}{head + 2}:{letter}{last}", label, kind, POSITIVE)
     page.row = last + 1
-    return PartsTable(page, head, head + 2, last)
+    return PartsTable(page, head, head + 2, last, columns)
