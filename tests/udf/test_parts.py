@@ -1,4 +1,4 @@
-"""The parts list: cut-outs, patterns, turns, datum, measured parts, sub-assemblies; each against point masses or handbook terms."""
+"""The parts list: cut-outs, patterns, turns, datum, measured parts, sub-assemblies, against definitions."""
 
 from __future__ import annotations
 
