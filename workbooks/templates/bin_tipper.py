@@ -140,7 +140,7 @@ def inputs(book: Book) -> tuple[Inputs, Page]:
     page.prose(
         (
             "Rigid table and frame; hinge friction is left out. Speed rises and falls evenly in time.",
-            "Pouring fruit leaves evenly over the tilt; what stays keeps its mass center. Stuck fruit stays to the end.",
+            "Pouring fruit leaves evenly over the tilt; what stays keeps its mass center. Stuck fruit stays for good.",
             "An emergency stop takes the full speed off evenly, and may act at any tilt, both ways.",
             "The gearbox turns the hinge shaft with a couple and puts no side load on the hinges. "
             "The cylinder's own mass is left out.",

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from math import cos, pi, sin
+
 from .bin_tipper import Inputs
 from .bin_tipper_position import Looked
 from .bin_tipper_tables import ALONG_X, ALONG_Y, Table
@@ -17,64 +19,74 @@ LOWEST = 0.6  # the sketch reaches so far below the hinge, as a part of the reac
 
 def sketch(book: Book, given: Inputs, work: Work, tilt: Table, looked: Looked, page: Page, row: int) -> None:
     """Draw beside the inputs, from a row on; the points stand right of the printed part of the page."""
-    parts, where, phi = given.parts, page.columns + 3, given.look_tilt.si
-    for part in range(parts.first, parts.last + 1):  # how far each part reaches from the hinge
-        x, y, length, width, od = (parts.si(label, part) for label in ("x", "y", "L", "W", "OD"))
-        half = f"SQRT((({length})*({width}>0))^2+({width})^2+({od})^2)/2"
-        page.put(where, book.guarded(f"SQRT(({x})^2+({y})^2)+{half}"), "RS si", row=part, form="0.000")
-    reach = page.at(where, parts.last + 1)
-    cells = page.span((parts.first, where), (parts.last, where))
-    anchor = f"IF({given.by_cylinder},MAX(ABS({given.cylinder['anchor_x'].si}),"
-    anchor += f"-{given.cylinder['anchor_y'].si}/{LOWEST}),0)"
-    page.put(
-        where, book.guarded(f"MAX(0.001,MAX({cells}),{anchor})"), "RS si", row=parts.last + 1, form="0.000"
-    )
-    points = Points(page, where + 1, row, reach)
-    _outlines(points, given, phi)
+    phi, where = given.look_tilt.si, page.columns + 3
+    reach = _reach(page, given, where)
+    points = Points(page, where + 14, row, reach)
+    _outlines(page, points, given, where + 7, reach)
     steps = [f"{given.tilt_end.si}*{k}/24" for k in range(25)]
-    arc = [(f"{reach}*COS({a})", f"{reach}*SIN({a})") for a in steps]
-    points.add("sweep", arc, dash="sysDash", width=0.75, color=SOFT)
+    points.add(
+        "sweep",
+        [(f"COS({a})", f"SIN({a})") for a in steps],
+        scaled=True,
+        dash="sysDash",
+        width=0.75,
+        color=SOFT,
+    )
     _marks(points, work, phi)
     _forces(points, given, tilt, looked, phi, reach)
-    sketch_chart(
-        page,
-        f"J{row}",
-        points.curves,
-        width=103.0,
-        title="Position looked at",
-        window=(-0.9, 1.05, -0.65, 1.05),
-    )
+    title, window = "Position looked at", (-0.9, 1.05, -0.65, 1.05)
+    sketch_chart(page, f"J{row}", points.curves, width=103.0, title=title, window=window)
     key = f'"Mass center: ● all fruit, ◆ empty bin. Arc: "&ROUND(1000*{reach},0)&" mm."'
     page.put(10, book.guarded(key), "RS note", row=row + 20)
 
 
-def _outlines(points: Points, given: Inputs, phi: str) -> None:
-    parts = given.parts
+def _reach(page: Page, given: Inputs, where: int) -> str:
+    """Write place and half sizes of each part in SI, and how far the farthest reaches from the hinge."""
+    parts, book = given.parts, page.book
     for row in range(parts.first, parts.last + 1):
         x, y, length, width, od, turn = (
             parts.si(label, row) for label in ("x", "y", "L", "W", "OD", "turn z")
         )
-        corners = []
-        angle = f"({turn}+{phi})"
         box = f'{parts.cell("W", row)}<>""'
-        for k in range(13):
-            sx, sy = ((1, 1), (-1, 1), (-1, -1), (1, -1), (1, 1))[k // 3]
-            u = f"IF({box},{sx}*({length})/2,({od})/2*COS({k}*PI()/6))"
-            v = f"IF({box},{sy}*({width})/2,({od})/2*SIN({k}*PI()/6))"
-            corners.append(
-                (
-                    f"({x})*COS({phi})-({y})*SIN({phi})+{u}*COS({angle})-{v}*SIN({angle})",
-                    f"({x})*SIN({phi})+({y})*COS({phi})+{u}*SIN({angle})+{v}*COS({angle})",
-                )
-            )
-        fruit = row == parts.last
-        points.add(
-            f"part {row - parts.first + 1}",
-            corners,
-            dash="sysDot" if fruit else "solid",
-            width=1.0,
-            color=SOFT if fruit else "2E4A3D",
+        halves = (f"IF({box},({length})/2,0)", f"({width})/2", f"({od})/2")
+        for k, formula in enumerate((x, y, *halves, turn)):
+            page.put(where + k, book.guarded(formula), "RS si", row=row)
+        here = [page.at(where + k, row) for k in range(5)]
+        far = f"SQRT({here[0]}^2+{here[1]}^2)+SQRT({here[2]}^2+{here[3]}^2+{here[4]}^2)"
+        page.put(where + 6, book.guarded(far), "RS si", row=row)
+    anchor = (given.cylinder[name].si for name in ("anchor_x", "anchor_y"))
+    far = f"IF({given.by_cylinder},MAX(ABS({next(anchor)}),-{next(anchor)}/{LOWEST}),0)"
+    cells = page.span((parts.first, where + 6), (parts.last, where + 6))
+    page.put(where + 6, book.guarded(f"MAX(0.001,MAX({cells}),{far})"), "RS si", row=parts.last + 1)
+    return page.at(where + 6, parts.last + 1)
+
+
+def _outlines(page: Page, points: Points, given: Inputs, where: int, reach: str) -> None:
+    """Draw each part as a box or a round: first its mid point and half axes at the tilt, then its corners."""
+    parts, phi = given.parts, given.look_tilt.si
+    for row in range(parts.first, parts.last + 1):
+        x, y, u, v, r, turn = (page.at(where - 7 + k, row) for k in range(6))
+        angle = f"{turn}+{phi}"
+        axes = (
+            f"({x}*COS({phi})-{y}*SIN({phi}))/{reach}",
+            f"({x}*SIN({phi})+{y}*COS({phi}))/{reach}",
+            f"{u}*COS({angle})/{reach}",
+            f"{u}*SIN({angle})/{reach}",
+            f"-{v}*SIN({angle})/{reach}",
+            f"{v}*COS({angle})/{reach}",
+            f"IF({u}>0,0,{r}/{reach})",
         )
+        for k, formula in enumerate(axes):
+            page.put(where + k, page.book.guarded(formula), "RS si", row=row)
+        mx, my, ux, uy, vx, vy, radius = (page.at(where + k, row) for k in range(7))
+        corners = []
+        for k in range(13):
+            a, b = ("+", "+-", "+-", "+")[k // 3 % 4], ("+", "+", "+-", "+-")[k // 3 % 4]
+            c, d = cos(k * pi / 6.0), sin(k * pi / 6.0)
+            corners.append((f"{mx}{a}{ux}{b}{vx}+{radius}*{c:.6f}", f"{my}{a}{uy}{b}{vy}+{radius}*{d:.6f}"))
+        look = ("sysDot", SOFT) if row == parts.last else ("solid", RULE)
+        name = f"part {row - parts.first + 1}"
+        points.add(name, corners, scaled=True, dash=look[0], width=1.0, color=look[1])
 
 
 def _marks(points: Points, work: Work, phi: str) -> None:
@@ -111,7 +123,8 @@ def _forces(points: Points, given: Inputs, tilt: Table, looked: Looked, phi: str
         tip = (f"({tail[0]})+({fx})*{scale}", f"({tail[1]})+({fy})*{scale}")
         side = "l" if name == "hinges" else "r"
         points.label(f'"{name} "&ROUND({amount},0)&" N"', tip, color=color, side=side)
-    along = [f"IF({cylinder},{tilt.cell(column, row)},0)" for column in (ALONG_X, ALONG_Y)]
+    u, v = tilt.cell(ALONG_X, row), tilt.cell(ALONG_Y, row)  # in the table's own axes
+    along = f"({u}*COS({phi})-{v}*SIN({phi}))", f"({u}*SIN({phi})+{v}*COS({phi}))"
     points.arrow(
         "drive force", (x, y), (f"{effort}*{along[0]}*{scale}", f"{effort}*{along[1]}*{scale}"), color=RULE
     )

@@ -63,7 +63,7 @@ def tilt_table(book: Book, given: Inputs, work: Work) -> Table:
             "In SI, tilt in degrees. The ends of speeding up and slowing down stand twice, once on each side.",
             f"T = I_O α + g (S_x cos φ − S_y sin φ). For {ENERGY_CASE.name}: work = sum of (T + T before) Δφ / 2, "
             "energy = g (S_x sin φ + S_y cos φ − S_y) + I_O ω² / 2.",
-            "Cylinder: length from eye to eye, arm about the hinge, u its direction on the table. "
+            "Cylinder: length from eye to eye, arm about the hinge, u its direction in the table's own axes. "
             "Fruit: what is left while it pours.",
         )
     )
@@ -162,7 +162,7 @@ def _tilt_row(given: Inputs, work: Work, table: Table, row: int, i: int | None) 
     if i is not None:
         cells |= _energy(table, work, row, phi, i)
     forms = {TILT: "0.00", TIME: "0.00", SPEED: "0.000", ACCELERATION: "0.000;-0.000;0", FRUIT_LEFT: "0.00"}
-    forms |= dict.fromkeys((LENGTH, ARM, ALONG_X, ALONG_Y), "0.000")
+    forms |= dict.fromkeys((LENGTH, ARM, ALONG_X, ALONG_Y), "0.000;-0.000;")
     for column, formula in cells.items():
         page.put(
             column, page.book.guarded(formula), "RS number", row=row, form=forms.get(column, "#,##0;-#,##0;0")
@@ -172,17 +172,21 @@ def _tilt_row(given: Inputs, work: Work, table: Table, row: int, i: int | None) 
 
 
 def _cylinder(given: Inputs, table: Table, row: int, phi: str) -> dict[int, str]:
+    """Return length, arm and direction of the cylinder in the table's own axes, where its eye stands still."""
     c = {name: place.si for name, place in given.cylinder.items()}
-    x = f"({c['eye_x']}*COS({phi})-{c['eye_y']}*SIN({phi}))"
-    y = f"({c['eye_x']}*SIN({phi})+{c['eye_y']}*COS({phi}))"
-    length = table.cell(LENGTH, row)
+    x = f"{c['eye_x']}-({c['anchor_x']}*COS({phi})+{c['anchor_y']}*SIN({phi}))"
+    y = f"{c['eye_y']}-({c['anchor_y']}*COS({phi})-{c['anchor_x']}*SIN({phi}))"
+    length, ux, uy = (table.cell(column, row) for column in (LENGTH, ALONG_X, ALONG_Y))
     formulas = {
-        LENGTH: f"SQRT(({x}-{c['anchor_x']})^2+({y}-{c['anchor_y']})^2)",
-        ARM: f"({y}*{c['anchor_x']}-{x}*{c['anchor_y']})/{length}",
-        ALONG_X: f"({x}-{c['anchor_x']})/{length}",
-        ALONG_Y: f"({y}-{c['anchor_y']})/{length}",
+        LENGTH: (f"SQRT(({x})^2+({y})^2)", '""'),
+        ARM: (f"{c['eye_x']}*{uy}-{c['eye_y']}*{ux}", '""'),
+        ALONG_X: (f"({x})/{length}", "0"),
+        ALONG_Y: (f"({y})/{length}", "0"),
     }
-    return {column: f'IF({given.by_cylinder},{formula},"")' for column, formula in formulas.items()}
+    return {
+        column: f"IF({given.by_cylinder},{formula},{otherwise})"
+        for column, (formula, otherwise) in formulas.items()
+    }
 
 
 def _torque(case: Case, table: Table, work: Work, row: int, phi: str) -> str:
@@ -217,9 +221,9 @@ def hinge_table(book: Book, given: Inputs, work: Work, tilt: Table) -> Table:
         (
             "Cylinder: F = T / arm, + pushes. Motor: T / (i η) while it drives, T η / i while the table drives it; "
             "J i α for its rotor on top.",
-            "Hinge: R_x = −α S_y − ω² S_x − c F u_x,  R_y = α S_x − ω² S_y + g m − c F u_y, with m and S that count "
-            "for this hinge, S turned by φ;",
-            "c = (z_d − z of the other) / (z of this − z of the other); R is the size. "
+            "Hinge, in the table's own axes: R_x = −α S_y − ω² S_x + g m sin φ − c F u_x,  "
+            "R_y = α S_x − ω² S_y + g m cos φ − c F u_y; R is their size.",
+            "m, S and c are the parts that count for this hinge (sheet Working). "
             "The allowance for uneven bearing comes on the sheet Checks.",
         )
     )
@@ -238,10 +242,11 @@ def hinge_table(book: Book, given: Inputs, work: Work, tilt: Table) -> Table:
     for row in [*range(tilt.first, tilt.last + 1), tilt.look]:
         page.put(1, book.guarded(tilt.cell(TILT, row)), "RS number", row=row + shift, form="0.00")
         for k, case in enumerate(CASES):
+            effort = f"${get_column_letter(EFFORT + k)}{row + shift}"
             for column, formula, form in (
                 (EFFORT + k, _effort(case, k, given, work, tilt, row), "#,##0.0"),
-                (HINGE_1 + k, _hinge(case, k, given, work, tilt, table, row, 1), "#,##0"),
-                (HINGE_2 + k, _hinge(case, k, given, work, tilt, table, row, 2), "#,##0"),
+                (HINGE_1 + k, _hinge(case, work, tilt, row, effort, 1), "#,##0"),
+                (HINGE_2 + k, _hinge(case, work, tilt, row, effort, 2), "#,##0"),
             ):
                 page.put(column, book.guarded(formula), "RS number", row=row + shift, form=form)
     page.row = table.last + 1
@@ -258,26 +263,15 @@ def _effort(case: Case, k: int, given: Inputs, work: Work, tilt: Table, row: int
     return f"IF({given.by_cylinder},{torque}/{tilt.cell(ARM, row)},{motor})"
 
 
-def _hinge(
-    case: Case, k: int, given: Inputs, work: Work, tilt: Table, table: Table, row: int, hinge: int
-) -> str:
-    def pick(part: int) -> str:
-        return sums_of(case, tilt, work, row, lambda body: (body.share_1, body.share_2)[hinge - 1][part])
+def _hinge(case: Case, work: Work, tilt: Table, row: int, effort: str, hinge: int) -> str:
+    """Return the size of a hinge's force, from its components in the table's own axes."""
 
-    phi, omega, alpha = (
-        f"RADIANS({tilt.cell(TILT, row)})",
-        tilt.cell(SPEED, row),
-        alpha_of(case, tilt, work, row),
-    )
-    m, x0, y0 = pick(0), pick(1), pick(2)
-    x, y = f"({x0}*COS({phi})-{y0}*SIN({phi}))", f"({x0}*SIN({phi})+{y0}*COS({phi}))"
-    this, other = (given.hinge_1.si, given.hinge_2.si) if hinge == 1 else (given.hinge_2.si, given.hinge_1.si)
-    share = f"({given.cylinder['cylinder_z'].si}-{other})/({this}-{other})"
-    push = f"{table.cell(EFFORT + k, row + table.first - tilt.first)}*{share}"
-    parts = []
-    for inertial, along in (
-        (f"-({alpha})*{y}-{omega}^2*{x}", ALONG_X),
-        (f"({alpha})*{x}-{omega}^2*{y}+{work.gravity.si}*{m}", ALONG_Y),
-    ):
-        parts.append(f"({inertial}-IF({given.by_cylinder},{push}*{tilt.cell(along, row)},0))^2")
-    return f"SQRT({'+'.join(parts)})"
+    def pick(part: int) -> str:
+        return sums_of(case, tilt, work, row, lambda body: body.shares[hinge - 1][part])
+
+    phi, omega = f"RADIANS({tilt.cell(TILT, row)})", tilt.cell(SPEED, row)
+    alpha, weight = alpha_of(case, tilt, work, row), f"{work.gravity.si}*{pick(0)}"
+    push = f"{work.drive_shares[hinge - 1]}*{effort}"
+    x = f"-{alpha}*{pick(2)}-{omega}^2*{pick(1)}+{weight}*SIN({phi})-{push}*{tilt.cell(ALONG_X, row)}"
+    y = f"{alpha}*{pick(1)}-{omega}^2*{pick(2)}+{weight}*COS({phi})-{push}*{tilt.cell(ALONG_Y, row)}"
+    return f"SQRT(({x})^2+({y})^2)"

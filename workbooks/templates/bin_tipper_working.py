@@ -25,8 +25,7 @@ class Body:
     x: str  # first moments of mass
     y: str
     inertia: str
-    share_1: tuple[str, str, str]  # mass and first moments that count for hinge 1
-    share_2: tuple[str, str, str]
+    shares: tuple[tuple[str, str, str], tuple[str, str, str]]  # mass and first moments for hinge 1 and 2
 
 
 @dataclass(frozen=True, slots=True)
@@ -40,6 +39,7 @@ class Work:
     ramp_angle: Place
     stop: Place
     bodies: dict[str, Body]
+    drive_shares: tuple[str, str]  # parts of the cylinder's force that count for hinge 1 and 2
     masses: dict[str, Place]
     centers: dict[str, tuple[Place, Place]]
 
@@ -63,6 +63,7 @@ def working(book: Book, given: Inputs) -> Work:
         ramp,
         stop,
         bodies,
+        _drive_shares(page, given),
         {state: rows["mass"] for state, rows in rolled.items()},
         {state: (rows["x"], rows["y"]) for state, rows in rolled.items()},
     )
@@ -234,11 +235,25 @@ def _sums(page: Page, given: Inputs, rolled: dict[str, dict[str, Place]]) -> dic
             rows[1][k],
             rows[2][k],
             rows[3][k],
-            (rows[7][k], rows[8][k], rows[9][k]),
-            (rows[10][k], rows[11][k], rows[12][k]),
+            ((rows[7][k], rows[8][k], rows[9][k]), (rows[10][k], rows[11][k], rows[12][k])),
         )
         for k, state in enumerate(STATES)
     }
+
+
+def _drive_shares(page: Page, given: Inputs) -> tuple[str, str]:
+    cells = []
+    z1, z2, z = given.hinge_1.si, given.hinge_2.si, given.cylinder["cylinder_z"].si
+    for name, this, other in (("1", z1, z2), ("2", z2, z1)):
+        page.put(2, f"Part of the cylinder's force that counts for hinge {name}", "RS label")
+        page.put(3, rich(f"c_{name}", 10, italic=True, serif=True), "RS symbol")
+        share = f"IF({given.by_cylinder},({z}-{other})/({this}-{other}),0)"
+        page.put(4, page.book.guarded(share), "RS number")
+        far = "z_2) / (z_1 − z_2)" if name == "1" else "z_1) / (z_2 − z_1)"
+        page.put(8, rich(f"(z_d − {far}; none with a gearbox", 8, italic=True, color=SOFT), "RS note")
+        cells.append(page.at(4))
+        page.row += 1
+    return cells[0], cells[1]
 
 
 def _sum_row(page: Page, text: tuple[str, str, str, str], empty: str, whole: str) -> tuple[str, str, str]:

@@ -17,14 +17,14 @@ class Points:
         self.page, self.column, self.row, self.reach = page, column, row, reach
         self.curves: list[Curve] = []
 
-    def add(self, name: str, points: Sequence[tuple[str, str]], **look: Any) -> None:
-        """Add a curve through points given as formula texts."""
+    def add(self, name: str, points: Sequence[tuple[str, str]], *, scaled: bool = False, **look: Any) -> None:
+        """Add a curve through points given as formula texts; `scaled` when they are parts of the reach already."""
         page, book = self.page, self.page.book
         page.put(self.column, name, "RS column", row=self.row)
         first = self.row + 1
         for i, point in enumerate(points):
             for k, formula in enumerate(point):
-                text = book.guarded(f"({formula})/{self.reach}")
+                text = book.guarded(formula if scaled else f"({formula})/{self.reach}")
                 page.put(self.column + k, text, "RS si", row=first + i, form="0.0000")
         last = first + len(points) - 1
         sheet = page.sheet
