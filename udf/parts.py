@@ -85,6 +85,7 @@ PARTS: Final = Table(
         ("bin", 1.0, "box", 38.0, 1000.0, 700.0, 900.0, 650.0, 430.0, 0.0),
     ),
     more=SIZE_COLUMNS,
+    finish=lambda argument, data: read_parts(argument, data),
 )
 
 

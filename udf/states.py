@@ -192,29 +192,44 @@ LOADS: Final = Table(
     what="table of loads",
     example=(("load", "Fx [N]", "Fy [N]", "x [mm]", "y [mm]"), ("wind", 120.0, 0.0, 400.0, 900.0)),
     none_word=True,
+    finish=lambda argument, data: finish_loads(data),
 )
 
 
-def read_loads(data: TableData, gravity: Array) -> states.Loads:
+@dataclass(frozen=True, eq=False, slots=True)
+class LoadsRead:
+    """A table of loads as read, and the row that names the body's own weight, empty when there is none."""
+
+    loads: states.Loads
+    weight_row: str
+
+    def beside(self, gravity: Array) -> states.Loads:
+        """Return the loads that act beside the weight, which must not be among them."""
+        if self.weight_row and np.any(gravity != 0.0):
+            raise InputError(
+                "loads",
+                "loads without the body's own weight: `gravity` of the motion already adds it",
+                remedy="Name it otherwise if it is the weight of something else",
+                where=self.weight_row,
+            )
+        return self.loads
+
+
+def finish_loads(data: TableData) -> LoadsRead:
     """Return forces, their points and couples on the body."""
     if len(data) == 0:
-        return states.Loads()
+        return LoadsRead(states.Loads(), "")
+    weights = [data.where(i) for i, label in enumerate(data.labels) if WEIGHT_LABEL.fullmatch(label)]
     force = np.stack([data.numbers(f"F{k}") for k in "xyz"], axis=-1)
     couple = np.stack([data.numbers(f"M{k}") for k in "xyz"], axis=-1)
     place = np.stack([data.numbers(k) for k in "xyz"], axis=-1)
     size, angle = data.numbers("F"), data.numbers("angle")
     for i in range(len(data)):
-        if WEIGHT_LABEL.fullmatch(data.labels[i]) and np.any(gravity != 0.0):
-            raise InputError(
-                "loads",
-                "loads without the body's own weight: `gravity` of the motion already adds it",
-                remedy="Name it otherwise if it is the weight of something else",
-                where=data.where(i),
-            )
         _load_row(data, i, force, couple, place, size, angle)
     has_force = ~np.isnan(force).all(axis=1)
     has_couple = ~np.isnan(couple).all(axis=1)
-    return states.Loads(_zeros(force[has_force]), _zeros(place[has_force]), _zeros(couple[has_couple]))
+    loads = states.Loads(_zeros(force[has_force]), _zeros(place[has_force]), _zeros(couple[has_couple]))
+    return LoadsRead(loads, weights[0] if weights else "")
 
 
 def _zeros(values: Array) -> Array:
@@ -266,6 +281,7 @@ SUPPORTS: Final = Table(
         ("hinge", "pin", 0.0, 0.0, None),
         ("stop", "roller", 900.0, 0.0, 90.0),
     ),
+    finish=lambda argument, data: finish_supports(data, planar=True),
 )
 
 SUPPORTS_3D: Final = Table(
@@ -286,6 +302,7 @@ SUPPORTS_3D: Final = Table(
         ("upper hinge", "bearing", 0.0, 0.0, 1100.0, 0.0, 0.0, 1.0),
         ("stop", "slot", 2400.0, 0.0, 550.0, 0.0, 1.0, 0.0),
     ),
+    finish=lambda argument, data: finish_supports(data, planar=False),
 )
 
 
@@ -311,7 +328,15 @@ def _vector(data: TableData, i: int, labels: Sequence[str], what: str, needed: i
     return _zeros(values)
 
 
-def read_supports(data: TableData, planar: bool) -> tuple[Hold, ...]:
+@dataclass(frozen=True, eq=False, slots=True)
+class SupportsRead:
+    """What all supports can put on the body, and the kind of each by its name."""
+
+    holds: tuple[Hold, ...]
+    kinds: dict[str, str]
+
+
+def finish_supports(data: TableData, planar: bool) -> SupportsRead:
     """Return what all supports can put on the body."""
     holds: list[Hold] = []
     needed = 2 if planar else 3
@@ -349,7 +374,8 @@ def read_supports(data: TableData, planar: bool) -> tuple[Hold, ...]:
             raise InputError(
                 refused.argument, refused.rule, refused.value, remedy=refused.remedy, where=data.where(i)
             ) from None
-    return tuple(holds)
+    types = map(folded, data.texts("type"))
+    return SupportsRead(tuple(holds), dict(zip(data.labels, types, strict=True)))
 
 
 def _components(data: TableData, i: int) -> tuple[str, ...]:

@@ -99,26 +99,32 @@ class TableData:
 
 @dataclass(frozen=True, slots=True)
 class Table:
-    """Rows under a header; the first column of `columns` names the rows."""
+    """Rows under a header; the first column of `columns` names the rows.
+
+    Gives a `TableData`; `finish` turns it into what a kernel takes.
+    """
 
     columns: tuple[Column, ...]
     what: str  # 'parts list', 'loads', ...
     example: tuple[tuple[Value, ...], ...]
     none_word: bool = False  # the word 'none' stands for no rows
     more: Mapping[str, Column] = field(default_factory=dict)  # further columns by their exact label
+    finish: Callable[[str, TableData], Any] | None = None
     role: Role = Role.OTHER
 
     def reader(self, argument: str, limit: Limit | None) -> Reader:
         known = {folded(n): c for c in self.columns for n in (c.label, *c.also)}
         empty = TableData({}, (), ())
+        finish = self.finish
 
-        def read(cell: Cell) -> TableData:
+        def read(cell: Cell) -> Any:
             if self.none_word and type(cell) is str and folded(cell) == "none":
-                return empty
+                return empty if finish is None else finish(argument, empty)
             if type(cell) is not list or len(cell) < 2:
                 none = ", or the word 'none'" if self.none_word else ""
                 raise wrong(argument, f"a {self.what}: a header row and rows below it{none}", cell)
-            return self._table(argument, cell, known)
+            data = self._table(argument, cell, known)
+            return data if finish is None else finish(argument, data)
 
         return remembered(read)
 

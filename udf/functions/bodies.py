@@ -19,7 +19,7 @@ from ..body_terms import BodyTerms, body_fields
 from ..declaration import WHAT, Arg, CellFunction, Example, Field, Form, Result
 from ..limits import POSITIVE
 from ..outlines import Outline
-from ..parts import PARTS, read_parts
+from ..parts import PARTS, PartsList
 from ..working import num, tensor_rows, vec
 from .axes import axis_text, direction_of
 
@@ -32,9 +32,8 @@ def is_center(about: Any) -> bool:
     return about is None or (isinstance(about, str) and about == AT_CENTER)
 
 
-def rolled_up(data: Any, about: Any) -> BodyTerms:
+def rolled_up(parts: PartsList, about: Any) -> BodyTerms:
     """Sum a parts list; the tensor is about the mass center or about the point `about`."""
-    parts = read_parts("parts", data)
     body = combine_arrays(parts.masses, parts.centers, parts.inertias)
     if is_center(about):
         point, tensor = body.center, body.inertia

@@ -12,8 +12,7 @@ from .. import kinds
 from ..arguments import Scalar, Spin, Tensor, Vector
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..limits import NOT_NEGATIVE, POSITIVE
-from ..states import LOADS, read_loads
-from ..tables import TableData
+from ..states import LOADS, LoadsRead
 from ..working import is_flat, num, signed, tensor_rows, total, vec
 
 GROUP = "Forces"
@@ -145,8 +144,8 @@ class ResultantTerms:
         return float(value)
 
 
-def resultant(data: TableData, about: Any) -> ResultantTerms:
-    read = read_loads(data, np.zeros(3))
+def resultant(told: LoadsRead, about: Any) -> ResultantTerms:
+    read = told.loads
     point = np.zeros(3) if about is None or isinstance(about, str) else about
     if point.ndim != 1:
         raise InputError("about", "one point")
@@ -155,7 +154,7 @@ def resultant(data: TableData, about: Any) -> ResultantTerms:
 
 
 def resultant_working(values: tuple[Any, ...], answer: ResultantTerms) -> list[str]:
-    read = read_loads(values[0], np.zeros(3))
+    read = values[0].loads
     point = answer.found.about
     lines = [f"Resultant of the loads about {vec(point)} m: F = sum F_i, M = sum r_i x F_i + sum M_i"]
     for f, p in list(zip(read.forces, read.points, strict=True))[:40]:

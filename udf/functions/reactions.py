@@ -11,12 +11,12 @@ from ...core import balance, drives, motion
 from ...core.errors import InputError
 from ...core.reactions import SolvedReactions, solve_reactions
 from ...core.supports import Hold
+from ...core.vectors import cross
 from .. import kinds
-from ..arguments import Vector, folded
+from ..arguments import Vector
 from ..bodies import BODY, BodyRead, needs_space
 from ..declaration import Arg, CellFunction, Example, Field, Result, Row
-from ..states import LOADS, MOTION, SUPPORTS, SUPPORTS_3D, MotionRead, read_loads, read_supports
-from ..tables import TableData
+from ..states import LOADS, MOTION, SUPPORTS, SUPPORTS_3D, LoadsRead, MotionRead, SupportsRead
 from ..working import num, vec
 
 GROUP = "Forces"
@@ -44,22 +44,22 @@ def planar_motion(state: MotionRead) -> None:
             )
 
 
-def solved(body: BodyRead, state: MotionRead, loads: TableData, supports: TableData, planar: bool) -> Solved:
+def solved(
+    body: BodyRead, state: MotionRead, loads: LoadsRead, supports: SupportsRead, planar: bool
+) -> Solved:
     gravity = state.falling()
     if planar:
         planar_motion(state)
     rigid = body.body if planar else needs_space(body)
-    holds = read_supports(supports, planar)
     solution = solve_reactions(
         rigid,
         state.balance(in_space=not planar),
-        holds,
-        loads=read_loads(loads, gravity),
+        supports.holds,
+        loads=loads.beside(gravity),
         gravity=gravity,
         planar=planar,
     )
-    kinds_of = dict(zip(supports.labels, map(folded, supports.texts("type")), strict=True))
-    return Solved(rows_of(solution, state, planar, kinds_of), solution, rigid.mass)
+    return Solved(rows_of(solution, state, planar, supports.kinds), solution, rigid.mass)
 
 
 def rows_of(
@@ -100,11 +100,11 @@ def resultants(support: str, own: list[tuple[Hold, float]], with_axis: bool) -> 
     return rows
 
 
-def reactions(body: BodyRead, state: MotionRead, loads: TableData, supports: TableData) -> Solved:
+def reactions(body: BodyRead, state: MotionRead, loads: LoadsRead, supports: SupportsRead) -> Solved:
     return solved(body, state, loads, supports, True)
 
 
-def reactions_3d(body: BodyRead, state: MotionRead, loads: TableData, supports: TableData) -> Solved:
+def reactions_3d(body: BodyRead, state: MotionRead, loads: LoadsRead, supports: SupportsRead) -> Solved:
     return solved(body, state, loads, supports, False)
 
 
@@ -147,7 +147,7 @@ def pivot_acceleration(state: MotionRead, body: BodyRead, pivot: Any) -> Any:
     return motion.acceleration_at(told.acceleration, told.omega, told.alpha, pivot - start).total
 
 
-def drive_torque(body: BodyRead, state: MotionRead, loads: TableData, pivot: Any) -> drives.DriveTorque:
+def drive_torque(body: BodyRead, state: MotionRead, loads: LoadsRead, pivot: Any) -> drives.DriveTorque:
     gravity = state.falling()
     planar_motion(state)
     if state.alpha_given and state.alpha is None:
@@ -156,11 +156,10 @@ def drive_torque(body: BodyRead, state: MotionRead, loads: TableData, pivot: Any
         )
     if pivot.ndim != 1:
         raise InputError("pivot", "one point")
-    told = read_loads(loads, gravity)
-    force = told.forces.sum(axis=0) if len(told.forces) else np.zeros(3)
-    couple = told.couples.sum(axis=0) if len(told.couples) else np.zeros(3)
-    for f, p in zip(told.forces, told.points, strict=True):
-        couple = couple + np.cross(p - pivot, f)
+    told = loads.beside(gravity)
+    force, couple = told.forces.sum(axis=0), told.couples.sum(axis=0)
+    if len(told.forces):
+        couple = couple + cross(told.points - pivot, told.forces).sum(axis=0)
     alpha = state.balance().alpha
     return drives.drive_torque(
         body.body,
