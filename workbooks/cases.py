@@ -13,13 +13,14 @@ from pathlib import Path
 from typing import Any, Final
 
 from rigidsheet.core.errors import InputError, RigidsheetError
-from rigidsheet.udf.cells import CellError, Refusal, Value
+from rigidsheet.udf.cells import OMITTED, CellError, Refusal, Value
 
 from . import saving
 from .addresses import row_column
 from .calls import Function
 from .engine import Sheets
 from .errors import FileRefused, InputRefused, address
+from .formulas import OMITTED_MARK
 from .inputs import Filled, input_cell, input_value
 from .quantities import converted, quantity, unit_in
 from .reading import Place
@@ -142,9 +143,12 @@ def _remembering(function: Function) -> Function:
     memory: dict[bytes, Any] = {}
 
     def called(*cells: Any) -> Any:
+        given = cells
+        if OMITTED in cells:
+            given = tuple(OMITTED_MARK if cell is OMITTED else cell for cell in cells)
         try:
-            key = marshal.dumps(cells, _BY_VALUE)
-        except ValueError:  # an error or an omitted argument among the cells
+            key = marshal.dumps(given, _BY_VALUE)
+        except ValueError:  # an error among the cells
             return function(*cells)
         answer = memory.get(key)
         if answer is None:
