@@ -14,7 +14,7 @@ from ..core.tensors import tensor_from_terms
 from . import kinds
 from .arguments import Scalar, Vector
 from .limits import NOT_NEGATIVE, POSITIVE
-from .tables import Entry, Record
+from .records import Entry, Record
 
 TENSOR_TERMS: Final = "tensor terms"
 INTEGRALS: Final = "integrals"

@@ -10,11 +10,11 @@ from numpy.typing import NDArray
 
 from ..core.errors import InputError
 from .amounts import shared_kind
-from .arguments import is_unit_text, shown, wrong
 from .cells import Block, Cell, Value
 from .declaration import Reader, Role
 from .limits import Limit
 from .memory import remembered
+from .quantities import is_unit_text, shown, wrong
 from .tables import TOTAL, label_and_unit
 from .units import readings
 from .words import one_amount

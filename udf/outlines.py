@@ -10,11 +10,12 @@ from numpy.typing import NDArray
 
 from ..core.errors import InputError
 from . import kinds
-from .arguments import Vector, folded, wrong
+from .arguments import Vector
 from .cells import Cell
 from .declaration import Reader, Role
 from .limits import POSITIVE, Limit
 from .memory import remembered
+from .quantities import folded, wrong
 from .tables import Column, Table, TableData
 
 Array = NDArray[np.float64]

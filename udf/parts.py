@@ -14,21 +14,21 @@ from numpy.typing import NDArray
 from ..core.body import RigidBody, combine_arrays
 from ..core.errors import InputError
 from ..core.shapes import shape_body, shape_mass, shape_named
-from ..core.tensors import shift_to_center, turned
-from ..core.vectors import rotation_matrix, turn_xyz
+from ..core.tensors import turned
+from ..core.vectors import turn_xyz
 from . import kinds
-from .arguments import folded, shown
-from .bodies import INTEGRALS, MOMENTS, PRODUCT_WORDS, PRODUCTS, TENSOR_TERMS, products_form, tensor_of
+from .bodies import MOMENTS, PRODUCTS
 from .limits import NOT_NEGATIVE, POSITIVE
+from .measured import CENTER, fill_measured, word_of
+from .patterns import XYZ, pattern_of
+from .quantities import folded
 from .sizes import SIZE_COLUMNS, size_texts
 from .tables import Column, Table, TableData
 
 Array = NDArray[np.float64]
 
-CENTER, DATUM = "mass center", "datum"
-ONE_PLACE, CIRCLE, LINE = "one place", "circle", "line"
+DATUM: Final = "datum"
 ASSEMBLY = "assembly"
-XYZ: Final = ("x", "y", "z")
 
 _POSITIONS = tuple(
     Column(k, kinds.LENGTH, f"place along {k}, of what `at` says", also=(f"{k} center",)) for k in XYZ
@@ -107,13 +107,6 @@ class PartsList:
 def indices(mask: Any) -> list[int]:
     """Return where a mask holds, as plain numbers."""
     return [int(i) for i in np.flatnonzero(mask)]
-
-
-def word_of(argument: str, table: dict[str, str], text: str, rule: str, where: str) -> str:
-    found = table.get(folded(text))
-    if found is None:
-        raise InputError(argument, f"{rule}; got {shown(text)}", where=where)
-    return found
 
 
 def read_parts(argument: str, data: TableData) -> PartsList:
@@ -204,7 +197,7 @@ def _read(data: TableData, assembly: Callable[[int], RigidBody]) -> PartsList:
     centers = centers + np.where(placed[:, None], offsets, 0.0)
     pieces = np.abs(qty)
     for i in indices(pieces > 1.0):
-        centers[i], tensors[i] = _pattern(data, i, int(pieces[i]), masses[i], centers[i], tensors[i])
+        centers[i], tensors[i] = pattern_of(data, i, int(pieces[i]), masses[i], centers[i], tensors[i])
     return PartsList(
         names=data.labels,
         where=tuple(data.where(i) for i in range(n)),
@@ -233,7 +226,7 @@ def _own(data: TableData, assembly: Callable[[int], RigidBody]) -> tuple[Array, 
         index = np.array(rows)
         _shaped(data, shape, index, given_sizes(data, rows, given), density, masses, tensors, offsets)
     for i in indices(measured):
-        _measured(data, i, masses, tensors)
+        fill_measured(data, i, masses, tensors)
     for i in groups:
         if not (np.isnan(mass[i]) and np.isnan(density[i])):
             raise InputError(
@@ -359,46 +352,6 @@ def _shaped(
     tensors[index], offsets[index] = result.inertia, result.offset
 
 
-def _measured(data: TableData, i: int, masses: Array, tensors: Array) -> None:
-    """Fill the tensor of a part that is given by its terms."""
-    where = data.where(i)
-    terms = [float(data.numbers(k)[i]) for k in (*MOMENTS, *PRODUCTS)]
-    for k, value in zip(MOMENTS, terms, strict=False):
-        if np.isnan(value):
-            raise InputError(
-                "parts",
-                f"a parts list with all of Ixx, Iyy, Izz for a measured part; {k} is blank",
-                where=where,
-            )
-    if np.isnan(masses[i]):
-        raise InputError("parts", "a parts list with the mass of each measured part", where=where)
-    terms = [0.0 if np.isnan(t) else t for t in terms]
-    word = data.texts("products")[i]
-    form = products_form(
-        "products",
-        word_of(
-            "products",
-            {**PRODUCT_WORDS, TENSOR_TERMS: TENSOR_TERMS, INTEGRALS: INTEGRALS},
-            word,
-            f"'{TENSOR_TERMS}' or '{INTEGRALS}'",
-            where,
-        )
-        if word
-        else None,
-        terms[3:],
-        where,
-    )
-    tensor = tensor_of(terms, form)
-    about = data.texts("about")[i]
-    if not about:
-        raise InputError("about", "given for a measured tensor: mass center or origin", where=where)
-    table = {"mass center": CENTER, "center": CENTER, "g": CENTER, "origin": "origin"}
-    if word_of("about", table, about, "'mass center' or 'origin'", where) == "origin":
-        place = np.array([data.numbers(k)[i] for k in XYZ])
-        tensor = shift_to_center(tensor, masses[i], np.where(np.isnan(place), 0.0, place))
-    tensors[i] = tensor
-
-
 def _rotations(data: TableData) -> Array | None:
     """Return the turns of the parts as (n, 3, 3), None when there are none."""
     angles = np.stack([data.numbers(f"turn {k}") for k in XYZ], axis=-1)
@@ -437,40 +390,3 @@ def _places(data: TableData) -> tuple[Array, Any]:
         known[t] = word_of("at", table, t, "'mass center' or 'datum'", data.where(i))
     placed = np.array([known[t] == DATUM for t in at]) if at else np.zeros(n, dtype=bool)
     return np.where(there, xyz, 0.0), placed
-
-
-def _pattern(
-    data: TableData, i: int, count: int, mass: float, center: Array, tensor: Array
-) -> tuple[Array, Array]:
-    """Return mass center and tensor of all pieces of a row together."""
-    where = data.where(i)
-    text = folded(data.texts("pattern")[i])
-    kind, _, axis = text.partition(" ")
-    point = np.array([data.numbers(f"pattern {k}")[i] for k in XYZ])
-    filled = np.where(np.isnan(point), 0.0, point)
-    if text in (ONE_PLACE, "same place"):
-        return center, tensor * count
-    if kind == CIRCLE and axis.removeprefix("about ") in XYZ:
-        direction = np.eye(3)["xyz".index(axis[-1])]
-        turns = rotation_matrix(direction, 2.0 * np.pi * np.arange(count) / count)
-        centers = filled + (turns @ (center - filled)[:, None])[..., 0]
-        tensors = turned(tensor, turns)
-    elif text == LINE:
-        if not np.any(filled != 0.0):
-            raise InputError(
-                "pattern", "a line with its step in pattern x, pattern y or pattern z", where=where
-            )
-        centers = center + np.arange(count)[:, None] * filled
-        tensors = np.repeat(tensor[None], count, axis=0)
-    else:
-        raise InputError(
-            "pattern",
-            f"told when qty is {count}: 'one place', 'circle x', 'circle y', 'circle z' or 'line'"
-            + (f"; got {shown(data.texts('pattern')[i])}" if text else ""),
-            where=where,
-        )
-    middle = centers.mean(axis=0)
-    arms = centers - middle
-    square = (arms * arms).sum(axis=1)
-    spread = mass * (square.sum() * np.eye(3) - arms.T @ arms)
-    return middle, tensors.sum(axis=0) + spread

@@ -8,10 +8,10 @@ from typing import Any, Final
 import numpy as np
 
 from ..core.errors import AbsentError, InputError, PhysicsError
-from .arguments import folded
 from .cells import Answer
 from .declaration import Field, Form, Result, Row
 from .kinds import Kind
+from .quantities import folded
 from .units import factor
 from .words import hint
 from .working import NOT_FINITE
@@ -150,19 +150,21 @@ def gate_rows(rows: Any) -> Answer:
 
 def record(rows: list[Row]) -> Answer:
     """Return rows of label, value(s) and unit; values of one component stand in the second column."""
-    out: list[list[Any]] = []
-    width = max((np.size(r.value) if not isinstance(r.value, str) else 1) for r in rows)
-    for r in rows:
-        values = [r.value] if isinstance(r.value, str) else [float(x) for x in np.ravel(r.value)]
-        out.append(
-            [
-                r.label,
-                *values,
-                *[""] * (width - len(values)),
-                r.kind.si if r.kind and dimensional(r.kind) else "",
-            ]
-        )
-    return gate_rows(out)
+    values = [shown_values(r.value) for r in rows]
+    width = max(map(len, values))
+    return [
+        [r.label, *v, *[""] * (width - len(v)), r.kind.si if dimensional(r.kind) else ""]  # type: ignore[union-attr]
+        for r, v in zip(rows, values, strict=True)
+    ]
+
+
+def shown_values(value: Any) -> list[float | str]:
+    """Return the cells of one line of a record."""
+    if isinstance(value, str):
+        return [value]
+    if isinstance(value, float):
+        return [finite(float(value))]
+    return [finite(v) for v in np.ravel(value).tolist()]
 
 
 def open_rows(rows: list[Row], what: str | None, unit: str | None) -> Answer:

@@ -13,13 +13,15 @@ import numpy as np
 from ..core.errors import InputError, RigidsheetError
 from ..core.shapes import SHAPES
 from . import kinds
-from .arguments import Scalar, folded, is_unit_text, numbers, quantity, shown, unit_factor, wrong
+from .arguments import Scalar
 from .cells import Block, Cell
 from .declaration import Reader, Role
 from .kinds import Kind
 from .limits import Limit
 from .memory import remembered
-from .tables import Column, block_lines, label_and_unit
+from .quantities import folded, is_unit_text, numbers, quantity, shown, unit_factor, wrong
+from .records import block_lines
+from .tables import Column, label_and_unit
 from .words import hint
 
 

@@ -14,8 +14,10 @@ from ..core import states
 from ..core.errors import InputError
 from ..core.supports import COMPONENTS, PLANAR_KINDS, SPATIAL_KINDS, Hold, planar_support, spatial_support
 from . import kinds
-from .arguments import Spin, Vector, folded, shown
-from .tables import Column, Entry, Record, Table, TableData
+from .arguments import Spin, Vector
+from .quantities import folded, shown
+from .records import Entry, Record
+from .tables import Column, Table, TableData
 
 Array = NDArray[np.float64]
 STANDARD_GRAVITY: Final = 9.80665  # m/s^2, exact by definition (CGPM 1901, ISO 80000-3)

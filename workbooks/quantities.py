@@ -5,10 +5,10 @@ from __future__ import annotations
 from functools import lru_cache
 
 from rigidsheet.core.errors import RigidsheetError
-from rigidsheet.udf.arguments import is_unit_text
 from rigidsheet.udf.cells import Value
 from rigidsheet.udf.kinds import KINDS
 from rigidsheet.udf.numbers import split_quantity
+from rigidsheet.udf.quantities import is_unit_text
 from rigidsheet.udf.spellings import canonical
 from rigidsheet.udf.units import readings
 

@@ -8,9 +8,9 @@ import numpy as np
 
 from ...core.errors import InputError
 from ..amounts import kinds_text, shared_kind
-from ..arguments import asked
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..kinds import Kind
+from ..quantities import asked
 from ..units import readings
 from ..words import Amount, AnyQuantity, Text
 from ..working import num

@@ -11,9 +11,9 @@ from openpyxl.utils import get_column_letter
 from openpyxl.worksheet.datavalidation import DataValidation
 from openpyxl.worksheet.pagebreak import Break
 
-from rigidsheet.udf.arguments import asked
 from rigidsheet.udf.kinds import Kind
 from rigidsheet.udf.limits import Limit
+from rigidsheet.udf.quantities import asked
 
 from .kit_cells import (
     CAUTIONS,
@@ -338,6 +338,20 @@ class Page:
         for line in lines:
             self.put(self.lead, rich(line, 8.5), "RS prose")
             self.sheet.row_dimensions[self.row].height = height
+            self.row += 1
+
+    def steps(self, title: str, call: str, count: int) -> None:
+        """Write the working of a call as a section: `count` lines, the last one tall for a long balance."""
+        self.section(title)
+        function, _, rest = call.partition("(")
+        for k in range(1, count + 1):
+            step = f'INDEX(RB_WORKING("{function}",{rest}),{k},1)'
+            self.put(self.lead, self.book.guarded(f'IFERROR({step},"")'), "RS step")
+            self.sheet.merge_cells(
+                start_row=self.row, start_column=self.lead, end_row=self.row, end_column=self.columns
+            )
+            if k == count:
+                self.sheet.row_dimensions[self.row].height = 25.0
             self.row += 1
 
     def cautions(self) -> None:
