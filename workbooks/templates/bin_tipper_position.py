@@ -65,8 +65,8 @@ def position(book: Book, given: Inputs, work: Work, tilt: Table, hinges: Table) 
     center = page.at(6, first + 2), page.at(6, first + 3)
     weight = f"{page.at(6, first + 1)}*{work.gravity.si}"
     looked = _compare(page, given, tilt, hinges, number, calls, (*center, weight))
-    _steps(page, "Working of the drive torque", calls["torque"], STEPS["RB_DRIVE_TORQUE"])
-    _steps(page, "Working of the reactions", calls["hinges"], STEPS["RB_REACTIONS_3D"])
+    page.steps("Working of the drive torque", calls["torque"], STEPS["RB_DRIVE_TORQUE"])
+    page.steps("Working of the reactions", calls["hinges"], STEPS["RB_REACTIONS_3D"])
     return looked
 
 
@@ -217,12 +217,3 @@ def _compare(
         page.book.name(name, page.at(4, top + i))
     value = [page.at(4, top + i) for i in range(6)]
     return Looked(*body, value[0], value[1], value[4], value[5], page.span((top, 8), (top + 3, 8)))
-
-
-def _steps(page: Page, title: str, call: str, count: int) -> None:
-    page.section(title)
-    function, _, rest = call.partition("(")
-    for k in range(1, count + 1):
-        step = f'INDEX(RB_WORKING("{function}",{rest}),{k},1)'
-        page.put(2, page.book.guarded(f'IFERROR({step},"")'), "RS step")
-        page.row += 1

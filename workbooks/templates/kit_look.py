@@ -53,6 +53,7 @@ RIGHT = Alignment(horizontal="right", **_MIDDLE)
 INNER = Alignment(horizontal="right", indent=1, **_MIDDLE)  # keeps digits off the lines of a box
 CENTER = Alignment(horizontal="center", **_MIDDLE)
 HEAD = Alignment(horizontal="center", vertical="center", wrap_text=True)
+WRAP = Alignment(horizontal="left", vertical="center", wrap_text=True)
 FOOT = Alignment(horizontal="left", vertical="bottom")
 INDENT = Alignment(horizontal="left", indent=1, **_MIDDLE)
 
@@ -125,7 +126,7 @@ def _styles() -> dict[str, dict[str, Any]]:
             "border": Border(top=_side("thin", RULE)),
         },
         "RS verdict": {"font": _font(9.5, bold=True), "alignment": CENTER, "border": _box("thin")},
-        "RS step": {"font": _font(8.5, name="Courier New"), "alignment": LEFT},
+        "RS step": {"font": _font(8.5), "alignment": WRAP},
         "RS prose": {"font": _font(8.5), "alignment": LEFT},
         "RS status": {"font": _font(9, bold=True), "alignment": LEFT},
     }
