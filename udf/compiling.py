@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Sequence
+from itertools import chain
 from types import MappingProxyType
 from typing import Any, Final
 
@@ -145,7 +146,7 @@ def settled(cells: Sequence[Cell]) -> tuple[Sequence[Cell], tuple[int, CellError
         if t is CellError:
             return cells, (i, c)  # type: ignore[return-value]
         if t is list and c and set(map(type, c)) == {list}:  # type: ignore[arg-type]
-            types = set().union(*(map(type, row) for row in c))  # type: ignore[union-attr]
+            types = set(map(type, chain.from_iterable(c)))  # type: ignore[arg-type]
             if CellError in types:
                 return cells, (i, next(v for row in c for v in row if type(v) is CellError))  # type: ignore[union-attr]
             if types <= PLAIN and (len(c) > 1 or len(c[0]) > 1) and len(set(map(len, c))) == 1:  # type: ignore[arg-type,index]

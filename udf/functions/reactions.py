@@ -144,6 +144,8 @@ def pivot_acceleration(state: MotionRead, body: BodyRead, pivot: Any) -> Any:
     """Return the acceleration of the pivot, carried over from the point the motion knows."""
     told = state.balance()
     start = body.body.center if told.point is None else told.point
+    if np.array_equal(start, pivot):
+        return told.acceleration
     return motion.acceleration_at(told.acceleration, told.omega, told.alpha, pivot - start).total
 
 
