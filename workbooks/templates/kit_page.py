@@ -207,6 +207,16 @@ class Page:
         self.row += 1
         return place
 
+    def condition(self, label: str, formula: str, kind: Kind, why: str) -> None:
+        """Write a number in SI that must be above zero before anything is worked out, and why if it is not."""
+        self.put(self.LABEL, rich(label), "RS label")
+        self.put(self.VALUE, f'=IFERROR(IF({formula}>0,"","{why}"),"")', "RS note")
+        self.put(self.SI, f"=IF({formula}>0,{formula},NA())", "RS si")
+        self.put(self.SI_UNIT, kind.si, "RS unit fixed")
+        self._grey_errors(self.SI)
+        self.book.need(self.at(self.SI), "")
+        self.row += 1
+
     def _input_row(self, label: str, symbol: str, value: Any, style: str, name: str, note: str) -> None:
         self.sheet.row_dimensions[self.row].height = 14.5
         self.put(self.MARK, MARK, "RS mark")
