@@ -1,8 +1,9 @@
 """Native charts of the working sheets: curves over an input, and the sketch that is a drawing.
 
 A `Curve` names two ranges (x and y) and how its line looks. `line_chart` is for results over a position or a
-time; `sketch_chart` draws points of equal scale in both directions between -1 and 1, so its points are given
-as parts of the largest reach. Curves differ by dashes and width, so that they can be told apart without colour.
+time, `bar_chart` for load cases; `sketch_chart` draws points of equal scale in both directions between -1 and 1,
+so its points are given as parts of the largest reach. Curves differ by dashes and width, bars by how dark they
+are, so that they can be told apart without colour.
 """
 
 from __future__ import annotations
@@ -11,7 +12,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any, Final
 
-from openpyxl.chart import Reference, ScatterChart, Series
+from openpyxl.chart import BarChart, Reference, ScatterChart, Series
 from openpyxl.chart.data_source import StrRef
 from openpyxl.chart.label import DataLabelList
 from openpyxl.chart.layout import Layout, ManualLayout
@@ -40,6 +41,8 @@ LINES: Final = (
     ("sysDot", 1.75, "A5622A"),
     ("lgDashDot", 1.25, "A5622A"),
 )
+# Fills of bars that stand side by side, dark to light.
+SHADES: Final = ("2E4A3D", "A9BDB2", "FFFFFF", "5C6460")
 
 
 @dataclass(frozen=True, slots=True)
@@ -108,9 +111,8 @@ def _series(curve: Curve) -> Series:
     return series
 
 
-def _bare_chart(width: float, height: float) -> ScatterChart:
-    chart = ScatterChart()
-    chart.style, chart.scatterStyle = 2, "lineMarker"
+def _plain(chart: Any, width: float, height: float) -> None:
+    """Size a chart in mm, without a frame, with quiet axes and lines across only."""
     chart.width, chart.height = width / 10.0, height / 10.0
     frame = GraphicalProperties(noFill=True)
     frame.line = LineProperties(noFill=True)
@@ -119,11 +121,17 @@ def _bare_chart(width: float, height: float) -> ScatterChart:
     chart.display_blanks = "gap"
     for axis in (chart.x_axis, chart.y_axis):
         axis.delete = False
-        axis.majorGridlines.spPr = GraphicalProperties(ln=_line("solid", 0.5, "E1E5E2"))
         axis.graphicalProperties = GraphicalProperties(ln=_line("solid", 0.75, SOFT))
         axis.txPr = _rich(8, color=INK)
         axis.majorTickMark = "out"
+    chart.y_axis.majorGridlines.spPr = GraphicalProperties(ln=_line("solid", 0.5, "E1E5E2"))
     chart.x_axis.majorGridlines = None
+
+
+def _bare_chart(width: float, height: float) -> ScatterChart:
+    chart = ScatterChart()
+    chart.style, chart.scatterStyle = 2, "lineMarker"
+    _plain(chart, width, height)
     return chart
 
 
@@ -185,5 +193,40 @@ def sketch_chart(
         axis.majorGridlines = None
     for curve in curves:
         chart.series.append(_series(curve))
+    page.sheet.add_chart(chart, anchor)
+    return chart
+
+
+def bar_chart(
+    page: Any,
+    anchor: str,
+    names: tuple[Any, int, int, int],
+    groups: Sequence[tuple[str, int]],
+    *,
+    size: tuple[float, float],
+    title: str,
+    y_title: str,
+) -> BarChart:
+    """Put bars side by side for each name: `names` is (sheet, column, first row, last row), as in a `Curve`.
+
+    Each group is its name and its column in the same rows; groups differ by how dark they are, with an outline.
+    """
+    sheet, _, first, last = names
+    chart = BarChart()
+    chart.type, chart.grouping, chart.style, chart.gapWidth, chart.overlap = "col", "clustered", 2, 60, 0
+    _plain(chart, *size)
+    chart.title = _title(title, 9.5, bold=True)
+    chart.y_axis.title = _title(y_title, 8)
+    chart.y_axis.number_format = "#,##0"
+    chart.y_axis.numFmt.sourceLinked = False
+    chart.x_axis.tickLblPos = chart.y_axis.tickLblPos = "low"
+    chart.legend.position = "t"
+    chart.legend.txPr = _rich(8)
+    for (name, column), shade in zip(groups, SHADES, strict=False):
+        series = Series(_reference((sheet, column, first, last)), title=name)
+        series.graphicalProperties = GraphicalProperties(solidFill=shade)
+        series.graphicalProperties.line = _line("solid", 0.75, INK)
+        chart.series.append(series)
+    chart.set_categories(_reference(names))
     page.sheet.add_chart(chart, anchor)
     return chart
