@@ -28,12 +28,24 @@ def _bin_tipper(path: Path, blank: bool) -> None:
     bin_tipper.write(path, blank)
 
 
+def _hoist_arm(path: Path, blank: bool) -> None:
+    from . import hoist_arm
+
+    hoist_arm.write(path, blank)
+
+
 _ALL: Final = (
     Template(
         "bin-tipper",
         "Bin tipper",
         "Drive torque, hinge loads and stops of a tilting table that tips bins, by cylinder or gearbox.",
         _bin_tipper,
+    ),
+    Template(
+        "hoist-arm",
+        "Hoist arm",
+        "Drive torque, brake and pivot pin of an arm that lifts crates on a carriage that speeds up and stops.",
+        _hoist_arm,
     ),
 )
 TEMPLATES: Final[Mapping[str, Template]] = MappingProxyType({one.name: one for one in _ALL})
