@@ -117,8 +117,8 @@ def spin_sum_working(values: tuple[Any, ...], answer: motion.SpinSum) -> list[st
     ]
 
 
-POINT_A = Arg("point_a", Vector(kinds.LENGTH), "a point of the body")
-VELOCITY_A = Arg("velocity_a", Vector(kinds.VELOCITY), "its velocity")
+POINT_A = Arg("point_a", Vector(kinds.LENGTH, example=((0.0, 0.4),)), "a point of the body")
+VELOCITY_A = Arg("velocity_a", Vector(kinds.VELOCITY, example=((0.8, 0.0),)), "its velocity")
 
 FUNCTIONS = (
     CellFunction(
@@ -144,8 +144,8 @@ FUNCTIONS = (
         args=(
             POINT_A,
             VELOCITY_A,
-            Arg("point_b", Vector(kinds.LENGTH), "another point of the body"),
-            Arg("velocity_b", Vector(kinds.VELOCITY), "its velocity"),
+            Arg("point_b", Vector(kinds.LENGTH, example=((0.0, 0.1),)), "another point of the body"),
+            Arg("velocity_b", Vector(kinds.VELOCITY, example=((0.2, 0.0),)), "its velocity"),
         ),
         result=Result(
             (Field("center", kinds.LENGTH, "point that is at rest now", Form.VECTOR),),
