@@ -10,7 +10,7 @@ from collections.abc import Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Any, Final
+from typing import Any, Final, TypeAlias
 
 from rigidsheet.core.errors import InputError, RigidsheetError
 from rigidsheet.udf.cells import OMITTED, CellError, Refusal, Value
@@ -42,12 +42,16 @@ class Column:
     unit: str
 
 
+# The label of a load case and the texts of its inputs.
+Row: TypeAlias = tuple[str, tuple[str, ...]]
+
+
 @dataclass(frozen=True)
 class Table:
     """The load cases of a file: a label and the texts of the inputs for each, and where the row stands."""
 
     columns: tuple[Column, ...]
-    rows: tuple[tuple[str, tuple[str, ...]], ...]
+    rows: tuple[Row, ...]
 
 
 @dataclass(frozen=True)
@@ -161,10 +165,13 @@ def _remembering(function: Function) -> Function:
 
 
 class Cases:
-    """A workbook loaded once; iterating works the load cases out one after the other."""
+    """A workbook loaded once; iterating works the load cases out one after the other in this process."""
 
     def __init__(self, data: bytes, table: Table, inputs: Mapping[str, object]) -> None:
         self.table = table
+        self.data = data
+        self.inputs = inputs
+        self.loaded: Sheets | None = None
         self.run = Run(data, inputs, None, None)
         self.run.functions = remembering(self.run.functions)
         self.reading = Filled(self.run.prepared, self.run.results)
@@ -188,14 +195,18 @@ class Cases:
         return places
 
     def __iter__(self) -> Iterator[Answer]:
-        loaded = self.run.open()
-        for label, texts in self.table.rows:
-            try:
-                self._work_out(loaded, self._inputs(texts))
-            except RigidsheetError as refusal:
-                yield Answer(label, {}, {}, str(refusal))
-                continue
-            yield self._answer(label)
+        return map(self.answer, self.table.rows)
+
+    def answer(self, row: Row) -> Answer:
+        """Work out one load case, which need not be one of the table."""
+        label, texts = row
+        if self.loaded is None:
+            self.loaded = self.run.open()
+        try:
+            self._work_out(self.loaded, self._inputs(texts))
+        except RigidsheetError as refusal:
+            return Answer(label, {}, {}, str(refusal))
+        return self._answer(label)
 
     def _work_out(self, loaded: Sheets, given: Mapping[tuple[int, str], Value]) -> None:
         for (number, ref), value in given.items():

@@ -12,7 +12,7 @@ from click.testing import Result
 from command_line import refused, run
 from gate_book import GRAVITY, inertia, write
 
-from rigidsheet.workbooks import recalculate
+from rigidsheet.workbooks import case_workers, recalculate
 
 HEADER = ["case", "I_B [kg*m^2]", "torque [N*m]", "weight [N]", "looked_up", "Pin load", "error"]
 
@@ -191,3 +191,27 @@ def test_what_does_not_go_with_cases(book: Path, tmp_path: Path) -> None:
     assert "one workbook" in refused("recalc", book, book, "--cases", cases)
     unknown = write(tmp_path / "other.xlsx", {"F1": "=RB_TORQU(1)"})
     assert "there is no function RB_TORQU" in refused("recalc", unknown, "--cases", cases)
+
+
+def test_shared_among_processes_the_answers_are_the_same(
+    book: Path, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    text = "arm,m,alpha\n" + "".join(
+        f"{300 + i},{100 + i},40 deg/s{'^2' if i % 7 else ''}\n" for i in range(90)
+    )
+    cases = table(tmp_path, text)
+    alone = run("recalc", book, "--cases", cases)
+    asked: list[int] = []
+
+    def two() -> int:
+        asked.append(2)
+        return 2
+
+    monkeypatch.setattr(case_workers, "TRIAL", 0.0)
+    monkeypatch.setattr(case_workers, "WORTH", 0.0)
+    monkeypatch.setattr(case_workers, "processors", two)
+    shared = run("recalc", book, "--cases", cases)
+    assert asked
+    assert shared.exit_code == alone.exit_code == 2
+    assert shared.stdout == alone.stdout
+    assert shared.stderr == alone.stderr

@@ -177,6 +177,7 @@ def targets(files: tuple[Path, ...], to: Path | None) -> list[Path | None]:
 
 
 def _cases(files: tuple[Path, ...], cases: Path, inputs: dict[str, str], to: Path | None) -> int:
+    from .. import case_workers
     from .. import cases as load_cases
     from .showing import counted
 
@@ -186,7 +187,7 @@ def _cases(files: tuple[Path, ...], cases: Path, inputs: dict[str, str], to: Pat
         _case_target(to, (files[0], cases))
     table = load_cases.read(cases)
     with load_cases.opened(files[0], table, inputs) as run:
-        answers = list(steps(run, len(table.rows), "Load cases"))
+        answers = list(steps(case_workers.answers(run), len(table.rows), "Load cases"))
     text = load_cases.as_csv(answers)
     if to is None:
         click.echo(text, nl=False)
