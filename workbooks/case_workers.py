@@ -5,10 +5,12 @@ from __future__ import annotations
 import multiprocessing
 import os
 import signal
+import threading
 import time
 from collections.abc import Iterator, Mapping
 from concurrent.futures import ProcessPoolExecutor
 from concurrent.futures.process import BrokenProcessPool
+from contextlib import contextmanager
 from typing import Final
 
 from .cases import Answer, Cases, Row, Table
@@ -50,7 +52,9 @@ def _shared(cases: Cases, rows: tuple[Row, ...]) -> Iterator[Answer]:
         (cases.data, cases.table, dict(cases.inputs)),
     )
     try:
-        for share in pool.map(_work, shares):
+        with _started_deaf():
+            found = pool.map(_work, shares)
+        for share in found:
             yield from share
     except BrokenProcessPool:
         raise FileRefused(
@@ -58,6 +62,19 @@ def _shared(cases: Cases, rows: tuple[Row, ...]) -> Iterator[Answer]:
         ) from None
     finally:
         pool.shutdown(wait=True, cancel_futures=True)
+
+
+@contextmanager
+def _started_deaf() -> Iterator[None]:
+    """Let processes that start now ignore Ctrl-C from their first moment: they inherit it."""
+    if threading.current_thread() is not threading.main_thread():
+        yield
+        return
+    before = signal.signal(signal.SIGINT, signal.SIG_IGN)
+    try:
+        yield
+    finally:
+        signal.signal(signal.SIGINT, before)
 
 
 def _begin(data: bytes, table: Table, inputs: Mapping[str, object]) -> None:

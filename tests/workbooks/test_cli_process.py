@@ -124,6 +124,27 @@ def test_ctrl_c(tmp_path: Path) -> None:
     assert (out, problem) == ("", "rigidsheet: stopped; no file was left half written\n")
 
 
+SHARED = (
+    "import sys; from rigidsheet.workbooks import case_workers as w; w.TRIAL = w.WORTH = 0.0\n"
+    "w.processors = lambda: 2; from rigidsheet.workbooks.cli import main; main(prog_name='rigidsheet')"
+)
+
+
+@pytest.mark.skipif(os.name == "nt", reason="signals of a console are another thing on Windows")
+def test_ctrl_c_while_processes_share_the_cases(tmp_path: Path) -> None:
+    book, cases = write(tmp_path / "gate.xlsx"), tmp_path / "cases.csv"
+    os.mkfifo(cases)
+    command = [sys.executable, "-c", SHARED, "recalc", str(book), "--cases", str(cases)]
+    pipes = {"stdout": subprocess.PIPE, "stderr": subprocess.PIPE}
+    running = subprocess.Popen(command, text=True, start_new_session=True, **pipes)
+    cases.write_text("m\n" + "100\n" * 200_000)
+    time.sleep(1.5)
+    os.killpg(running.pid, signal.SIGINT)  # a terminal sends it to every process of the group
+    out, problem = running.communicate(timeout=60)
+    assert running.returncode == 130
+    assert (out, problem) == ("", "rigidsheet: stopped; no file was left half written\n")
+
+
 @pytest.mark.skipif(os.name == "nt", reason="a closed pipe is another error on Windows")
 @pytest.mark.parametrize("arguments", [("functions",), ("--help",), ("functions", "RB_TORQUE")])
 def test_a_reader_that_went_away(arguments: tuple[str, ...]) -> None:
