@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
+from math import isfinite
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -64,9 +66,60 @@ def plate_body(
     ----------
     C. Steger, On the Calculation of Arbitrary Moments of Polygons, TU Munich FGBV-96-05, 1996.
     """
-    for name, value in (("thickness", thickness), ("density", density)):
-        if not (np.isfinite(value) and value > 0.0):
-            raise InputError(name, "a positive number", float(value))
+    return section_body(plate_section(outline, holes, round_holes), thickness, density)
+
+
+@dataclass(frozen=True, eq=False, slots=True)
+class Section:
+    """The flat section of a plate: its outline and holes as pieces, holes with a negative area.
+
+    Parameters
+    ----------
+    areas : ndarray, shape (n,)
+        Area of each piece [m^2].
+    centers : ndarray, shape (n, 3)
+        Center of each piece, z = 0 [m].
+    spreads : ndarray, shape (n, 3)
+        Means of x^2, y^2 and xy over each piece, about its center [m^2].
+    """
+
+    areas: Points
+    centers: Points
+    spreads: Points
+
+
+def plate_section(
+    outline: ArrayLike, holes: Sequence[ArrayLike] = (), round_holes: ArrayLike = ()
+) -> Section:
+    """Return the section of a plate, which serves every thickness and density.
+
+    Parameters
+    ----------
+    outline : array_like, shape (n, 2)
+        Corners x y in order, either way round [m].
+    holes : sequence of array_like, shape (k, 2)
+        Outlines of the holes [m].
+    round_holes : array_like, shape (k, 3)
+        Round holes: x, y and diameter [m].
+
+    Returns
+    -------
+    Section
+        Areas [m^2], centers [m] and spreads [m^2].
+
+    Raises
+    ------
+    InputError
+        As `plate_body`.
+
+    Notes
+    -----
+    The holes must lie wholly inside and clear of each other.
+
+    References
+    ----------
+    C. Steger, On the Calculation of Arbitrary Moments of Polygons, TU Munich FGBV-96-05, 1996.
+    """
     corners = _outline("outline", outline)
     cuts = [_outline(f"hole {i + 1}", hole) for i, hole in enumerate(holes)]
     rounds = _round_holes(round_holes)
@@ -74,10 +127,47 @@ def plate_body(
     _check_round_holes(corners, cuts, rounds)
     pieces = [area_sums(corners), *(area_sums(cut) for cut in cuts), *(_circle_sums(row) for row in rounds)]
     signs = np.array([1.0] + [-1.0] * (len(pieces) - 1))
-    masses = signs * [density * thickness * piece.area for piece in pieces]
     centers = np.array([[*piece.center, 0.0] for piece in pieces])
     spreads = np.array([piece.spread for piece in pieces])
-    return combine_arrays(masses, centers, masses[:, None, None] * _unit_tensors(spreads, thickness))
+    return Section(signs * [piece.area for piece in pieces], centers, spreads)
+
+
+def section_body(section: Section, thickness: float, density: float) -> RigidBody:
+    """Return the body of a plate from its section.
+
+    Parameters
+    ----------
+    section : Section
+        Outline and holes.
+    thickness : float
+        Thickness along z [m]; the middle of the plate is at z = 0.
+    density : float
+        Density [kg/m^3].
+
+    Returns
+    -------
+    RigidBody
+        Mass [kg], mass center [m] and tensor about it [kg m^2], along the axes of the outline.
+
+    Raises
+    ------
+    InputError
+        A thickness or density that is not positive.
+
+    Notes
+    -----
+    Exact for a prism with square-cut edges.
+
+    References
+    ----------
+    C. Steger, On the Calculation of Arbitrary Moments of Polygons, TU Munich FGBV-96-05, 1996.
+    """
+    for name, value in (("thickness", thickness), ("density", density)):
+        if not (isfinite(value) and value > 0.0):
+            raise InputError(name, "a positive number", float(value))
+    masses = density * thickness * section.areas
+    tensors = _unit_tensors(section.spreads, thickness)
+    return combine_arrays(masses, section.centers, masses[:, None, None] * tensors)
 
 
 def _unit_tensors(spreads: Points, thickness: float) -> Points:

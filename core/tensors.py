@@ -167,7 +167,9 @@ def shift_to_center(inertia: ArrayLike, mass: ArrayLike, offset: ArrayLike) -> N
     return np.asarray(np.asarray(inertia, dtype=float) - offset_tensor(mass, offset), dtype=np.float64)
 
 
-def shift_moment_from_center(moment: ArrayLike, mass: ArrayLike, distance: ArrayLike) -> NDArray[np.float64]:
+def shift_moment_from_center(
+    moment: ArrayLike, mass: ArrayLike, distance: ArrayLike
+) -> float | NDArray[np.float64]:
     """Return the moment of inertia about an axis from that about the parallel axis through the mass center.
 
     Parameters
@@ -181,7 +183,7 @@ def shift_moment_from_center(moment: ArrayLike, mass: ArrayLike, distance: Array
 
     Returns
     -------
-    ndarray, shape (...)
+    float or ndarray, shape (...)
         Moment of inertia about the other axis [kg m^2].
 
     Notes
@@ -192,13 +194,17 @@ def shift_moment_from_center(moment: ArrayLike, mass: ArrayLike, distance: Array
     ----------
     J. L. Meriam, L. G. Kraige, Engineering Mechanics: Dynamics, appendix B (parallel-axis theorem).
     """
+    if isinstance(moment, float) and isinstance(mass, float) and isinstance(distance, float):
+        return moment + mass * distance * distance  # one cell, by far the commonest call
     distance = np.asarray(distance, dtype=float)
     return np.asarray(
         np.asarray(moment, dtype=float) + np.asarray(mass, dtype=float) * distance**2, dtype=np.float64
     )
 
 
-def shift_moment_to_center(moment: ArrayLike, mass: ArrayLike, distance: ArrayLike) -> NDArray[np.float64]:
+def shift_moment_to_center(
+    moment: ArrayLike, mass: ArrayLike, distance: ArrayLike
+) -> float | NDArray[np.float64]:
     """Return the moment of inertia about the axis through the mass center from that about a parallel axis.
 
     Parameters
@@ -212,7 +218,7 @@ def shift_moment_to_center(moment: ArrayLike, mass: ArrayLike, distance: ArrayLi
 
     Returns
     -------
-    ndarray, shape (...)
+    float or ndarray, shape (...)
         Moment of inertia about the parallel axis through the mass center [kg m^2].
 
     Notes
@@ -223,6 +229,8 @@ def shift_moment_to_center(moment: ArrayLike, mass: ArrayLike, distance: ArrayLi
     ----------
     J. L. Meriam, L. G. Kraige, Engineering Mechanics: Dynamics, appendix B (parallel-axis theorem).
     """
+    if isinstance(moment, float) and isinstance(mass, float) and isinstance(distance, float):
+        return moment - mass * distance * distance  # one cell, by far the commonest call
     distance = np.asarray(distance, dtype=float)
     return np.asarray(
         np.asarray(moment, dtype=float) - np.asarray(mass, dtype=float) * distance**2, dtype=np.float64

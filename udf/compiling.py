@@ -12,7 +12,7 @@ import numpy as np
 
 from ..core.errors import AbsentError, InputError, KindError, PhysicsError, RigidsheetError
 from . import frame, results
-from .cells import OMITTED, Answer, Cell, CellError, Omitted, Refusal
+from .cells import Answer, Cell, CellError, Omitted, Refusal
 from .declaration import UNIT, WHAT, Arg, CellFunction, Reader
 from .words import Choice, Rest, Text
 from .working import NOT_FINITE
@@ -84,14 +84,10 @@ class Compiled:
                 "", f"{self.function.name} takes at most {len(arguments)} arguments; got {len(cells)}"
             )
         values: list[Any] = []
-        for i, a in enumerate(arguments):
-            cell = cells[i] if i < len(cells) else OMITTED
-            if type(cell) is Omitted:
-                if not a.optional:
-                    raise InputError(a.name, f"given: {a.help}; the argument is missing"[:200])
-                values.append(a.default)
-            else:
-                values.append(readers[i](cell))
+        for reader, cell in zip(readers, cells, strict=False):
+            values.append(left_out(arguments[len(values)]) if type(cell) is Omitted else reader(cell))
+        for a in arguments[len(values) :]:
+            values.append(left_out(a))
         return values
 
     def answer(self, cells: Sequence[Cell]) -> Answer:
@@ -118,6 +114,13 @@ class Compiled:
         if rows > 1:
             lines.append(f"Row 1 of {rows}; the other rows go the same way.")
         return lines
+
+
+def left_out(a: Arg) -> Any:
+    """Return what stands for an argument that was left out."""
+    if not a.optional:
+        raise InputError(a.name, f"given: {a.help}; the argument is missing"[:200])
+    return a.default
 
 
 def united(answer: Answer, unit: str) -> list[str]:

@@ -45,6 +45,8 @@ class Frame:
     def align(self, values: list[Any]) -> tuple[list[Any], bool]:
         """Return the values with vectors and spins lifted to x y z, and whether the call is planar."""
         if self._plain:
+            if set(map(type, values)) == {float}:
+                return values, False
             if not self._lone or any(type(values[i]) is np.ndarray for i in self._scalars):
                 rows = self._rows(values)
                 for i in self._offsets:

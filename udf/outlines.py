@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ..core.errors import InputError
+from ..core.plates import Section, plate_section
 from . import kinds
 from .arguments import Vector
 from .cells import Cell
@@ -47,6 +48,13 @@ class OutlineRead:
     corners: Array
     holes: dict[str, Array]
     round_holes: Array
+    section: Section
+
+
+def outline_of(corners: Array, holes: dict[str, Array], round_holes: Array) -> OutlineRead:
+    """Return an outline with its section, refused when no plate can be cut to it."""
+    section = plate_section(corners, list(holes.values()), round_holes)
+    return OutlineRead(corners, holes, round_holes, section)
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,7 +74,7 @@ class Outline:
                     return from_table(argument, table(cell))
                 found = corners(cell)
                 if found.ndim == 2 and found.shape[1] == 2:
-                    return OutlineRead(found, {}, np.empty((0, 3)))
+                    return outline_of(found, {}, np.empty((0, 3)))
             raise wrong(argument, "three or more corners in order, a row of x y each, then the unit", cell)
 
         return remembered(read)
@@ -100,4 +108,4 @@ def from_table(argument: str, data: TableData) -> OutlineRead:
         raise InputError(argument, "an outline whose outer corners are named 'outline' in the column loop")
     points = {k: np.stack([x[rows], y[rows]], axis=-1) for k, rows in loops.items()}
     outer = points.pop(OUTLINE)
-    return OutlineRead(outer, points, np.array(rounds).reshape(-1, 3))
+    return outline_of(outer, points, np.array(rounds).reshape(-1, 3))

@@ -9,7 +9,7 @@ import numpy as np
 
 from ...core.body import combine_arrays, inertia_about
 from ...core.errors import InputError
-from ...core.plates import plate_body
+from ...core.plates import section_body
 from ...core.tensors import offset_tensor, turned
 from ...core.vectors import rotation_matrix
 from .. import kinds
@@ -107,13 +107,7 @@ def plate(outline: Any, thickness: Any, density: Any) -> BodyTerms:
     for name, value in (("thickness", thickness), ("density", density)):
         if type(value) is not float:
             raise InputError(name, "one number for one plate; got a column")
-    body = plate_body(
-        outline.corners,
-        thickness,
-        density,
-        holes=list(outline.holes.values()),
-        round_holes=outline.round_holes,
-    )
+    body = section_body(outline.section, thickness, density)
     return BodyTerms(body.mass, body.center, body.inertia)
 
 
@@ -161,7 +155,7 @@ def moved_working(values: tuple[Any, ...], answer: BodyTerms) -> list[str]:
         f"Body turned by {num(np.degrees(angle))} deg about {axis_text(axis)} through {where}",
         "r' = P + R (r - P), I' = R I R^T, R =",
         *tensor_rows(rotation, ""),
-        f"mass center {vec(body.body.center)} m -> {vec(answer.center)} m",
+        f"m = {num(body.body.mass)} kg; mass center {vec(body.body.center)} m -> {vec(answer.center)} m",
         "tensor about the mass center, sheet axes:",
         *tensor_rows(answer.inertia),
     ]

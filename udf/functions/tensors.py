@@ -77,14 +77,14 @@ def shifted_back(inertia: Any, mass: Any, offset: Any) -> Any:
         if problem:
             raise PhysicsError("", f"The tensor is too small for this mass and offset: {problem}")
         return result
-    result = shift_moment_to_center(inertia, mass, scalar_arm(offset))
-    if np.any(np.asarray(result) < 0.0):
+    moment = shift_moment_to_center(inertia, mass, scalar_arm(offset))
+    if np.any(np.asarray(moment) < 0.0):
         raise PhysicsError(
             "",
             "The inertia is smaller than mass * offset^2, so it cannot be about an axis at this offset",
             remedy="Check whether it is already about the mass center",
         )
-    return result
+    return moment
 
 
 def is_tensor(inertia: Any) -> bool:
