@@ -34,6 +34,18 @@ def _hoist_arm(path: Path, blank: bool) -> None:
     hoist_arm.write(path, blank)
 
 
+def _shaker_arm(path: Path, blank: bool) -> None:
+    from . import shaker_arm
+
+    shaker_arm.write(path, blank)
+
+
+def _swing_gate(path: Path, blank: bool) -> None:
+    from . import swing_gate
+
+    swing_gate.write(path, blank)
+
+
 _ALL: Final = (
     Template(
         "bin-tipper",
@@ -46,6 +58,18 @@ _ALL: Final = (
         "Hoist arm",
         "Drive torque, brake and pivot pin of an arm that lifts crates on a carriage that speeds up and stops.",
         _hoist_arm,
+    ),
+    Template(
+        "shaker-arm",
+        "Shaker arm",
+        "Acceleration at a sensor, contact of the tray, and a pusher on a crank-driven arm.",
+        _shaker_arm,
+    ),
+    Template(
+        "swing-gate",
+        "Swing gate",
+        "Hinge loads, drive, brake and latch of a yard gate on two hinges, with wind and a person on its tip.",
+        _swing_gate,
     ),
 )
 TEMPLATES: Final[Mapping[str, Template]] = MappingProxyType({one.name: one for one in _ALL})
