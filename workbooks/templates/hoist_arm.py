@@ -23,7 +23,7 @@ LINE: Final = (
 INPUT_COLUMNS: Final = (2.5, 38.0, 7.0, 13.5, 9.0, 10.5, 8.5, *([7.3] * 9))
 SKETCH_COLUMN: Final = 10
 STEEL: Final = 7850.0  # kg/m^3, structural steel (EN 1991-1-1, table A.4: 77 to 78.5 kN/m^3)
-FREE_ROWS: Final = 2
+FREE_ROWS: Final = 5
 
 
 def _part(part: str, shape: str, qty: int = 1, *, at: tuple[float, float], **rest: float) -> Part:
@@ -66,13 +66,13 @@ class Case:
 
 
 CASES: Final = (
-    Case("lift", "full speed, speeds up or slows down", 1, "ramp", "travel"),
-    Case("lower", "full speed, speeds up or slows down", -1, "ramp", "travel"),
+    Case("lift", "at full speed, ramps", 1, "ramp", "travel"),
+    Case("lower", "at full speed, ramps", -1, "ramp", "travel"),
     Case("hold", "arm and carriage at rest", 0, "none", "none"),
-    Case("carriage stop forward", "arm held, brakes from forward", 0, "none", "forward"),
-    Case("carriage stop backward", "arm held, brakes from backward", 0, "none", "backward"),
-    Case("stop while lowering", "arm brakes from full speed", -1, "stop +", "with arm"),
-    Case("stop while lifting", "arm brakes from full speed", 1, "stop -", "with arm"),
+    Case("carriage stop forward", "arm held by the brake", 0, "none", "forward"),
+    Case("carriage stop backward", "arm held by the brake", 0, "none", "backward"),
+    Case("stop while lowering", "arm stops from full speed", -1, "stop +", "with arm"),
+    Case("stop while lifting", "arm stops from full speed", 1, "stop -", "with arm"),
 )
 NAMES: Final = tuple(case.name for case in CASES)
 BY_MOTOR: Final = sum(case.by_motor for case in CASES)  # these cases stand first
@@ -135,11 +135,13 @@ def inputs(book: Book) -> tuple[Inputs, Page, int]:
     got: dict[str, Place] = {}
     _motion(page, got)
     _drive(page, got)
+    _factors(page, got)
+    _looking(page, got)
     page.rule_to = page.columns
     page.page_break()
-    _factors(page, got)
     page.section("Parts list, arm level and pointing forward: arm, then the crate in the last row")
     parts = parts_table(page, [*ARM, *([None] * FREE_ROWS), CRATE])
+    page.skip(height=4.0)
     _notes(page)
     return Inputs(got, parts), page, row
 
@@ -156,11 +158,16 @@ def _notes(page: Page) -> None:
     page.section("Assumptions")
     page.prose(
         (
-            "Rigid arm, pivot and carriage on a level track. Pivot friction is left out; the gearbox turns the arm with a pure couple.",
-            "The crate is latched in the cradle and turns with the arm. A crate that a parallel rod keeps level counts as the shape point at the tip.",
-            "Speeds rise and fall evenly in time. Lift and lower count the arm at full speed with the acceleration on the side that asks more of the drive.",
-            "The brake holds the arm while the carriage stops; gear losses, which would help the brake at rest, are then not counted.",
-            "An emergency stop may act at any angle of the arm; stopping the arm and the carriage at once counts as entered above.",
+            "Rigid arm, pivot and carriage on a level track. Pivot friction is left out; "
+            "the gearbox turns the arm with a pure couple.",
+            "The crate is latched in the cradle and turns with the arm. "
+            "A crate that a parallel rod keeps level counts as the shape point at the tip.",
+            "Speeds rise and fall evenly in time. Lift and lower count the arm at full speed, "
+            "with the ramp on the side that asks more of the drive.",
+            "The brake holds the arm while the carriage stops; "
+            "gear losses, which would help the brake at rest, are then not counted.",
+            "An emergency stop may act at any angle of the arm; "
+            "what the carriage does while the arm stops counts as entered.",
         )
     )
     page.cautions()
@@ -175,6 +182,12 @@ def _motion(page: Page, got: dict[str, Place]) -> None:
         got,
         ("angle_from", "Lowest angle of the arm", "θ_1", -30, "deg", angle, None),
         ("angle_to", "Highest angle of the arm", "θ_2", 80, "deg", angle, None),
+    )
+    range_ = f"{got['angle_to'].si}-{got['angle_from'].si}"
+    page.condition("Range of the arm", range_, angle, "the highest angle must be above the lowest")
+    _rows(
+        page,
+        got,
         ("arm_speed", "Speed of lifting and lowering", "ω_0", 20, "deg/s", turning, POSITIVE),
         ("ramp_time", "Time to speed up, and to slow down", "t_r", 0.8, "s", time, POSITIVE),
         ("arm_stop_time", "Emergency stop of the arm within", "t_s", 0.25, "s", time, POSITIVE),
@@ -222,9 +235,12 @@ def _drive(page: Page, got: dict[str, Place]) -> None:
         ("brake_rating", "Brake: rated torque at the motor shaft", "M_b", 36, "N*m", torque, POSITIVE),
         ("pin_rating", "Pivot pin: rated load", "F_R", 15, "kN", kinds.FORCE, POSITIVE),
     )
+
+
+def _looking(page: Page, got: dict[str, Place]) -> None:
     page.section("Position to look at: sketch and working", page.INPUT_WORDS)
     _rows(page, got, ("look_angle", "Angle of the arm", "θ", 55, "deg", kinds.ANGLE, None))
-    got["look_case"] = page.choice("Load case", "", CASES[FORWARD].name, NAMES, "look_case")
+    got["look_case"] = page.choice("Load case", "", CASES[STOP_LOWERING].name, NAMES, "look_case")
 
 
 def _factors(page: Page, got: dict[str, Place]) -> None:
@@ -238,10 +254,7 @@ def _factors(page: Page, got: dict[str, Place]) -> None:
     )
 
 
-NOTES: Final = {
-    "travel_acceleration": "+ forward; 0: interlocked",
-    "efficiency": "",
-}
+NOTES: Final = {"travel_acceleration": "+ forward; 0: interlocked"}
 
 
 def _rows(page: Page, got: dict[str, Place], *rows: tuple[Any, ...], when: str = "") -> None:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import dataclass
 from typing import Final
 
@@ -13,7 +14,11 @@ from .kit import Book, Page, Place
 
 TERMS: Final = ("Ixx", "Iyy", "Izz", "Ixy", "Iyz", "Izx")
 FIXED_PIVOT: Final = '"(0, 0) m/s^2"'
-SUPPORTS: Final = (("support", "type", "x [m]", "y [m]"), ("pivot", "pin", "0", "0"), ("drive", "drive", "", ""))
+SUPPORTS: Final = (
+    ("support", "type", "x [m]", "y [m]"),
+    ("pivot", "pin", "0", "0"),
+    ("drive", "drive", "", ""),
+)
 
 
 @dataclass(frozen=True, slots=True)
@@ -54,7 +59,6 @@ class Records:
 def position(book: Book, given: Inputs, work: Work, table: Table) -> Looked:
     """Write one position through the functions, independent of the table, and compare."""
     page = work.page
-    page.page_break()
     records = _records(book, page, given, work, table)
     return _results(book, page, given, work, table, records)
 
@@ -112,7 +116,9 @@ def _line(page: Page, row: int, column: int, label: str, formulas: tuple[str, ..
 def _level(page: Page, given: Inputs, top: int) -> str:
     """Write the record of arm and crate with the arm level; give its range."""
     for i, field in enumerate(("mass", "x", "y", "z", *TERMS), 1):
-        _line(page, top + i, 2, field, (f'RB_ROLLUP({given.body},"{field}",,"{_unit(field)}")',), _unit(field))
+        _line(
+            page, top + i, 2, field, (f'RB_ROLLUP({given.body},"{field}",,"{_unit(field)}")',), _unit(field)
+        )
     _line(page, top + 11, 2, "products", ('"tensor terms"',), "")
     return page.span((top + 1, 2), (top + 11, 4))
 
@@ -152,11 +158,10 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
     sum_about = f"RB_MOMENT_SUM({work.own.pair},{work.mass.pair},{r.arm},{r.omega},{r.alpha}"
     drive = f'RB_DRIVE_TORQUE({r.turned},{r.motion},"none","(0, 0) m"'
     solved = f'RB_REACTIONS({r.turned},{r.motion},"none",{r.supports}'
-    page.section(
-        "Balance about the moving pivot", {**page.INPUT_WORDS, 9: "table", 10: "difference"}
-    )
+    page.page_break()
+    page.section("Balance about the moving pivot", {**page.INPUT_WORDS, 9: "table", 10: "difference"})
     moment = page.result(
-        "Moments that the motion asks for, about B", "ΣM_B", f"{sum_about},{r.pivot},{{unit}})", torque, "N*m",
+        "Moments that the motion asks for, about B", "M_B", f"{sum_about},{r.pivot},{{unit}})", torque, "N*m",
         "look_moment_sum", note="RB_MOMENT_SUM",
     )  # fmt: skip
     weight = page.result(
@@ -175,7 +180,7 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
     )  # fmt: skip
     error = page.derived(
         "Error of the fixed pivot", "T_f − T", f"{fixed.si}-{total.si}", torque, "N*m", "look_error",
-        note="minus: the drive would be undersized", strong=True,
+        note=f'=IF(ABS({fixed.si})<ABS({total.si}),"the drive would be undersized","")', strong=True,
     )  # fmt: skip
     share = page.derived(
         "Error as a part of the true torque", "", f'IF(ABS({total.si})<1E-9,0,{error.si}/ABS({total.si}))',
@@ -186,7 +191,8 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
     page.section("Gearbox, motor and pin", {**page.INPUT_WORDS, 9: "table", 10: "difference"})
     page.result(
         "Power of the drive", "P", f'{drive},"power",{{unit}})', kinds.POWER, "kW", "look_power",
-        note=f'=IF({r.omega}=0,"at rest: the brake holds",IF({total.si}*{r.omega}<0,"the load drives: overhauling","the drive lifts"))',
+        note=f'=IF({r.omega}=0,"at rest: the brake holds",'
+        f'IF({total.si}*{r.omega}<0,"the load drives: overhauling","the motor drives"))',
     )  # fmt: skip
     eta = f"IF({r.omega}=0,1,{given.si('efficiency')})"
     motor_call = f"RB_MOTOR_TORQUE({total.pair},{given.si('ratio')},{eta}"
@@ -227,11 +233,13 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
         "look_torque_solved", note="RB_REACTIONS",
     )  # fmt: skip
     gaps.append(_gap(page, solved_torque, total.si))
-    page.page_break()
-    _steps(page, "Working: moments about the moving pivot", f"{sum_about},{r.pivot}", 6)
-    _steps(page, "Working: drive torque, weight included", drive, 7)
-    _steps(page, "Working: through the gearbox", f'{motor_call},"N*m",{r.omega}', 2)
-    _steps(page, "Working: reactions of pin and drive", solved, 9)
+    _steps(
+        page,
+        (f"{sum_about},{r.pivot}", range(1, 7)),
+        (drive, (4, 5, 6)),
+        (f'{motor_call},"N*m",{r.omega}', (1, 2)),
+        (solved, range(2, 10)),
+    )
     return Looked(
         r.x, r.y, f"{work.mass.si}*{work.gravity.si}", total.si, pins[0].si, pins[1].si,
         r.pivot.partition(":")[0], r.level, r.force, ",".join(gaps), error,
@@ -251,10 +259,17 @@ def _gap(page: Page, place: Place, other: str) -> str:
     return page.at(10, place.row)
 
 
-def _steps(page: Page, title: str, call: str, count: int) -> None:
-    page.section(title)
-    function, _, rest = call.partition("(")
-    for k in range(1, count + 1):
-        step = f'INDEX(RB_WORKING("{function}",{rest}),{k},1)'
-        page.put(2, page.book.guarded(f'IFERROR({step},"")'), "RS step")
-        page.row += 1
+def _steps(page: Page, *calls: tuple[str, Iterable[int]]) -> None:
+    """Write lines of the working of several calls, for a reviewer with a pocket calculator."""
+    page.section("Working with numbers")
+    for call, lines in calls:
+        function, _, rest = call.partition("(")
+        for k in lines:
+            step = f'INDEX(RB_WORKING("{function}",{rest}),{k},1)'
+            page.put(2, page.book.guarded(f'IFERROR({step},"")'), "RS step")
+            page.sheet.merge_cells(
+                start_row=page.row, start_column=2, end_row=page.row, end_column=page.columns
+            )
+            page.sheet.row_dimensions[page.row].height = 12.0
+            page.row += 1
+        page.skip(height=4.0)

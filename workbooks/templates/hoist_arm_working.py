@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any, Final
 
-from openpyxl.styles import Font
+from openpyxl.styles import Border, Font, Side
 from openpyxl.utils import get_column_letter
 
 from rigidsheet.udf import kinds
@@ -13,7 +13,7 @@ from rigidsheet.udf.states import STANDARD_GRAVITY
 
 from .hoist_arm import CASES, LOWER, NAMES, STOP_LOWERING, Case, Inputs
 from .kit import Book, Page, Place
-from .kit_look import INK, SANS
+from .kit_look import HAIR, INDENT, INK, SANS
 
 WORK_COLUMNS: Final = (2.5, 35.0, 8.5, 12.5, 10.0, 12.5, 9.0, 17.0, 9.5, 9.5, 9.5, 9.5, 9.5)
 STEPS: Final = 40
@@ -76,14 +76,9 @@ def _rolled_up(page: Page, given: Inputs) -> dict[str, Place]:
         got[key] = page.result(
             label, symbol, formula, kind, unit, f"arm_{key}", note=note, strong=first, needed=first
         )
+    alone = f'RB_ROLLUP({given.arm},"mass",,{{unit}})'
     page.result(
-        "Mass of the arm alone",
-        "",
-        f'RB_ROLLUP({given.arm},"mass",,{{unit}})',
-        kinds.MASS,
-        "kg",
-        "arm_mass_empty",
-        note="without the crate",
+        "Mass of the arm alone", "", alone, kinds.MASS, "kg", "arm_mass_empty", note="without the crate"
     )
     mass = got["mass"].si
     page.put(page.LABEL, f'=IF(ISERROR({mass}),RB_WHY("RB_ROLLUP",{given.body},"mass"),"")', "RS line")
@@ -91,46 +86,29 @@ def _rolled_up(page: Page, given: Inputs) -> dict[str, Place]:
     return got
 
 
-def _motion(page: Page, given: Inputs) -> tuple[Place, Place, Place, Place]:
+def _motion(page: Page, given: Inputs) -> tuple[Place, ...]:
+    """Write gravity and the accelerations of ramp, emergency stop of the arm, and of the carriage."""
     page.section("Accelerations", page.INPUT_WORDS)
-    speed, turning, travel = given.si("arm_speed"), kinds.ANGULAR_ACCELERATION, given.si("travel_speed")
-    gravity = page.derived("Standard gravity", "g", f"{STANDARD_GRAVITY}", kinds.ACCELERATION, "m/s^2")
-    ramp = page.derived(
-        "Arm: speeding up and slowing down",
-        "α_r",
-        f"{speed}/{given.si('ramp_time')}",
-        turning,
-        "deg/s^2",
-        "ramp_acceleration",
-        note="α_r = ω_0 / t_r",
-    )
-    stop = page.derived(
-        "Arm: emergency stop",
-        "α_s",
-        f"{speed}/{given.si('arm_stop_time')}",
-        turning,
-        "deg/s^2",
-        "arm_stop_deceleration",
-        note="α_s = ω_0 / t_s",
-    )
+    speed, travel, turning = given.si("arm_speed"), given.si("travel_speed"), kinds.ANGULAR_ACCELERATION
     by_distance = f"{travel}^2/(2*{given.si('stop_distance')})"
-    carriage = page.derived(
-        "Carriage: emergency stop",
-        "a_s",
-        f"IF({given.si('stop_by')}=1,{by_distance},{travel}/{given.si('stop_time')})",
-        kinds.ACCELERATION,
-        "m/s^2",
-        "carriage_stop_deceleration",
-        note="a_s = v² / (2 s) within a distance, v / t_c within a time",
-        strong=True,
-    )
-    return gravity, ramp, stop, carriage
+    by_time = f"{travel}/{given.si('stop_time')}"
+    rows: tuple[tuple[str, str, str, Any, str, str, str], ...] = (
+        ("Standard gravity", "g", f"{STANDARD_GRAVITY}", kinds.ACCELERATION, "m/s^2", "", ""),
+        ("Arm: speeding up and slowing down", "α_r", f"{speed}/{given.si('ramp_time')}", turning, "deg/s^2",
+         "ramp_acceleration", "α_r = ω_0 / t_r"),
+        ("Arm: emergency stop", "α_s", f"{speed}/{given.si('arm_stop_time')}", turning, "deg/s^2",
+         "arm_stop_deceleration", "α_s = ω_0 / t_s"),
+        ("Carriage: emergency stop", "a_s", f"IF({given.si('stop_by')}=1,{by_distance},{by_time})",
+         kinds.ACCELERATION, "m/s^2", "carriage_stop_deceleration",
+         "a_s = v² / (2 s) within a distance, v / t_c within a time"),
+    )  # fmt: skip
+    return tuple(page.derived(*row, note=note) for *row, note in rows)
 
 
 def _cases(page: Page, given: Inputs, ramp: Place, stop: Place, carriage: Place) -> int:
     """Write what each load case means in numbers; give its first row."""
     page.section("Load cases: signs of the motion, in SI")
-    heads = ("Load case", "", "ω [rad/s]", "α [rad/s²]", "a_Bx [m/s²]", "a_By [m/s²]", "what happens")
+    heads = ("Load case", "", "ω [rad/s]", "α [rad/s²]", "a of B, x [m/s²]", "y [m/s²]", "what happens")
     for column in range(2, page.columns + 1):
         page.put(column, heads[column - 2] if column - 2 < len(heads) else None, "RS head")
     page.sheet.row_dimensions[page.row].height = 16.0
@@ -157,11 +135,15 @@ def _cases(page: Page, given: Inputs, ramp: Place, stop: Place, carriage: Place)
             form = '"±"0.0000' if column == ALPHA and case.alpha == "ramp" else "0.0000"
             page.put(column, page.book.guarded(formula), "RS number", form=form)
         for column in range(8, page.columns + 1):
-            page.put(column, case.text if column == 8 else None, "RS text")
+            text = page.put(column, case.text if column == 8 else None, "RS text")
+            text.alignment = INDENT
         page.row += 1
     page.prose(
-        ("ω, α counter-clockwise +: lifting. a_B: acceleration of the pivot, forward +. ±: the side that asks more of the drive.",)
-    )  # fmt: skip
+        (
+            "ω, α counter-clockwise +: lifting. a of B: acceleration of the pivot, forward +. "
+            "±: the side that asks more of the drive.",
+        )
+    )
     return first
 
 
@@ -188,12 +170,14 @@ class Table:
 
 def angle_table(book: Book, given: Inputs, work: Work) -> Table:
     """Write drive torque, torque of motor or brake, and pin load over the arm's angle."""
-    page = book.page("Angles", (6.4, 6.4, 6.4, *([6.6] * (PIN + len(CASES) - TORQUE))), landscape=True, lead=1)
+    page = book.page(
+        "Angles", (6.4, 6.4, 6.4, *([6.6] * (PIN + len(CASES) - TORQUE))), landscape=True, lead=1
+    )
     page.title_block(repeat_rows=9)
     page.prose(
         (
-            "T = I_B α + m (g r_x − r_y a_Bx);  motor: T / (i η) while it drives, T η / i while the load drives, + J i α; "
-            "brake at rest: T / i.   Pin: m (a_Bx − α r_y − ω² r_x, g + α r_x − ω² r_y), its size.",
+            "T = I_B α + m (g r_x − r_y a_{Bx}).  Motor: T / (i η) while it drives, T η / i while the load drives, "
+            "+ J i α; brake at rest: T / i.   Pin: m (a_{Bx} − α r_y − ω² r_x, g + α r_x − ω² r_y), its size.",
         )
     )
     _heads(page)
@@ -218,11 +202,11 @@ def _heads(page: Page) -> None:
     page.row += 1
     page.sheet.row_dimensions[page.row].height = 38.0
     words = (
-        *("angle", "r_x", "r_y"), *NAMES, "stop lowering, pivot as fixed", *NAMES, *NAMES,
+        *("angle", "x of G", "y of G"), *NAMES, "stop while lowering, pivot as fixed", *NAMES, *NAMES,
     )  # fmt: skip
     units = ("deg", "m", "m", *(["N*m"] * (2 * len(CASES) + 1)), *(["N"] * len(CASES)))
     for column, (word, unit) in enumerate(zip(words, units, strict=True), 1):
-        cell = page.put(column, word.replace("r_", "r"), "RS head")
+        cell = page.put(column, word.replace(" ", "\n") if word in NAMES else word, "RS head")
         cell.font = Font(name=SANS, size=7, bold=True, color=INK)
         page.put(column, unit, "RS column", row=page.row + 1)
     page.row += 2
@@ -248,7 +232,9 @@ def _row(book: Book, given: Inputs, work: Work, table: Table, row: int, angle: s
     cells[FIXED] = (f"{inertia}*{work.case(ALPHA, STOP_LOWERING)}+{m}*{g}*{rx}", "#,##0")
     page.sheet.row_dimensions[row].height = 12.0
     for column, (formula, form) in cells.items():
-        page.put(column, book.guarded(formula), "RS number", row=row, form=form)
+        cell = page.put(column, book.guarded(formula), "RS number", row=row, form=form)
+        if column in (TORQUE, FIXED, EFFORT, PIN):
+            cell.border = Border(left=Side("thin", color=HAIR), bottom=Side("hair", color=HAIR))
 
 
 def _alpha(case: Case, work: Work, k: int, torque: str) -> str:

@@ -8,6 +8,19 @@ from typing import Any
 from .kit import Page
 from .kit_charts import Curve
 from .kit_look import INK
+from .kit_parts import PartsTable
+
+
+def parts_reach(parts: PartsTable, column: int) -> str:
+    """Write, beside the printed part of a parts list, how far its parts reach from the origin; give that cell."""
+    page = parts.page
+    for row in range(parts.first, parts.last + 1):
+        x, y, length, width, od = (parts.si(label, row) for label in ("x", "y", "L", "W", "OD"))
+        half = f"SQRT((({length})*({width}>0))^2+({width})^2+({od})^2)/2"
+        page.put(column, page.book.guarded(f"SQRT(({x})^2+({y})^2)+{half}"), "RS si", row=row, form="0.000")
+    cells = page.span((parts.first, column), (parts.last, column))
+    page.put(column, page.book.guarded(f"MAX(0.001,MAX({cells}))"), "RS si", row=parts.last + 1, form="0.000")
+    return page.at(column, parts.last + 1)
 
 
 class Points:
@@ -31,6 +44,23 @@ class Points:
         x, y = (sheet, self.column, first, last), (sheet, self.column + 1, first, last)
         self.curves.append(Curve(name, x, y, **look))
         self.column += 2
+
+    def part(self, parts: PartsTable, row: int, turn: str, **look: Any) -> None:
+        """Add the outline of a box or a tube of a parts list, the whole list turned about the origin."""
+        x, y, length, width, od = (parts.si(label, row) for label in ("x", "y", "L", "W", "OD"))
+        angle, box = f"({parts.si('turn z', row)}+{turn})", f'{parts.cell("W", row)}<>""'
+        corners = []
+        for k in range(13):
+            sx, sy = ((1, 1), (-1, 1), (-1, -1), (1, -1), (1, 1))[k // 3]
+            u = f"IF({box},{sx}*({length})/2,({od})/2*COS({k}*PI()/6))"
+            v = f"IF({box},{sy}*({width})/2,({od})/2*SIN({k}*PI()/6))"
+            corners.append(
+                (
+                    f"({x})*COS({turn})-({y})*SIN({turn})+{u}*COS({angle})-{v}*SIN({angle})",
+                    f"({x})*SIN({turn})+({y})*COS({turn})+{u}*SIN({angle})+{v}*COS({angle})",
+                )
+            )
+        self.add(f"part {row - parts.first + 1}", corners, **look)
 
     def label(self, text: str, point: tuple[str, str], **look: Any) -> None:
         """Add a text beside a point; `text` is a formula, so that it can hold a number of the sheet."""
