@@ -269,7 +269,7 @@ def _drive(page: Page, got: dict[str, Any]) -> None:
 
 
 def _looking(page: Page, got: dict[str, Any]) -> None:
-    page.section("Position to look at: sketch and working", page.INPUT_WORDS)
+    page.section("Position to look at", page.INPUT_WORDS)
     got["look_tilt"] = page.quantity(
         "Tilt", "φ", 35, "deg", "look_tilt", kinds.ANGLE, limit=NOT_NEGATIVE, note="up to the tilt at the end"
     )

@@ -144,7 +144,7 @@ def _motion(page: Page, given: Inputs) -> tuple[Place, Place, Place, Place, Plac
         note="ω_0 = φ_1 / (T − t_r)",
     )
     acceleration = page.derived(
-        "Acceleration while speeding up and slowing down",
+        "Acceleration, speeding up and slowing down",
         "α",
         f"{speed.si}/{ramp}",
         kinds.ANGULAR_ACCELERATION,
@@ -245,7 +245,7 @@ def _drive_shares(page: Page, given: Inputs) -> tuple[str, str]:
     cells = []
     z1, z2, z = given.hinge_1.si, given.hinge_2.si, given.cylinder["cylinder_z"].si
     for name, this, other in (("1", z1, z2), ("2", z2, z1)):
-        page.put(2, f"Part of the cylinder's force that counts for hinge {name}", "RS label")
+        page.put(2, f"Cylinder's part that counts for hinge {name}", "RS label")
         page.put(3, rich(f"c_{name}", 10, italic=True, serif=True), "RS symbol")
         share = f"IF({given.by_cylinder},({z}-{other})/({this}-{other}),0)"
         page.put(4, page.book.guarded(share), "RS number")
