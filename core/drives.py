@@ -219,6 +219,8 @@ def motor_torque(torque: Number, ratio: Number, efficiency: Number, load_speed: 
     ----------
     Common practice in drive sizing; from the definition of efficiency.
     """
+    if isinstance(torque, float) and isinstance(efficiency, float) and isinstance(load_speed, float):
+        return torque / ratio / efficiency if torque * load_speed >= 0.0 else torque / ratio * efficiency
     drives = np.asarray(torque) * load_speed >= 0
     factor = np.where(drives, 1.0 / np.asarray(efficiency), efficiency)
     answer = torque / ratio * factor

@@ -9,7 +9,7 @@ from math import isfinite
 import numpy as np
 from numpy.typing import ArrayLike
 
-from .body import RigidBody, combine_arrays
+from .body import RigidBody
 from .errors import InputError
 from .outlines import (
     TOUCHING,
@@ -71,21 +71,21 @@ def plate_body(
 
 @dataclass(frozen=True, eq=False, slots=True)
 class Section:
-    """The flat section of a plate: its outline and holes as pieces, holes with a negative area.
+    """The flat section of a plate, its holes taken out.
 
     Parameters
     ----------
-    areas : ndarray, shape (n,)
-        Area of each piece [m^2].
-    centers : ndarray, shape (n, 3)
-        Center of each piece, z = 0 [m].
-    spreads : ndarray, shape (n, 3)
-        Means of x^2, y^2 and xy over each piece, about its center [m^2].
+    area : float
+        Area [m^2].
+    center : ndarray, shape (3,)
+        Center of the area, z = 0 [m].
+    spread : ndarray, shape (3,)
+        Means of x^2, y^2 and xy over the area, about its center [m^2].
     """
 
-    areas: Points
-    centers: Points
-    spreads: Points
+    area: float
+    center: Points
+    spread: Points
 
 
 def plate_section(
@@ -105,7 +105,7 @@ def plate_section(
     Returns
     -------
     Section
-        Areas [m^2], centers [m] and spreads [m^2].
+        Area [m^2], center [m] and spread [m^2].
 
     Raises
     ------
@@ -127,9 +127,17 @@ def plate_section(
     _check_round_holes(corners, cuts, rounds)
     pieces = [area_sums(corners), *(area_sums(cut) for cut in cuts), *(_circle_sums(row) for row in rounds)]
     signs = np.array([1.0] + [-1.0] * (len(pieces) - 1))
-    centers = np.array([[*piece.center, 0.0] for piece in pieces])
-    spreads = np.array([piece.spread for piece in pieces])
-    return Section(signs * [piece.area for piece in pieces], centers, spreads)
+    shares = signs * [piece.area for piece in pieces]
+    area = float(shares.sum())
+    shares = shares / area
+    # From the outline's own center, so that a plate far from the origin loses no digits.
+    arms = np.array([piece.center for piece in pieces]) - pieces[0].center
+    middle = shares @ arms
+    x, y = (arms - middle).T
+    spread = shares @ (
+        np.array([piece.spread for piece in pieces]) + np.stack([x * x, y * y, x * y], axis=-1)
+    )
+    return Section(area, np.array([*(pieces[0].center + middle), 0.0]), spread)
 
 
 def section_body(section: Section, thickness: float, density: float) -> RigidBody:
@@ -165,19 +173,11 @@ def section_body(section: Section, thickness: float, density: float) -> RigidBod
     for name, value in (("thickness", thickness), ("density", density)):
         if not (isfinite(value) and value > 0.0):
             raise InputError(name, "a positive number", float(value))
-    masses = density * thickness * section.areas
-    tensors = _unit_tensors(section.spreads, thickness)
-    return combine_arrays(masses, section.centers, masses[:, None, None] * tensors)
-
-
-def _unit_tensors(spreads: Points, thickness: float) -> Points:
-    """Return the tensors per unit mass of prisms from the means of x^2, y^2 and xy of their sections."""
-    xx, yy, xy = spreads.T
-    zz = thickness**2 / 12.0
-    out = np.zeros((len(spreads), 3, 3))
-    out[:, 0, 0], out[:, 1, 1], out[:, 2, 2] = yy + zz, xx + zz, xx + yy
-    out[:, 0, 1] = out[:, 1, 0] = -xy
-    return out
+    mass = density * thickness * section.area
+    xx, yy, xy = section.spread.tolist()
+    zz = thickness * thickness / 12.0
+    tensor = [[yy + zz, -xy, 0.0], [-xy, xx + zz, 0.0], [0.0, 0.0, xx + yy]]
+    return RigidBody.of(mass, section.center, mass * np.array(tensor))
 
 
 def _circle_sums(row: Points) -> AreaSums:

@@ -77,6 +77,11 @@ def kernel_time(name: str, cells: list[Any]) -> float:
         return best(lambda: ready.function.kernel(*own))
 
 
+SHIFT = ["6.1 kg*m^2", "38 kg", "780 mm", "lb*ft^2"]
+GEARED = ["2.4 kN*m", "180", "0.86", OMITTED, "12 rpm"]
+MOVING = ["49.2 kg*m^2", "166 kg", "(1.434, 1.004) m", "12 deg/s", "1.1 rad/s^2", "(-1.8, 0.4) m/s^2"]
+
+
 def text_lines() -> Iterator[Line]:
     """Quantities as text against the same formula in plain pint quantities."""
     import pint
@@ -95,10 +100,19 @@ def text_lines() -> Iterator[Line]:
         driven = torque / ratio / efficiency if power.magnitude > 0 else torque / ratio * efficiency
         return float(driven.to("N*m").magnitude)
 
-    for label, name, cells, other in (
-        ("three quantities and a unit, RB_SHIFT", "RB_SHIFT", ["6.1 kg*m^2", "38 kg", "780 mm", "lb*ft^2"], shift),
-        ("four quantities, RB_MOTOR_TORQUE", "RB_MOTOR_TORQUE", ["2.4 kN*m", "180", "0.86", OMITTED, "12 rpm"], motor),
-    ):  # fmt: skip
+    def moments() -> float:
+        inertia, mass, alpha = quantity("49.2 kg*m^2"), quantity("166 kg"), quantity("1.1 rad/s^2")
+        x, y = quantity("1.434 m"), quantity("1.004 m")
+        ax, ay = quantity("-1.8 m/s^2") - alpha * y, quantity("0.4 m/s^2") + alpha * x
+        return float((inertia * alpha + mass * (x * ay - y * ax)).to("N*m").magnitude)
+
+    calls = (
+        ("four texts, one the unit asked for", "RB_SHIFT", SHIFT, shift),
+        ("four quantities, two of them bare", "RB_MOTOR_TORQUE", GEARED, motor),
+        ("six arguments", "RB_MOMENT_SUM", MOVING, moments),
+    )
+    for words, name, cells, other in calls:
+        label = f"{words}, {name}"
         ours, theirs = best(calling(name, cells)), best(other)
         assert abs(call(name, cells) / other() - 1) < 1e-12
         yield f"{label}: faster than pint", 50.0, theirs / ours, "x", True

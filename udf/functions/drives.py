@@ -4,8 +4,6 @@ from __future__ import annotations
 
 from typing import Any
 
-import numpy as np
-
 from ...core import drives
 from .. import kinds
 from ..arguments import Scalar
@@ -27,8 +25,7 @@ def reflected_working(values: tuple[Any, ...], answer: Any) -> list[str]:
 
 def motor_torque(torque: Any, ratio: Any, efficiency: Any, load_speed: Any) -> Any:
     # Without a speed the motor is taken to drive, which asks more of it.
-    speed = np.sign(torque) if load_speed is None else load_speed
-    return drives.motor_torque(torque, ratio, efficiency, speed)
+    return drives.motor_torque(torque, ratio, efficiency, torque if load_speed is None else load_speed)
 
 
 def motor_working(values: tuple[Any, ...], answer: Any) -> list[str]:
