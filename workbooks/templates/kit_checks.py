@@ -24,8 +24,8 @@ SHOWN: Final = ((FACTOR, "factor", "0.00"), (USED, "utilization", "0%"), (MARGIN
 class Check:
     """One row: formulas as texts, without the leading equals sign.
 
-    `demand` is in the unit that `unit` (a formula) gives; `capacity` too. `when` is the condition under which
-    the check counts at all.
+    `demand` is in the unit that `unit` gives (a formula; empty for plain numbers); `capacity` too. `when` is
+    the condition under which the check counts at all.
     """
 
     label: str
@@ -94,9 +94,10 @@ class Checks:
     def add(self, check: Check) -> None:
         """Write a check and name its demand and its verdict."""
         page, row = self.page, self.page.row
+        bare = 0 if check.unit else 1  # numbers without a unit stand alone
         demand, capacity = (
-            page.span((row, DEMAND), (row, DEMAND_UNIT)),
-            page.span((row, CAPACITY), (row, CAPACITY_UNIT)),
+            page.span((row, first), (row, unit - bare))
+            for first, unit in ((DEMAND, DEMAND_UNIT), (CAPACITY, CAPACITY_UNIT))
         )
         required = page.at(REQUIRED)
         page.sheet.row_dimensions[row].height = 16.0
@@ -111,7 +112,7 @@ class Checks:
             (REQUIRED, check.required),
         ):
             style = "RS text" if column in (CASE, DEMAND_UNIT, CAPACITY_UNIT) else "RS value"
-            page.put(column, self._formula(formula, check.when), style)
+            page.put(column, self._formula(formula, check.when) if formula else None, style)
         page.sheet.cell(row, AT).number_format = "0.0"
         page.sheet.cell(row, REQUIRED).number_format = "0.00;;" if check.plain else "0.00"
         pair = f"{demand},{capacity}" if check.sense == "at most" else f"{capacity},{demand}"
