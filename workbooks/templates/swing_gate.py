@@ -174,7 +174,8 @@ def inputs(book: Book) -> tuple[Inputs, Page, int]:
     parts = parts_table(page, [*PARTS, *([None] * FREE_ROWS)], turned_about("y"))
     page.prose(
         (
-            "x along the leaf from the hinge axis to the tip, y square to it, z up from the yard: place of the mass center of each part. "
+            "x along the leaf from the hinge axis to the tip, y square to it, z up from the "
+            "yard: place of the mass center of each part. "
             "turn y: turned about its own mass center, + from z toward x.",
             "Give the mass or the density of a part, not both. A quantity of -1 is a cut-out. "
             "Boxes: L along x, W along y, H along z; hollow boxes are open along x; tubes: L along z.",
@@ -195,11 +196,12 @@ def _leaf(rows: _Rows) -> None:
     rows.add("hinge_1_z", "Lower hinge above the yard", "z_1", 300, "mm", length, limit=NOT_NEGATIVE)
     rows.add("hinge_2_z", "Upper hinge above the yard", "z_2", 1500, "mm", length, limit=POSITIVE)
     _distance(rows)
-    rows.choose("axial_hinge", "The axial load is carried by the", LOWER, (LOWER, UPPER), "thrust bearing")
+    rows.choose("axial_hinge", "Thrust bearing, axial load: in the", LOWER, (LOWER, UPPER))
 
 
 def _distance(rows: _Rows) -> None:
-    """Write the distance of the hinges; nothing is solved while the upper one does not stand above the lower."""
+    """Write the distance of the hinges; nothing is solved while the upper one does not stand "
+    "above the lower."""
     page, low, high = rows.page, rows.got["hinge_1_z"].si, rows.got["hinge_2_z"].si
     rows.got["distance"] = Place(page.name, page.row, page.VALUE, page.UNIT, page.SI)
     why = "the upper hinge must stand above the lower"
@@ -309,11 +311,18 @@ def _assumptions(page: Page) -> None:
     page.section("Assumptions")
     page.prose(
         (
-            "Rigid leaf and posts, hinge axis upright. One hinge alone carries the axial load; both carry radial loads. Two thrust bearings would share it by chance.",
-            "The axes go with the leaf: a load case holds at every opening angle, with the wind taken square to the leaf on the side that is worse.",
-            "Largest speed and largest acceleration are taken together: so it is at the end of an even ramp; with the cycloidal law it is on the safe side.",
-            "Gearmotor and brake turn the hinge axis with a couple and put no side load on the hinges; hand and latch push square to the leaf.",
-            "The brake takes the speed off evenly, the rotor's part included; the gearbox loses nothing then. Hinge friction counts while the gate speeds up, and is left out where it would help.",
-            "Wind force: pressure x force coefficient x solid part of the area, at the middle of the leaf. The person hangs still; nobody rides on the moving gate.",
+            "Rigid leaf and posts, hinge axis upright. One hinge alone carries the axial load; "
+            "both carry radial loads. Two thrust bearings would share it by chance.",
+            "The axes go with the leaf: a load case holds at every opening angle, with the wind "
+            "taken square to the leaf on the side that is worse.",
+            "Largest speed and largest acceleration are taken together: so it is at the end of "
+            "an even ramp; with the cycloidal law it is on the safe side.",
+            "Gearmotor and brake turn the hinge axis with a couple and put no side load on the "
+            "hinges; hand and latch push square to the leaf.",
+            "The brake takes the speed off evenly, the rotor's part included; the gearbox loses "
+            "nothing then. Hinge friction counts while the gate speeds up, and is left out "
+            "where it would help.",
+            "Wind force: pressure x force coefficient x solid part of the area, at the middle "
+            "of the leaf. The person hangs still; nobody rides on the moving gate.",
         )
     )

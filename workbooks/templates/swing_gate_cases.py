@@ -106,9 +106,11 @@ def cases(book: Book, given: Inputs, work: Work) -> Cases:
     page.row += 1 + len(CASES)
     page.prose(
         (
-            "x along the leaf to the tip, y square to it, z up; forces and couples on the leaf. The turn is held with a couple of gearmotor "
+            "x along the leaf to the tip, y square to it, z up; forces and couples on the leaf. "
+            "The turn is held with a couple of gearmotor "
             "or brake, or with a force of hand or latch along y.",
-            "Motor: torque / (i η) while it drives, torque η / i while the gate drives it, and J i α for its rotor. "
+            "Motor: torque / (i η) while it drives, torque η / i while the gate drives it, and "
+            "J i α for its rotor. "
             "Brake: with J i² α for the rotor. Rest: moment left over in the balance about a second point.",
         )
     )
@@ -247,7 +249,8 @@ def _support_rows(
 
 
 def _results(page: Page, given: Inputs, work: Work, row: int, case: Case, card: Card) -> dict[str, str]:
-    """Write what RB_REACTIONS_3D gives for a case, and what drive, hand, brake and latch must give for it."""
+    """Write what RB_REACTIONS_3D gives for a case, and what drive, hand, brake and latch must "
+    "give for it."""
     page.put(2, case.name, "RS text", row=row)
     page.put(3, page.book.guarded(held_by(case, given)), "RS text", row=row)
     for column in (4, 5, 13):

@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from typing import Final
 
-from .kit import Book, Page
+from .kit import Book
 from .kit_charts import bar_chart
+from .kit_checks import CAPACITY, DEMAND, Check, Checks
 from .kit_checks import COLUMNS as CHECK_COLUMNS
-from .kit_checks import Check, Checks
 from .swing_gate import CASES, Inputs
 from .swing_gate_cases import COLUMN_OF, Cases
 from .swing_gate_working import Work
@@ -44,6 +44,9 @@ def checks(book: Book, given: Inputs, work: Work, cases: Cases, gaps: str) -> No
     limits, sums = _limits(given, work, cases), _calculation(given, work, cases, gaps)
     for check in (*_hinges(given, cases), *_holding(given, work, cases), *limits, *sums):
         rows.add(check)
+        if check in sums:  # tiny numbers
+            for column in (DEMAND, CAPACITY):
+                page.sheet.cell(page.row - 1, column).number_format = "0.0E+00"
     verdict = f'=IF({book.ready_ref}=1,{rows.end()},"Not checked yet: inputs are missing or refused.")'
     page.put(2, verdict, "RS status", row=head)
     book.name("verdict", page.at(2, head))

@@ -14,6 +14,7 @@ LEAF = "2E4A3D"
 ARROW = 0.3  # length of the longest arrow, as a part of the reach
 SKETCH_AT = "J"  # column of the sheet of inputs where the sketches stand
 WIDTH = 103.0  # mm
+WIDE_AT, WIDE = "I", 118.0  # the one from the side
 
 
 def elevation(given: Inputs, work: Work, looked: Looked, page: Page, row: int) -> None:
@@ -37,30 +38,42 @@ def elevation(given: Inputs, work: Work, looked: Looked, page: Page, row: int) -
     person = f"(-{looked.card.cells['person']})"
     largest = f"MAX({f['look_weight']},{f['look_axial']},ABS({f['look_1x']}),ABS({f['look_2x']}))"
     scale = f"{ARROW}*{reach}/{largest}"
-    below = given.axial_below
-    tip = given.tip, given.top
-    for name, tail, (fx, fz), color, label, side in (
-        ("weight", center, ("0", f"-{f['look_weight']}"), WARM, f"{f['look_weight']}", "r"),
-        ("person", tip, ("0", f"-{person}"), WARM, person, "r"),
-        ("", ("0", z_1), (f["look_1x"], "0"), INK, f"{f['look_1x']}", "b"),
-        ("", ("0", z_2), (f["look_2x"], "0"), INK, f"{f['look_2x']}", "t"),
-        ("axial", ("0", f"IF({below},{z_1},{z_2})"), ("0", f["look_axial"]), RULE, f"{f['look_axial']}", "r"),
-    ):
-        step = f"({fx})*{scale}", f"({fz})*{scale}"
-        points.arrow(name or "hinge force", tail, step, color=color)
-        end = f"({tail[0]})+({fx})*{scale}", f"({tail[1]})+({fz})*{scale}"
-        points.label(_words(name, label, "N"), end, color=color, side=side)
-    window = (-0.42, 1.42, -0.12, 0.66)
+    z_a = f"IF({given.axial_below},{z_1},{z_2})"
+    low = f"-0.02*{reach}"
+    labels = {
+        "weight": ((center[0], low), "b"),
+        "person": ((given.tip, f"{given.top}-{person}*{scale}/2"), "r"),
+        "axial": (("0", f"{z_a}-{f['look_axial']}*{scale}"), "r"),
+        "lower": ((f"-0.5*ABS({f['look_1x']})*{scale}", z_1), "t"),
+        "upper": ((f"-0.5*ABS({f['look_2x']})*{scale}", z_2), "t"),
+    }
+
+    def beside(force: str) -> str:
+        """Keep an arrow on the post's side of the hinge: its tip at the hinge when it pushes the leaf away."""
+        return f"-MAX(0,{force})*{scale}"
+
+    arrows = (
+        ("weight", center, ("0", f"-{f['look_weight']}"), f["look_weight"], WARM),
+        ("person", (given.tip, given.top), ("0", f"-{person}"), person, WARM),
+        ("axial", ("0", f"{z_a}-{f['look_axial']}*{scale}"), ("0", f["look_axial"]), f["look_axial"], RULE),
+        ("lower", (beside(f["look_1x"]), z_1), (f["look_1x"], "0"), f["look_1x"], INK),
+        ("upper", (beside(f["look_2x"]), z_2), (f["look_2x"], "0"), f["look_2x"], INK),
+    )
+    for name, tail, (fx, fz), amount, color in arrows:
+        points.arrow(name, tail, (f"({fx})*{scale}", f"({fz})*{scale}"), color=color)
+        place, side = labels[name]
+        points.label(_words(name, amount, "N"), place, color=color, side=side)
+    window = (-0.42, 1.38, -0.2, 0.62)
     sketch_chart(
         page,
-        f"{SKETCH_AT}{row}",
+        f"{WIDE_AT}{row}",
         points.curves,
-        width=WIDTH,
+        width=WIDE,
         title="Load case looked at, from the side",
         window=window,
     )
-    note = "○ mass center  ● hinge; forces on the leaf in the plane of x and z"
-    page.put(10, note, "RS note", row=row + 15)
+    note = "● two hinges on the axis, mass center in the leaf; forces on the leaf in the plane of x and z"
+    page.put(10, note, "RS note", row=row + 13)
 
 
 def plan(given: Inputs, work: Work, looked: Looked, page: Page, row: int) -> None:
@@ -91,14 +104,14 @@ def plan(given: Inputs, work: Work, looked: Looked, page: Page, row: int) -> Non
         tail = _turned(along, "0", phi)
         end = _turned(along, f"({amount})*{scale}", phi)
         points.arrow(name, tail, (f"({end[0]})-({tail[0]})", f"({end[1]})-({tail[1]})"), color=color)
-        points.label(_words(name, amount, "N"), end, color=color)
+        points.label(_words(name, amount, "N"), end, color=color, side="t" if name == "wind" else "r")
     _couple(points, f["look_torque"], cells["turn 0"], reach, phi)
     window = (-0.6, 1.35, -0.35, 1.15)
     sketch_chart(
         page, f"{SKETCH_AT}{row + 1}", points.curves, width=WIDTH, title="From above, opening at the angle drawn",
         window=window,
     )  # fmt: skip
-    page.put(10, "○ mass center  ● hinge axis; forces on the leaf square to it", "RS note", row=row + 20)
+    page.put(10, "● hinge axis, mass center on the leaf; forces on the leaf square to it", "RS note", row=row + 20)
 
 
 def _scale(page: Page, column: int, row: int, formula: str) -> str:

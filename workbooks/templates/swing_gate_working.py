@@ -255,7 +255,8 @@ def _pocket(rows: _Rows, given: Inputs, work: Work, card: Card) -> None:
                "M_x = I_{zx} α − I_{yz} ω²")  # fmt: skip
     m_y = step("my", "Moment that the motion asks, y", "M_y", f"{i_yz}*{alpha}+{i_zx}*{omega}^2", kinds.TORQUE, "N*m",
                "M_y = I_{yz} α + I_{zx} ω²")  # fmt: skip
-    x_2 = step("2x", "Upper hinge, along x", "F_{2x}", f"({m_y}-{z_1}*{m}*{a_x}-{x}*{weight}-{c['person x']}*{p})/{a}", force, "N",
+    about_y = f"({m_y}-{z_1}*{m}*{a_x}-{x}*{weight}-{c['person x']}*{p})/{a}"
+    x_2 = step("2x", "Upper hinge, along x", "F_{2x}", about_y, force, "N",
                "F_{2x} = (M_y − z_1 m a_x − x_G G − x_P P) / a")  # fmt: skip
     x_1 = step(
         "1x", "Lower hinge, along x", "F_{1x}", f"{m}*{a_x}-{x_2}", force, "N", "F_{1x} = m a_x − F_{2x}"
