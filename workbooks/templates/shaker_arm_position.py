@@ -1,0 +1,392 @@
+"""The shaker arm's working: load cases in SI, then one crank angle through the functions."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import Final
+
+from rigidsheet.udf import kinds
+from rigidsheet.udf.kinds import Kind
+
+from .kit import Book, Place
+from .kit_look import LEFT, SOFT, rich
+from .shaker_arm import Given
+from .shaker_arm_tables import LOST, Table
+from .shaker_arm_working import Work
+
+VECTOR_WORDS: Final = {4: "size", 5: "unit", 6: "x", 7: "y", 8: "unit"}
+STILL, STEADY = '"(0, 0) m/s"', '"(0, 0) m/s^2"'  # velocity and acceleration of the crank shaft
+AT_REST: Final = "omega 0 rad/s; alpha 0 rad/s^2; center acceleration (0, 0) m/s^2; gravity down"
+
+
+@dataclass(frozen=True, slots=True)
+class Vector:
+    """A vector on the sheet: its components and unit, and its components in SI."""
+
+    ref: str  # x, y, unit: hand this to functions
+    x: str
+    y: str
+
+
+@dataclass(slots=True)
+class Looked:
+    """References to what the functions say about the position looked at."""
+
+    angle: str = ""  # of the arm, in SI
+    vectors: dict[str, Vector] = field(default_factory=dict)
+    gaps: str = ""  # differences between functions and tables
+    residual: str = ""  # of the far end across its guide, in m/s^2
+
+
+class Position:
+    """Writes the rows of one position, and keeps what later rows need."""
+
+    def __init__(self, book: Book, given: Given, work: Work) -> None:
+        self.book, self.page, self.given, self.work = book, work.page, given, work
+        self.number, self.looked = given["look_case"].si, Looked()
+        self.scalars: dict[str, Place] = {}
+
+    def scalar(
+        self, key: str, label: str, symbol: str, formula: str, kind: Kind, unit: str, note: str = ""
+    ) -> str:
+        """Write a number worked out in SI; give its reference."""
+        place = self.page.derived(label, symbol, formula, kind, unit, f"look_{key}", note=note)
+        self.scalars[key] = place
+        return place.si
+
+    def vector(
+        self,
+        key: str,
+        label: str,
+        symbol: str,
+        formula: str | tuple[str, str],
+        kind: Kind,
+        unit: str,
+        note: str = "",
+    ) -> str:
+        """Write a vector from a function (`{unit}` is its unit) or from two numbers in SI; give it with its unit."""
+        page, row = self.page, self.page.row
+        page.put(page.LABEL, label, "RS label")
+        page.put(page.SYMBOL, rich(symbol, 10, italic=True, serif=True), "RS symbol")
+        page.put(page.UNIT, unit, "RS unit")
+        page.unit_choices(page.UNIT, kind)
+        where = page.at(page.UNIT)
+        for k, column in enumerate((6, 7)):
+            if isinstance(formula, str):
+                text = f"INDEX({formula.replace('{unit}', where)},1,{k + 1})"
+            else:
+                text = f'({formula[k]})*RB_CONVERT("1 {kind.si}",{where})'
+            page.put(column, self.book.guarded(text), "RS value")
+        x, y = page.at(6), page.at(7)
+        page.put(page.VALUE, self.book.guarded(f"SQRT({x}^2+{y}^2)"), "RS value")
+        page.put(8, f"={where}", "RS unit fixed")
+        page.put(9, rich(note, 8, italic=True, color=SOFT) or None, "RS note")
+        for name, cell in (("", page.at(page.VALUE)), ("_x", x), ("_y", y)):
+            self.book.name(f"look_{key}{name}", cell)
+        si = f'*RB_CONVERT("1 "&{where},"{kind.si}")'
+        self.looked.vectors[key] = Vector(page.span((row, 6), (row, 8)), f"({x}{si})", f"({y}{si})")
+        page.row += 1
+        return self.looked.vectors[key].ref
+
+    def on_arm(self, u: str, v: str) -> tuple[str, str]:
+        """Return along x and y what is given along and across the arm."""
+        phi = self.looked.angle
+        return f"{u}*COS({phi})-({v})*SIN({phi})", f"{u}*SIN({phi})+({v})*COS({phi})"
+
+    def along(self, x: str, y: str) -> tuple[str, str]:
+        """Return along and across the arm what is given along x and y."""
+        phi = self.looked.angle
+        return f"(({x})*COS({phi})+({y})*SIN({phi}))", f"(({y})*COS({phi})-({x})*SIN({phi}))"
+
+    def acceleration(self, arm: str, what: str = "total") -> str:
+        """Return RB_ACCELERATION_AT of a point of the arm."""
+        motion = f"{self.scalars['arm_omega'].pair},{self.scalars['arm_alpha'].pair}"
+        return f'RB_ACCELERATION_AT({self.looked.vectors["pin_acceleration"].ref},{motion},{arm},"{what}",{{unit}})'
+
+
+def position(book: Book, given: Given, work: Work, arm: Table, tray: Table) -> Looked:
+    """Write one position through the functions, in sheet axes, and compare it with the tables."""
+    page = work.page
+    page.section("The position looked at: crank, arm and instant center", VECTOR_WORDS)
+    at = Position(book, given, work)
+    _linkage(at)
+    page.section("Sensor S: tangential and centripetal parts", VECTOR_WORDS)
+    functions, sensor = _sensor(at)
+    page.section("Pusher P while it slides out: with the Coriolis part", VECTOR_WORDS)
+    loads, pusher = _pusher(at)
+    page.page_break()
+    page.section("Tray: do its feet stay down, does it slip?", VECTOR_WORDS)
+    contact, reactions = _tray(at)
+    _compare(at, arm, tray, {**functions, **loads, **contact})
+    _steps(at, ((sensor, 5), (pusher, 6), (reactions, 9)))
+    return at.looked
+
+
+def _linkage(at: Position) -> None:
+    g, angle, speed, rise = at.given, kinds.ANGLE, kinds.ANGULAR_VELOCITY, kinds.ANGULAR_ACCELERATION
+    r, length, e = g["crank"].si, g["arm"].si, g["guide"].si
+    theta = g["look_angle"].si
+    first, last = at.work.speeds[0], at.work.speeds[-1].rpartition("!")[2]
+    omega = at.scalar("omega", "Crank speed", "ω", f"INDEX({first}:{last},{at.number})", speed, "rad/s")
+    first, last = at.work.accelerations[0], at.work.accelerations[-1].rpartition("!")[2]
+    alpha = at.scalar(
+        "alpha", "Crank acceleration", "α", f"INDEX({first}:{last},{at.number})", rise, "rad/s^2"
+    )
+    phi = f"ASIN(({e}-{r}*SIN({theta}))/{length})"
+    phi = at.scalar("arm_angle", "Arm angle from x", "φ", phi, angle, "deg", "sin φ = (e − r sin θ) / l")
+    at.looked.angle = phi
+    turn = f"-{r}*{omega}*COS({theta})/({length}*COS({phi}))"
+    note = "ω_a = −r ω cos θ / (l cos φ)"
+    turn = at.scalar("arm_omega", "Arm: angular velocity", "ω_a", turn, speed, "rad/s", note)
+    spin = f"({r}*({omega}^2*SIN({theta})-{alpha}*COS({theta}))+{length}*{turn}^2*SIN({phi}))/({length}*COS({phi}))"
+    note = "α_a = (r (ω² sin θ − α cos θ) + l ω_a² sin φ) / (l cos φ)"
+    at.scalar("arm_alpha", "Arm: angular acceleration", "α_a", spin, rise, "rad/s^2", note)
+    move, quick, length_kind = kinds.VELOCITY, kinds.ACCELERATION, kinds.LENGTH
+    pair = {key: at.scalars[key].pair for key in at.scalars}
+    pin = at.vector(
+        "pin",
+        "Crank pin A, from the crank shaft",
+        "r_A",
+        (f"{r}*COS({theta})", f"{r}*SIN({theta})"),
+        length_kind,
+        "mm",
+    )
+    v = f"RB_VELOCITY_AT({STILL},{pair['omega']},{pin},{{unit}})"
+    a = f'RB_ACCELERATION_AT({STEADY},{pair["omega"]},{pair["alpha"]},{pin},"total",{{unit}})'
+    v = at.vector("pin_velocity", "Velocity of A", "v_A", v, move, "m/s", "RB_VELOCITY_AT")
+    at.vector("pin_acceleration", "Acceleration of A", "a_A", a, quick, "m/s^2", "RB_ACCELERATION_AT")
+    far = at.vector("far", "Far end B, from A", "r_AB", at.on_arm(length, "0"), length_kind, "mm")
+    v = f"RB_VELOCITY_AT({v},{pair['arm_omega']},{far},{{unit}})"
+    at.vector("far_velocity", "Velocity of B", "v_B", v, move, "m/s", "y must be 0: level guide")
+    at.vector(
+        "far_acceleration", "Acceleration of B", "a_B", at.acceleration(far), quick, "m/s^2", "y must be 0"
+    )
+    at.looked.residual = at.looked.vectors["far_acceleration"].y
+    _center(at)
+
+
+def _center(at: Position) -> None:
+    """Write the instant center from A and the spin, and from A and B; there is none while the arm does not turn."""
+    known, length = at.looked.vectors, kinds.LENGTH
+    b = f"{known['pin'].x}+{known['far'].x}", f"{known['pin'].y}+{known['far'].y}"
+    end = at.vector("far_place", "Far end B, from the crank shaft", "r_B", b, length, "mm")
+    pin, v_a, v_b = (known[key].ref for key in ("pin", "pin_velocity", "far_velocity"))
+    turns = f"ABS({at.scalars['arm_omega'].si})>1E-9*ABS({at.work.speeds[1]})"
+    calls = (
+        (
+            "center",
+            f"RB_INSTANT_CENTER({pin},{v_a},{at.scalars['arm_omega'].pair},{{unit}})",
+            "RB_INSTANT_CENTER",
+        ),
+        ("center_2", f"RB_INSTANT_CENTER_2({pin},{v_a},{end},{v_b},{{unit}})", "from v_A and v_B"),
+    )
+    for key, call, note in calls:
+        row = at.page.row
+        at.vector(key, "Instant center of the arm", "C", call, length, "mm", note)
+        for column in (4, 6, 7):
+            cell = at.page.sheet.cell(row, column)
+            inner = str(cell.value).removeprefix(f"=IF({at.book.ready_ref}=1,").removesuffix(',"")')
+            cell.value = at.book.guarded(f'IF({turns},{inner},"none")')
+
+
+def _sensor(at: Position) -> tuple[dict[str, str], str]:
+    """Write the sensor's acceleration and what it reads; give the reading in g, and the call."""
+    g, known, quick = at.given, at.looked.vectors, kinds.ACCELERATION
+    place = at.on_arm(g["sensor_u"].si, g["sensor_v"].si)
+    arm = at.vector("sensor", "Sensor S, from A", "r_AS", place, kinds.LENGTH, "mm")
+    start = f"{known['pin_velocity'].ref},{at.scalars['arm_omega'].pair}"
+    call, note = f"RB_VELOCITY_AT({start},{arm},{{unit}})", "v_A + ω_a × r_AS"
+    at.vector("sensor_velocity", "Velocity of S", "v_S", call, kinds.VELOCITY, "m/s", note)
+    for what, label, symbol, note in (
+        ("tangential", "Tangential part, relative to A", "a_t", "α_a × r_AS"),
+        ("centripetal", "Centripetal part, relative to A", "a_n", "−ω_a² r_AS"),
+        ("total", "Acceleration of S", "a_S", "a_A + a_t + a_n"),
+    ):
+        key = "sensor_acceleration" if what == "total" else f"sensor_{what}"
+        at.vector(key, label, symbol, at.acceleration(arm, what), quick, "m/s^2", note)
+    total, gravity = known["sensor_acceleration"], at.work.gravity.si
+    felt = f"IF({g['sensor_reads'].si}=1,{gravity},0)"
+    note = "a_S, and g upward if it reads gravity"
+    at.vector("reading", "What the sensor reads", "a_R", (total.x, f"{total.y}+{felt}"), quick, "g", note)
+    size = f"SQRT({known['reading'].x}^2+{known['reading'].y}^2)/{gravity}"
+    return {"sensor": size}, at.acceleration(arm).replace(",{unit})", "")
+
+
+PARTS: Final = (
+    ("tangential", "Tangential part, relative to A", "a_t", "α_a × r_AP"),
+    ("centripetal", "Centripetal part, relative to A", "a_n", "−ω_a² r_AP"),
+    ("coriolis", "Coriolis part", "a_C", "2 ω_a × w"),
+    ("total", "Acceleration of P", "a_P", "a_A + a_t + a_n + b + a_C"),
+)
+
+
+def _pusher(at: Position) -> tuple[dict[str, str], str]:
+    """Write the pusher's motion, sliding out; give side load and thrust, the larger of out and back; the call."""
+    g, known, quick = at.given, at.looked.vectors, kinds.ACCELERATION
+    pair = {key: place.pair for key, place in at.scalars.items()}
+    place = at.on_arm(g["pusher_u"].si, g["pusher_v"].si)
+    arm = at.vector("pusher", "Pusher P, from A", "r_AP", place, kinds.LENGTH, "mm")
+    slides = [at.on_arm(g[name].si, "0") for name in ("slide_speed", "slide_rise")]
+    w = at.vector("slide", "Slide velocity", "w", slides[0], kinds.VELOCITY, "m/s", "along the arm")
+    b = at.vector("slide_rise", "Slide acceleration", "b", slides[1], quick, "m/s^2", "along the arm")
+    call = f"RB_VELOCITY_SLIDING({known['pin_velocity'].ref},{pair['arm_omega']},{arm},{w},{{unit}})"
+    at.vector("pusher_velocity", "Velocity of P", "v_P", call, kinds.VELOCITY, "m/s", "v_A + ω_a × r_AP + w")
+    start = f"{known['pin_acceleration'].ref},{pair['arm_omega']},{pair['arm_alpha']},{arm},{w},{b}"
+    for what, label, symbol, note in PARTS:
+        key = "pusher_acceleration" if what == "total" else f"pusher_{what}"
+        at.vector(
+            key, label, symbol, f'RB_ACCELERATION_SLIDING({start},"{what}",{{unit}})', quick, "m/s^2", note
+        )
+    total, coriolis, slide = (known[key] for key in ("pusher_acceleration", "pusher_coriolis", "slide_rise"))
+    out = at.along(total.x, f"{total.y}+{at.work.gravity.si}")
+    change = at.along(f"2*({coriolis.x}+{slide.x})", f"2*({coriolis.y}+{slide.y})")
+    loads = [f"{g['pusher_mass'].si}*MAX(ABS({o}),ABS({o}-{c}))" for o, c in zip(out, change, strict=True)]
+    note = "m_P (a_P + g up), the larger of out and back"
+    thrust = at.scalar("thrust", "Thrust along the arm", "F_T", loads[0], kinds.FORCE, "N", note)
+    side = at.scalar(
+        "side", "Side load of its guide, across the arm", "F_S", loads[1], kinds.FORCE, "N", note
+    )
+    return {"side": side, "thrust": thrust}, f"RB_ACCELERATION_SLIDING({start}"
+
+
+def _tray(at: Position) -> tuple[dict[str, str], str]:
+    """Write the tray's balance on its two feet and the mat; give what the tables hold, and the call."""
+    page = at.page
+    place = at.on_arm(at.given["tray_u"].si, at.given["tray_v"].si)
+    arm = at.vector("tray", "Mass center G, from A", "r_AG", place, kinds.LENGTH, "mm")
+    at.vector(
+        "tray_acceleration", "Acceleration of G", "a_G", at.acceleration(arm), kinds.ACCELERATION, "m/s^2"
+    )
+    top = page.row
+    body, motion, supports = _body(at, top), _motion(at, top), _supports(at, top + 5)
+    page.row = top + 9
+    moves = f'RB_REACTIONS({body},{motion},"none",{supports}'
+    rests = f'RB_REACTIONS({body},"{AT_REST}","none",{supports}'
+    force = [
+        page.result(
+            label, symbol, f'{ask},"{what} force",{{unit}})', kinds.FORCE, "N", f"look_{name}", note=note
+        ).si
+        for label, symbol, ask, what, name, note in (
+            ("Foot 1: force of the arm, moving", "N_1", moves, "foot 1", "foot_1", "RB_REACTIONS"),
+            ("Foot 2: force of the arm, moving", "N_2", moves, "foot 2", "foot_2", ""),
+            ("Mat: friction along the arm, moving", "F", moves, "mat", "mat", ""),
+            (
+                "Foot 1: force of the arm, at rest here",
+                "N_{1,0}",
+                rests,
+                "foot 1",
+                "foot_1_rest",
+                "arm held at this crank angle",
+            ),
+            ("Foot 2: force of the arm, at rest here", "N_{2,0}", rests, "foot 2", "foot_2_rest", ""),
+        )
+    ]
+    ask, note = f'{moves},"residual moment",{{unit}})', "must be next to nothing"
+    page.result("Balance about a second point: residual moment", "", ask, kinds.TORQUE, "N*m", note=note)
+    lifts = ",".join(f"IF({force[k + 3]}>0,1-{force[k]}/{force[k + 3]},{LOST})" for k in (0, 1))
+    label, note = (
+        "Share of a foot's weight that motion takes off",
+        "q = 1 − N / N_0, the worse foot; lifts off at 1",
+    )
+    lift = at.scalar("lift", label, "q", f"MAX({lifts})", kinds.RATIO, "", note)
+    slip = f"IF({force[0]}+{force[1]}>0,ABS({force[2]})/({force[0]}+{force[1]}),{LOST})"
+    slip = at.scalar(
+        "slip", "Friction coefficient that is needed", "μ_n", slip, kinds.RATIO, "", "|F| / (N_1 + N_2)"
+    )
+    return {"lift": lift, "slip": slip}, moves
+
+
+def _record(at: Position, row: int, column: int, cells: tuple[str, ...]) -> None:
+    """Write a row of a record: words in quotes, formulas as they are."""
+    for k, formula in enumerate(cells):
+        words = formula.startswith('"')
+        text = formula.strip('"') if words else at.book.guarded(formula)
+        cell = at.page.put(column + k, text, "RS text" if words else "RS number", row=row)
+        if words:
+            cell.alignment = LEFT
+
+
+def _head(at: Position, row: int, words: dict[int, str]) -> None:
+    for column in range(min(words), max(words) + 1):
+        at.page.put(column, words.get(column), "RS head", row=row)
+
+
+def _body(at: Position, top: int) -> str:
+    """Write the tray as a body; give its range."""
+    known = at.looked.vectors
+    _head(at, top, {6: "tray", 7: "value", 8: "unit"})
+    place = [f"{getattr(known['pin'], k)}+{getattr(known['tray'], k)}" for k in "xy"]
+    mass, inertia = at.given["tray_mass"].si, at.work.inertia.si
+    for i, (label, formula, unit) in enumerate(
+        (("mass", mass, "kg"), ("x", place[0], "m"), ("y", place[1], "m"), ("Izz", inertia, "kg*m^2")), 1
+    ):
+        _record(at, top + i, 6, (f'"{label}"', formula, f'"{unit}"'))
+    return at.page.span((top + 1, 6), (top + 4, 8))
+
+
+def _motion(at: Position, top: int) -> str:
+    """Write the motion of the tray; give its range."""
+    _head(at, top, {2: "motion", 3: "x or value", 4: "y or unit", 5: "unit"})
+    move = at.looked.vectors["tray_acceleration"]
+    for i, cells in enumerate(
+        (
+            ('"omega"', at.scalars["arm_omega"].si, '"rad/s"'),
+            ('"alpha"', at.scalars["arm_alpha"].si, '"rad/s^2"'),
+            ('"center acceleration"', move.x, move.y, '"m/s^2"'),
+            ('"gravity"', '"down"'),
+        ),
+        1,
+    ):
+        _record(at, top + i, 2, cells)
+    return at.page.span((top + 1, 2), (top + 4, 5))
+
+
+def _supports(at: Position, top: int) -> str:
+    """Write the two feet and the mat; give their table."""
+    _head(at, top, dict(enumerate(("support", "type", "x [m]", "y [m]", "angle [deg]"), 2)))
+    g, pin = at.given, at.looked.vectors["pin"]
+    for i, (name, foot, turn) in enumerate(
+        (("foot 1", "foot_1", 90), ("foot 2", "foot_2", 90), ("mat", "foot_1", 0)), 1
+    ):
+        x, y = at.on_arm(g[foot].si, g["seat"].si)
+        angle = f"DEGREES({at.looked.angle})+{turn}"
+        _record(at, top + i, 2, (f'"{name}"', '"slot"', f"{pin.x}+{x}", f"{pin.y}+{y}", angle))
+    return at.page.span((top, 2), (top + 3, 6))
+
+
+def _compare(at: Position, arm: Table, tray: Table, functions: dict[str, str]) -> None:
+    """Write what the functions give, along x and y, beside what the tables give, along and across the arm."""
+    page = at.page
+    page.section("The functions along x, y against the tables along and across the arm")
+    _head(at, page.row, {2: "", 4: "functions", 5: "unit", 6: "tables", 7: "difference"})
+    page.row += 1
+    top = page.row
+    rows = (
+        ("sensor", "What the sensor reads", "g", arm),
+        ("side", "Pusher: side load of its guide", "N", arm),
+        ("thrust", "Pusher: thrust", "N", arm),
+        ("lift", "Tray: share of a foot's weight taken off", "", tray),
+        ("slip", "Tray: friction coefficient needed", "", tray),
+    )
+    for key, label, unit, table in rows:
+        page.put(2, label, "RS label")
+        page.put(4, at.book.guarded(functions[key]), "RS value")
+        page.put(5, unit or None, "RS unit fixed")
+        found = f"INDEX({table.looked(key)},1,{at.number})"
+        page.put(6, at.book.guarded(found), "RS value")
+        gap = f"ABS({page.at(4)}-{page.at(6)})/MAX(1E-6,ABS({page.at(6)}))"
+        page.put(7, at.book.guarded(gap), "RS value", form="0.0000%")
+        page.row += 1
+    at.looked.gaps = page.span((top, 7), (page.row - 1, 7))
+
+
+def _steps(at: Position, calls: tuple[tuple[str, int], ...]) -> None:
+    """Write the workings, a step a row."""
+    page = at.page
+    page.section("Working of the functions for this position, in sheet axes")
+    for call, count in calls:
+        function, _, rest = call.partition("(")
+        for k in range(1, count + 1):
+            step = f'INDEX(RB_WORKING("{function}",{rest}),{k},1)'
+            page.put(2, at.book.guarded(f'IFERROR({step},"")'), "RS step")
+            page.row += 1
