@@ -13,6 +13,7 @@ from .declaration import Reader, Role
 from .frame import Upright
 from .kinds import Kind
 from .limits import NOT_NEGATIVE, Limit
+from .memory import remembered
 from .quantities import (
     Array,
     asked,
@@ -40,6 +41,7 @@ class Scalar:
     def reader(self, argument: str, limit: Limit | None) -> Reader:
         kind, spellings = self.kind, self.kind.spellings
         angle = kind is kinds.ANGLE
+        texts = remembered(lambda cell: quantity(argument, kind, cell))  # type: ignore[arg-type]
 
         def read(cell: Cell) -> float | Array:
             t = type(cell)
@@ -48,7 +50,7 @@ class Scalar:
                     return cell  # type: ignore[return-value]
                 value: float | Array = quantity(argument, kind, cell)  # type: ignore[arg-type]
             elif t is str:
-                value = quantity(argument, kind, cell)  # type: ignore[arg-type]
+                value = texts(cell)
             elif t is list:
                 value = self._block(argument, cell, spellings)  # type: ignore[arg-type]
             else:
@@ -114,6 +116,7 @@ class Vector:
 
         if known:
             rule += ", or " + " / ".join(f"'{w}'" for w in self.words_for)
+        texts = remembered(lambda cell: vector_text(argument, kind, cell, rule))  # type: ignore[arg-type]
 
         def read(cell: Cell) -> Array | str:
             if type(cell) is list:
@@ -121,7 +124,7 @@ class Vector:
             if known and type(cell) is str and folded(cell) in known:
                 return known[folded(cell)]
             if type(cell) is str and cell.lstrip().startswith("("):
-                return vector_text(argument, kind, cell, rule)
+                return texts(cell)  # type: ignore[no-any-return]
             if type(cell) is float:
                 raise wrong(argument, rule, single(cell))
             raise wrong(argument, rule, cell)
@@ -156,6 +159,8 @@ class Spin:
                 raise InputError(argument, f"{rule}; got two numbers")
             return spin
 
+        texts = remembered(lambda cell: in_space(vector_text(argument, kind, cell, rule)))  # type: ignore[arg-type]
+
         def read(cell: Cell) -> float | Array | Upright:
             if type(cell) is list:
                 rows, columns = len(cell), len(cell[0])
@@ -171,7 +176,7 @@ class Spin:
                 if columns in (3, 4):
                     return in_space(vectors(argument, kind, cell, rule))
             elif type(cell) is str and cell.lstrip().startswith("("):
-                return in_space(vector_text(argument, kind, cell, rule))
+                return texts(cell)  # type: ignore[no-any-return]
             value = one(cell)
             if type(value) is float:
                 return value

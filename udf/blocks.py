@@ -5,11 +5,13 @@ from __future__ import annotations
 import math
 import re
 from collections.abc import Sequence
+from itertools import chain
 from typing import Final
 
 import numpy as np
 
 from ..core.errors import InputError
+from . import kinds
 from .cells import Block, Value
 from .kinds import Kind
 from .quantities import (
@@ -83,6 +85,12 @@ def many_vectors(argument: str, kind: Kind, cell: Block, rule: str) -> Array:
     elif all(map(is_unit_text, cell[0])):
         units, cell, start = [str(u) for u in cell[0]], cell[1:], 2
     columns = len(cell[0])
+    if units is None and columns in (2, 3) and kind is not kinds.ANGLE:
+        flat = list(chain.from_iterable(cell))
+        if set(map(type, flat)) == {float}:
+            plain = np.array(flat, dtype=float)
+            if np.isfinite(plain).all():
+                return plain.reshape(-1, columns)
     if units is None and columns in (3, 4) and all(is_unit_text(r[-1]) for r in cell):
         body = [line(argument, kind, r, rule, f"row {i}") for i, r in enumerate(cell, 1)]
         return np.array(body)
