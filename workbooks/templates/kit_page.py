@@ -176,6 +176,10 @@ class Page:
             if not plain
             else f"IF(ISNUMBER({place.ref}),{place.ref},NA())"
         )
+        outside = self._outside(place.ref, limit)
+        if outside:
+            si = f"IF({outside},NA(),{si})"
+            self._say_outside(f"AND({when},{outside})" if when else outside, limit, note)
         self.put(self.SI, f'=IF({when},{si},"not used")' if when else f"={si}", "RS si")
         si_unit = f'=IF({when},"{kind.si}","")' if when else kind.si
         self.put(self.SI_UNIT, None if plain else si_unit, "RS unit fixed")
@@ -186,6 +190,24 @@ class Page:
         self._limit(self.VALUE, label, kind, limit)
         self.row += 1
         return place
+
+    @staticmethod
+    def _outside(ref: str, limit: Limit | None) -> str:
+        """Return the formula that is true for a number outside a limit; empty when every number is within."""
+        if limit is None or limit.nonzero:
+            return f"AND(ISNUMBER({ref}),{ref}=0)" if limit is not None else ""
+        sides = [
+            f"{ref}{sign}{bound:g}"
+            for sign, bound in (("<=" if limit.low_open else "<", limit.low), (">", limit.high))
+            if abs(bound) != float("inf")
+        ]
+        return f"AND(ISNUMBER({ref}),OR({','.join(sides)}))"
+
+    def _say_outside(self, outside: str, limit: Limit | None, note: str) -> None:
+        """Say in the place of the note what a number outside its limit must be."""
+        if limit is not None and "_" not in note:
+            text = f'=IF({outside},"must be {limit.words}","{note}")'
+            self.put(self.NOTE, text, "RS note")
 
     def choice(
         self, label: str, symbol: str, value: str, words: Sequence[str], name: str, *, note: str = ""
@@ -211,7 +233,8 @@ class Page:
         """Write a number in SI that must be above zero before anything is worked out, and why if it is not."""
         self.put(self.LABEL, rich(label), "RS label")
         self.put(self.VALUE, f'=IFERROR(IF({formula}>0,"","{why}"),"")', "RS note")
-        self.put(self.SI, f"=IF({formula}>0,{formula},NA())", "RS si")
+        found = f"=IF(IFERROR({formula},1)>0,IFERROR({formula},0),NA())"  # what is missing shows elsewhere
+        self.put(self.SI, found, "RS si", form='General;-General;""')
         self.put(self.SI_UNIT, kind.si, "RS unit fixed")
         self._grey_errors(self.SI)
         self.book.need(self.at(self.SI), "")
