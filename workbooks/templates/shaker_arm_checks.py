@@ -40,7 +40,6 @@ def checks(book: Book, given: Given, work: Work, arm: Table, tray: Table, looked
     missing = "Not checked yet: inputs are missing or refused."
     page.put(2, f'=IF({book.ready_ref}=1,{table.end()},"{missing}")', "RS status", row=head)
     book.name("verdict", page.at(2, head))
-    page.page_break()
     page.section("Over one turn of the crank")
     _charts(page, given, work, arm, tray)
 
@@ -48,7 +47,7 @@ def checks(book: Book, given: Given, work: Work, arm: Table, tray: Table, looked
 def _load_cases(book: Book, page: Page, work: Work, arm: Table, tray: Table) -> CaseTable:
     at = "at θ [deg]"
     heads = [word for head in HEADS for word in (head, at)]
-    table = CaseTable(book, page, ("Load case", "Crank", *heads))
+    table = CaseTable(book, page, ("Load case", "Crank", *heads), height=25.0)
     for k, case in enumerate(CASES):
         values: list[tuple[str, str]] = []
         for key in COLUMN:
@@ -122,15 +121,17 @@ def _calculation(given: Given, work: Work, looked: Looked) -> list[Check]:
 
 def _charts(page: Page, given: Given, work: Work, arm: Table, tray: Table) -> None:
     """Draw what the sensor reads, and below it what keeps the tray down and in its place."""
-    anchor = page.row
     limit = f"{given['sensor_limit'].si}/{work.gravity.si}"
-    words = ("What the sensor reads, against its range", "g", "sensor's range")
-    _chart(page, arm, "sensor", limit, words, f"B{anchor}", (284.0, 88.0))
-    words = ("Weight taken off the worse foot", "share of its weight", "lifts off")
-    _chart(page, tray, "lift", "1", words, f"B{anchor + 18}", (140.0, 76.0))
-    words = ("Friction coefficient needed", "-", "mat")
-    _chart(page, tray, "slip", given["friction"].si, words, f"F{anchor + 18}", (140.0, 76.0))
-    page.row = anchor + 35
+    words = ("What the sensor reads, against its range", "g", "rated range")
+    _chart(page, arm, "sensor", limit, words, f"B{page.row}", (284.0, 62.0))
+    page.skip(14)
+    page.page_break()
+    page.section("Over one turn of the crank: the tray")
+    words = ("Share of its weight that the motion takes off the worse foot", "share", "lifts off")
+    _chart(page, tray, "lift", "1", words, f"B{page.row}", (284.0, 80.0))
+    words = ("Friction coefficient that the tray needs", "coefficient", "friction of the mat")
+    _chart(page, tray, "slip", given["friction"].si, words, f"B{page.row + 17}", (284.0, 80.0))
+    page.row += 34
 
 
 def _chart(
@@ -159,4 +160,3 @@ def _chart(
     )
     chart.x_axis.scaling.min, chart.x_axis.scaling.max, chart.x_axis.majorUnit = 0, 360, 60
     chart.y_axis.number_format = "0.0"
-    chart.legend.position = "r" if size[0] > 200 else "b"

@@ -12,10 +12,14 @@ from .kit import Book, Place
 from .kit_look import LEFT, SOFT, rich
 from .shaker_arm import Given
 from .shaker_arm_tables import LOST, Table
-from .shaker_arm_working import Work
+from .shaker_arm_working import NOTES, Work
 
 VECTOR_WORDS: Final = {4: "size", 5: "unit", 6: "x", 7: "y", 8: "unit"}
 STILL, STEADY = '"(0, 0) m/s"', '"(0, 0) m/s^2"'  # velocity and acceleration of the crank shaft
+SPINS: Final = (
+    "sin φ = (e − r sin θ) / l,   ω_a = −r ω cos θ / (l cos φ),   "
+    "α_a = (r (ω² sin θ − α cos θ) + l ω_a² sin φ) / (l cos φ)"
+)
 AT_REST: Final = "omega 0 rad/s; alpha 0 rad/s^2; center acceleration (0, 0) m/s^2; gravity down"
 
 
@@ -80,7 +84,7 @@ class Position:
         x, y = page.at(6), page.at(7)
         page.put(page.VALUE, self.book.guarded(f"SQRT({x}^2+{y}^2)"), "RS value")
         page.put(8, f"={where}", "RS unit fixed")
-        page.put(9, rich(note, 8, italic=True, color=SOFT) or None, "RS note")
+        page.put(NOTES, rich(note, 8, italic=True, color=SOFT) or None, "RS note")
         for name, cell in (("", page.at(page.VALUE)), ("_x", x), ("_y", y)):
             self.book.name(f"look_{key}{name}", cell)
         si = f'*RB_CONVERT("1 "&{where},"{kind.si}")'
@@ -107,15 +111,16 @@ class Position:
 def position(book: Book, given: Given, work: Work, arm: Table, tray: Table) -> Looked:
     """Write one position through the functions, in sheet axes, and compare it with the tables."""
     page = work.page
-    page.section("The position looked at: crank, arm and instant center", VECTOR_WORDS)
+    page.section("Position looked at", VECTOR_WORDS)
+    page.prose((SPINS,))
     at = Position(book, given, work)
     _linkage(at)
-    page.section("Sensor S: tangential and centripetal parts", VECTOR_WORDS)
+    page.section("Sensor S", VECTOR_WORDS)
     functions, sensor = _sensor(at)
-    page.section("Pusher P while it slides out: with the Coriolis part", VECTOR_WORDS)
+    page.section("Pusher P, while it slides out", VECTOR_WORDS)
     loads, pusher = _pusher(at)
     page.page_break()
-    page.section("Tray: do its feet stay down, does it slip?", VECTOR_WORDS)
+    page.section("Tray on its two feet", VECTOR_WORDS)
     contact, reactions = _tray(at)
     _compare(at, arm, tray, {**functions, **loads, **contact})
     _steps(at, ((sensor, 5), (pusher, 6), (reactions, 9)))
@@ -133,14 +138,12 @@ def _linkage(at: Position) -> None:
         "alpha", "Crank acceleration", "α", f"INDEX({first}:{last},{at.number})", rise, "rad/s^2"
     )
     phi = f"ASIN(({e}-{r}*SIN({theta}))/{length})"
-    phi = at.scalar("arm_angle", "Arm angle from x", "φ", phi, angle, "deg", "sin φ = (e − r sin θ) / l")
+    phi = at.scalar("arm_angle", "Arm angle from x", "φ", phi, angle, "deg")
     at.looked.angle = phi
     turn = f"-{r}*{omega}*COS({theta})/({length}*COS({phi}))"
-    note = "ω_a = −r ω cos θ / (l cos φ)"
-    turn = at.scalar("arm_omega", "Arm: angular velocity", "ω_a", turn, speed, "rad/s", note)
+    turn = at.scalar("arm_omega", "Arm: angular velocity", "ω_a", turn, speed, "rad/s")
     spin = f"({r}*({omega}^2*SIN({theta})-{alpha}*COS({theta}))+{length}*{turn}^2*SIN({phi}))/({length}*COS({phi}))"
-    note = "α_a = (r (ω² sin θ − α cos θ) + l ω_a² sin φ) / (l cos φ)"
-    at.scalar("arm_alpha", "Arm: angular acceleration", "α_a", spin, rise, "rad/s^2", note)
+    at.scalar("arm_alpha", "Arm: angular acceleration", "α_a", spin, rise, "rad/s^2")
     move, quick, length_kind = kinds.VELOCITY, kinds.ACCELERATION, kinds.LENGTH
     pair = {key: at.scalars[key].pair for key in at.scalars}
     pin = at.vector(
@@ -155,7 +158,7 @@ def _linkage(at: Position) -> None:
     a = f'RB_ACCELERATION_AT({STEADY},{pair["omega"]},{pair["alpha"]},{pin},"total",{{unit}})'
     v = at.vector("pin_velocity", "Velocity of A", "v_A", v, move, "m/s", "RB_VELOCITY_AT")
     at.vector("pin_acceleration", "Acceleration of A", "a_A", a, quick, "m/s^2", "RB_ACCELERATION_AT")
-    far = at.vector("far", "Far end B, from A", "r_AB", at.on_arm(length, "0"), length_kind, "mm")
+    far = at.vector("far", "Far end B, from A", "r_{AB}", at.on_arm(length, "0"), length_kind, "mm")
     v = f"RB_VELOCITY_AT({v},{pair['arm_omega']},{far},{{unit}})"
     at.vector("far_velocity", "Velocity of B", "v_B", v, move, "m/s", "y must be 0: level guide")
     at.vector(
@@ -193,13 +196,13 @@ def _sensor(at: Position) -> tuple[dict[str, str], str]:
     """Write the sensor's acceleration and what it reads; give the reading in g, and the call."""
     g, known, quick = at.given, at.looked.vectors, kinds.ACCELERATION
     place = at.on_arm(g["sensor_u"].si, g["sensor_v"].si)
-    arm = at.vector("sensor", "Sensor S, from A", "r_AS", place, kinds.LENGTH, "mm")
+    arm = at.vector("sensor", "Sensor S, from A", "r_{AS}", place, kinds.LENGTH, "mm")
     start = f"{known['pin_velocity'].ref},{at.scalars['arm_omega'].pair}"
-    call, note = f"RB_VELOCITY_AT({start},{arm},{{unit}})", "v_A + ω_a × r_AS"
+    call, note = f"RB_VELOCITY_AT({start},{arm},{{unit}})", "v_A + ω_a × r_{AS}"
     at.vector("sensor_velocity", "Velocity of S", "v_S", call, kinds.VELOCITY, "m/s", note)
     for what, label, symbol, note in (
-        ("tangential", "Tangential part, relative to A", "a_t", "α_a × r_AS"),
-        ("centripetal", "Centripetal part, relative to A", "a_n", "−ω_a² r_AS"),
+        ("tangential", "Tangential part, relative to A", "a_t", "α_a × r_{AS}"),
+        ("centripetal", "Centripetal part, relative to A", "a_n", "−ω_a² r_{AS}"),
         ("total", "Acceleration of S", "a_S", "a_A + a_t + a_n"),
     ):
         key = "sensor_acceleration" if what == "total" else f"sensor_{what}"
@@ -213,8 +216,8 @@ def _sensor(at: Position) -> tuple[dict[str, str], str]:
 
 
 PARTS: Final = (
-    ("tangential", "Tangential part, relative to A", "a_t", "α_a × r_AP"),
-    ("centripetal", "Centripetal part, relative to A", "a_n", "−ω_a² r_AP"),
+    ("tangential", "Tangential part, relative to A", "a_t", "α_a × r_{AP}"),
+    ("centripetal", "Centripetal part, relative to A", "a_n", "−ω_a² r_{AP}"),
     ("coriolis", "Coriolis part", "a_C", "2 ω_a × w"),
     ("total", "Acceleration of P", "a_P", "a_A + a_t + a_n + b + a_C"),
 )
@@ -225,12 +228,14 @@ def _pusher(at: Position) -> tuple[dict[str, str], str]:
     g, known, quick = at.given, at.looked.vectors, kinds.ACCELERATION
     pair = {key: place.pair for key, place in at.scalars.items()}
     place = at.on_arm(g["pusher_u"].si, g["pusher_v"].si)
-    arm = at.vector("pusher", "Pusher P, from A", "r_AP", place, kinds.LENGTH, "mm")
+    arm = at.vector("pusher", "Pusher P, from A", "r_{AP}", place, kinds.LENGTH, "mm")
     slides = [at.on_arm(g[name].si, "0") for name in ("slide_speed", "slide_rise")]
     w = at.vector("slide", "Slide velocity", "w", slides[0], kinds.VELOCITY, "m/s", "along the arm")
     b = at.vector("slide_rise", "Slide acceleration", "b", slides[1], quick, "m/s^2", "along the arm")
     call = f"RB_VELOCITY_SLIDING({known['pin_velocity'].ref},{pair['arm_omega']},{arm},{w},{{unit}})"
-    at.vector("pusher_velocity", "Velocity of P", "v_P", call, kinds.VELOCITY, "m/s", "v_A + ω_a × r_AP + w")
+    at.vector(
+        "pusher_velocity", "Velocity of P", "v_P", call, kinds.VELOCITY, "m/s", "v_A + ω_a × r_{AP} + w"
+    )
     start = f"{known['pin_acceleration'].ref},{pair['arm_omega']},{pair['arm_alpha']},{arm},{w},{b}"
     for what, label, symbol, note in PARTS:
         key = "pusher_acceleration" if what == "total" else f"pusher_{what}"
@@ -241,7 +246,7 @@ def _pusher(at: Position) -> tuple[dict[str, str], str]:
     out = at.along(total.x, f"{total.y}+{at.work.gravity.si}")
     change = at.along(f"2*({coriolis.x}+{slide.x})", f"2*({coriolis.y}+{slide.y})")
     loads = [f"{g['pusher_mass'].si}*MAX(ABS({o}),ABS({o}-{c}))" for o, c in zip(out, change, strict=True)]
-    note = "m_P (a_P + g up), the larger of out and back"
+    note = "m_P (a_P + g), worse of out, back"
     thrust = at.scalar("thrust", "Thrust along the arm", "F_T", loads[0], kinds.FORCE, "N", note)
     side = at.scalar(
         "side", "Side load of its guide, across the arm", "F_S", loads[1], kinds.FORCE, "N", note
@@ -253,7 +258,7 @@ def _tray(at: Position) -> tuple[dict[str, str], str]:
     """Write the tray's balance on its two feet and the mat; give what the tables hold, and the call."""
     page = at.page
     place = at.on_arm(at.given["tray_u"].si, at.given["tray_v"].si)
-    arm = at.vector("tray", "Mass center G, from A", "r_AG", place, kinds.LENGTH, "mm")
+    arm = at.vector("tray", "Mass center G, from A", "r_{AG}", place, kinds.LENGTH, "mm")
     at.vector(
         "tray_acceleration", "Acceleration of G", "a_G", at.acceleration(arm), kinds.ACCELERATION, "m/s^2"
     )
@@ -285,8 +290,8 @@ def _tray(at: Position) -> tuple[dict[str, str], str]:
     page.result("Balance about a second point: residual moment", "", ask, kinds.TORQUE, "N*m", note=note)
     lifts = ",".join(f"IF({force[k + 3]}>0,1-{force[k]}/{force[k + 3]},{LOST})" for k in (0, 1))
     label, note = (
-        "Share of a foot's weight that motion takes off",
-        "q = 1 − N / N_0, the worse foot; lifts off at 1",
+        "Taken off the worse foot by the motion",
+        "q = 1 − N / N_0; lifts off at 1",
     )
     lift = at.scalar("lift", label, "q", f"MAX({lifts})", kinds.RATIO, "", note)
     slip = f"IF({force[0]}+{force[1]}>0,ABS({force[2]})/({force[0]}+{force[1]}),{LOST})"
@@ -389,4 +394,8 @@ def _steps(at: Position, calls: tuple[tuple[str, int], ...]) -> None:
         for k in range(1, count + 1):
             step = f'INDEX(RB_WORKING("{function}",{rest}),{k},1)'
             page.put(2, at.book.guarded(f'IFERROR({step},"")'), "RS step")
+            page.sheet.merge_cells(
+                start_row=page.row, start_column=2, end_row=page.row, end_column=page.columns
+            )
             page.row += 1
+        page.skip(height=6.0)

@@ -14,6 +14,10 @@ from .shaker_arm_working import Work
 
 WARM: Final = "A5622A"
 WINDOW: Final = (-0.42, 1.22, -0.5, 0.95)  # left, right, low, high, as parts of arm and crank
+KEY: Final = (
+    "Arrows: v velocity, a acceleration. ● sensor S, ◆ mass center G of tray",
+    "and fruit, ■ pusher P, × instant center, where the dashed lines meet.",
+)
 Point = tuple[str, str]
 
 
@@ -25,29 +29,33 @@ def sketch(given: Given, work: Work, looked: Looked, page: Page, row: int) -> No
     _frame(points, given, reach)
     _arm(points, given, looked, reach)
     _center(points, given, looked, reach)
-    sensor = _plus(pin, looked.vectors["sensor"])
-    for word, key, tail, vector, color in (
-        ("v_A", "velocity", (pin.x, pin.y), looked.vectors["pin_velocity"], RULE),
-        ("v_S", "velocity", sensor, looked.vectors["sensor_velocity"], RULE),
-        ("a_S", "acceleration", sensor, looked.vectors["sensor_acceleration"], WARM),
-    ):
-        unit, full = ("m/s", f"0.34*{reach}") if key == "velocity" else ("m/s²", f"0.3*{reach}")
-        size = f"SQRT({vector.x}^2+{vector.y}^2)"
-        scale = f"{full}/MAX(1E-12,{_largest(looked, key)})"
-        step = (f"{vector.x}*{scale}", f"{vector.y}*{scale}")
-        points.arrow(word, tail, step, color=color)
-        tip = (f"({tail[0]})+{step[0]}", f"({tail[1]})+{step[1]}")
-        points.label(f'"{word.replace("_", "")} "&ROUND({size},2)&" {unit}"', tip, color=color)
+    far = _plus(pin, looked.vectors["far"])
+    _arrow(points, looked, reach, "vA", (pin.x, pin.y), "pin_velocity")
+    _arrow(points, looked, reach, "vB", far, "far_velocity")
+    _arrow(points, looked, reach, "aS", _plus(pin, looked.vectors["sensor"]), "sensor_acceleration")
+    points.label('"A"', (pin.x, pin.y), color=INK, side="b")
+    points.label('"B"', far, color=INK, side="r")
     sketch_chart(page, f"J{row}", points.curves, width=103.0, title="Position looked at", window=WINDOW)
-    key = (
-        "Green arrows: velocities; brown: acceleration. ● sensor, ◆ mass center of tray and fruit, ■ pusher."
-    )
-    page.put(10, key, "RS note", row=row + 19)
+    for k, line in enumerate(KEY):
+        page.put(10, line, "RS note", row=row + 20 + k)
 
 
-def _largest(looked: Looked, key: str) -> str:
-    known = [looked.vectors[f"{point}_{key}"] for point in ("pin", "sensor")]
-    return f"MAX({','.join(f'SQRT({v.x}^2+{v.y}^2)' for v in known)})"
+def _arrow(points: Points, looked: Looked, reach: str, word: str, tail: Point, key: str) -> None:
+    """Draw a velocity or an acceleration with its size beside its head, on the side that it points to."""
+    vector, speeds = looked.vectors[key], key.endswith("velocity")
+    known = ("pin_velocity", "far_velocity") if speeds else (key,)
+    sizes = [f"SQRT({looked.vectors[k].x}^2+{looked.vectors[k].y}^2)" for k in known]
+    scale = f"0.26*{reach}/MAX(1E-12,{','.join(sizes)})"
+    step = (f"{vector.x}*{scale}", f"{vector.y}*{scale}")
+    color, unit = (RULE, "m/s") if speeds else (WARM, "m/s²")
+    points.arrow(word, tail, step, color=color)
+    tip = (f"({tail[0]})+{step[0]}", f"({tail[1]})+{step[1]}")
+    text = f'"{word} "&ROUND(SQRT({vector.x}^2+{vector.y}^2),2)&" {unit}"'
+    if key == "far_velocity":  # along the guide, so its label stands clear below
+        points.label(text, (tip[0], f"({tip[1]})-0.05*{reach}"), color=color, side="b")
+        return
+    for side, there in (("r", f"{vector.x}>=0"), ("l", f"{vector.x}<0")):
+        points.label(f'IF({there},{text}," ")', tip, color=color, side=side)
 
 
 def _plus(*parts: Vector) -> Point:
@@ -108,8 +116,10 @@ def _center(points: Points, given: Given, looked: Looked, reach: str) -> None:
     along = f"({b[0]})*({held})/IF(ABS({away})<1E-9,1E-9,{away})"
     points.add("normal at A", [a, (along, held)], dash="dash", width=0.75, color=SOFT)
     points.add("normal at B", [b, (b[0], held)], dash="dash", width=0.75, color=SOFT)
-    place = (f"IF({inside},{b[0]},0)", f"IF({inside},{away},0)")
-    points.add("instant center", [place], width=0.0, marker="x", size=8, color=INK)
-    where = (b[0], f"IF({inside},{away},0.9*({held}))")
-    words = f'IF({inside},"C, instant center","C is "&ROUND(ABS({away})*1000,0)&" mm away")'
-    points.label(words, (f"{where[0]}-0.34*{reach}", where[1]), color=INK)
+    half = f"IF({inside},0.025,0)*{reach}"
+    cross = [(f"{b[0]}{i}{half}", f"{held}{k}{half}") for i, k in ("++", "--")]
+    points.add("instant center", cross, width=2.0, color=INK)
+    cross = [(f"{b[0]}{i}{half}", f"{held}{k}{half}") for i, k in ("+-", "-+")]
+    points.add("instant center, across", cross, width=2.0, color=INK)
+    words = f'IF({inside},"instant center C","to C, "&ROUND(ABS({away}),2)&" m away")'
+    points.label(words, (f"({b[0]})-{half}", f"0.96*({held})"), color=INK, side="l")

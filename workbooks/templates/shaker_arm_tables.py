@@ -16,6 +16,7 @@ STEP: Final = 6  # deg: a peak between two rows is next to nothing higher
 ROWS: Final = 360 // STEP + 1
 LOST: Final = 99  # what stands where a foot carries nothing even at rest, or the tray has left the arm
 ANGLE, ARM_ANGLE, CRANK_ALONG, CRANK_ACROSS, TURN, BEND, WEIGHT_ALONG, WEIGHT_ACROSS = range(1, 9)
+HEADS: Final = tuple(case.replace("overspeed", "over- speed") for case in CASES)
 COUNT: Final = len(CASES)
 
 
@@ -91,7 +92,8 @@ def tables(book: Book, given: Given, work: Work) -> tuple[Table, Table]:
 
 def _table(book: Book, name: str, width: float, keys: tuple[str, ...], fixed: int) -> Table:
     starts = {key: fixed + 1 + COUNT * k for k, key in enumerate(keys)}
-    page = book.page(name, (6.4, *([width] * (fixed + COUNT * len(keys) - 1))), lead=1)
+    widths = (6.0, *([6.8] * (fixed - 1)), *([width] * (COUNT * len(keys))))
+    page = book.page(name, widths, lead=1)
     page.title_block(repeat_rows=9)
     return Table(page, starts, 10, 9 + ROWS)
 
@@ -110,7 +112,7 @@ def _head(
         page.put(table.starts[key], title, "RS status")
     page.row += 1
     page.sheet.row_dimensions[page.row].height = 34.0
-    heads = [*zip(words, units, strict=True), *((case, unit) for _, _, unit in groups for case in CASES)]
+    heads = [*zip(words, units, strict=True), *((case, unit) for _, _, unit in groups for case in HEADS)]
     for column, (word, unit) in enumerate(heads, 1):
         page.put(column, rich(word, 8), "RS head")
         page.put(column, unit, "RS column", row=page.row + 1)
@@ -120,7 +122,7 @@ def _head(
 def _extremes(table: Table) -> None:
     page = table.page
     page.row = table.last + 1
-    for name, word in (("MAX", "largest"), ("MIN", "smallest")):
+    for name, word in (("MAX", "most"), ("MIN", "least")):
         for column in range(1, page.columns + 1):
             first = min(table.starts.values())
             text = page.book.guarded(f"{name}({table.column(column)})") if column >= first else None

@@ -12,7 +12,8 @@ from .kit import Book, Page, Place
 from .kit_look import SOFT, rich
 from .shaker_arm import CASES, STOPPING, Given
 
-COLUMNS: Final = (2.5, 37.0, 9.0, 12.0, 9.0, 12.0, 12.0, 8.5, 24.0)
+COLUMNS: Final = (2.5, 37.0, 9.0, 12.0, 9.0, 12.0, 12.0, 8.5, 13.0, 13.0)
+NOTES: Final = 9
 
 
 @dataclass(frozen=True, slots=True)
@@ -34,20 +35,23 @@ def working(book: Book, given: Given) -> Work:
     """Write what the tables use: load cases in SI, slides of the pusher, moment of inertia of the tray."""
     page = book.page("Working", COLUMNS)
     page.title_block()
+    page.NOTE = NOTES
     page.section("Load cases and constants, in SI")
-    for column, word in enumerate(("Load case", "", "speed", "rad/s", "acceleration", "rad/s²", "", ""), 2):
-        page.put(column, word or None, "RS head")
+    words = {2: "Load case", 4: "crank speed", 5: "unit", 6: "acceleration", 7: "unit"}
+    for column in range(2, 8):
+        page.put(column, words.get(column), "RS head")
     page.row += 1
     first = page.row
     names = ("speed_slow", "speed_rated", "speed_over", "speed_jam")
     stop = f"-{given['speed_jam'].si}*ABS({given['speed_jam'].si})/(2*{given['stop_angle'].si})"
     for k, case in enumerate(CASES):
         speed = given[names[k]].si if k < len(names) else "0"
-        page.put(2, case, "RS text")
-        page.put(4, book.guarded(speed), "RS number")
-        page.put(6, book.guarded(stop if case in STOPPING else "0"), "RS number")
+        cells = {2: case, 4: book.guarded(speed), 5: "rad/s", 7: "rad/s^2"}
+        cells[6] = book.guarded(stop if case in STOPPING else "0")
+        for column in range(2, 8):
+            page.put(column, cells.get(column), "RS number" if column in (4, 6) else "RS text")
         if case == STOPPING[0]:
-            page.put(8, rich("α = −ω² / (2 θ_s)", 8, italic=True, color=SOFT), "RS note")
+            page.put(NOTES, rich("α = −ω² / (2 θ_s)", 8, italic=True, color=SOFT), "RS note")
         page.row += 1
     gravity = page.derived("Standard gravity", "g", f"{STANDARD_GRAVITY}", kinds.ACCELERATION, "m/s^2")
     inertia = _inertia(page, given)
@@ -86,19 +90,18 @@ def _feet(page: Page, given: Given, inertia: Place) -> tuple[Place, Place, Place
 
 def _inertia(page: Page, given: Given) -> Place:
     top = page.row
-    for label, name in (("L", "tray_length"), ("W", "tray_height"), ("H", "tray_height")):
-        note = {
-            "L": "tray and fruit as a box: L along the arm",
-            "W": "W across the arm",
-            "H": "has no effect here",
-        }
-        page.put(2, f"Size {label} of the box", "RS label")
-        page.put(5, label, "RS unit fixed")
-        page.put(6, page.book.guarded(given[name].si), "RS number")
-        page.put(7, "m", "RS unit fixed")
-        page.put(8, note[label], "RS note")
+    for label, name, note in (
+        ("L", "tray_length", "along the arm"),
+        ("W", "tray_height", "across the arm"),
+        ("H", "tray_height", "along z, has no effect here"),
+    ):
+        page.put(2, f"Tray and fruit as a box: size {label}", "RS label")
+        page.put(3, label, "RS symbol")
+        page.put(4, page.book.guarded(given[name].si), "RS value")
+        page.put(5, "m", "RS unit fixed")
+        page.put(NOTES, note, "RS note")
         page.row += 1
-    sizes = page.span((top, 5), (top + 2, 7))
+    sizes = page.span((top, 3), (top + 2, 5))
     return page.result(
         "Moment of inertia of tray and fruit about G",
         "I_G",
