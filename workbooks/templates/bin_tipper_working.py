@@ -120,8 +120,10 @@ def _rolled_up(page: Page, parts: str, title: str, word: str) -> dict[str, Place
             strong=field == "mass",
             needed=field == "mass",
         )
+    verdict = f'RB_TENSOR_CHECK(RB_ROLLUP({parts},"inertia"))'
+    judged = f'IF({verdict}="OK","yes",{verdict})'
     page.put(page.LABEL, "Whether a body can have this tensor", "RS label")
-    page.put(page.VALUE, page.book.guarded(f'RB_TENSOR_CHECK(RB_ROLLUP({parts},"inertia"))'), "RS value")
+    page.put(page.VALUE, page.book.guarded(judged), "RS value")
     page.book.name(f"tensor_{word}", page.at(page.VALUE))
     page.row += 1
     mass = got["mass"].si

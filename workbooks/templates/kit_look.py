@@ -53,7 +53,7 @@ RIGHT = Alignment(horizontal="right", **_MIDDLE)
 INNER = Alignment(horizontal="right", indent=1, **_MIDDLE)  # keeps digits off the lines of a box
 CENTER = Alignment(horizontal="center", **_MIDDLE)
 HEAD = Alignment(horizontal="center", vertical="center", wrap_text=True)
-WRAP = Alignment(horizontal="left", vertical="center", wrap_text=True)
+WRAP = Alignment(horizontal="left", vertical="top", wrap_text=True)
 FOOT = Alignment(horizontal="left", vertical="bottom")
 INDENT = Alignment(horizontal="left", indent=1, **_MIDDLE)
 
