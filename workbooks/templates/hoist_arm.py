@@ -215,7 +215,7 @@ def _motion(page: Page, got: dict[str, Place]) -> None:
         when=f'{by}="time"',
     )
     got["in_stop"] = page.choice(
-        "While the arm makes an emergency stop, it", "", IN_STOP[1], IN_STOP, "carriage_in_stop"
+        "While the arm stops, the carriage", "", IN_STOP[1], IN_STOP, "carriage_in_stop"
     )
 
 

@@ -180,7 +180,7 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
     )  # fmt: skip
     error = page.derived(
         "Error of the fixed pivot", "T_f − T", f"{fixed.si}-{total.si}", torque, "N*m", "look_error",
-        note=f'=IF(ABS({fixed.si})<ABS({total.si}),"the drive would be undersized","")', strong=True,
+        note=book.guarded(f'IF(ABS({fixed.si})<ABS({total.si}),"the drive would be undersized","")'), strong=True,
     )  # fmt: skip
     share = page.derived(
         "Error as a part of the true torque", "", f'IF(ABS({total.si})<1E-9,0,{error.si}/ABS({total.si}))',
@@ -191,8 +191,10 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
     page.section("Gearbox, motor and pin", {**page.INPUT_WORDS, 9: "table", 10: "difference"})
     page.result(
         "Power of the drive", "P", f'{drive},"power",{{unit}})', kinds.POWER, "kW", "look_power",
-        note=f'=IF({r.omega}=0,"at rest: the brake holds",'
-        f'IF({total.si}*{r.omega}<0,"the load drives: overhauling","the motor drives"))',
+        note=book.guarded(
+            f'IF({r.omega}=0,"at rest: the brake holds",'
+            f'IF({total.si}*{r.omega}<0,"the load drives: overhauling","the motor drives"))'
+        ),
     )  # fmt: skip
     eta = f"IF({r.omega}=0,1,{given.si('efficiency')})"
     motor_call = f"RB_MOTOR_TORQUE({total.pair},{given.si('ratio')},{eta}"
@@ -237,7 +239,10 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
         page,
         (f"{sum_about},{r.pivot}", range(1, 7)),
         (drive, (4, 5, 6)),
-        (f'{motor_call},"N*m",{r.omega}', (1, 2)),
+        (
+            f'{motor_call},"N*m",{r.omega}',
+            (f'IF({r.omega}=0,"At rest the brake holds: eta = 1",{{step}})', 2),
+        ),
         (solved, range(2, 10)),
     )
     return Looked(
@@ -259,13 +264,16 @@ def _gap(page: Page, place: Place, other: str) -> str:
     return page.at(10, place.row)
 
 
-def _steps(page: Page, *calls: tuple[str, Iterable[int]]) -> None:
-    """Write lines of the working of several calls, for a reviewer with a pocket calculator."""
+def _steps(page: Page, *calls: tuple[str, Iterable[int | str]]) -> None:
+    """Write lines of the working of several calls; a text is a formula around the line of its place."""
     page.section("Working with numbers")
     for call, lines in calls:
         function, _, rest = call.partition("(")
-        for k in lines:
+        for place, line in enumerate(lines, 1):
+            k = line if isinstance(line, int) else place
             step = f'INDEX(RB_WORKING("{function}",{rest}),{k},1)'
+            if isinstance(line, str):
+                step = line.format(step=step)
             page.put(2, page.book.guarded(f'IFERROR({step},"")'), "RS step")
             page.sheet.merge_cells(
                 start_row=page.row, start_column=2, end_row=page.row, end_column=page.columns

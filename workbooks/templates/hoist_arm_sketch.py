@@ -76,7 +76,7 @@ def _arrows(points: Points, looked: Looked, reach: str) -> None:
         points.label(f'"{name} "&ROUND({amount},0)&" N"', tip, color=color, side=side)
     run = f"0.4*{reach}*SIGN({looked.pivot})"
     points.arrow("acceleration of B", ("0", f"{DECK - 0.07}*{reach}"), (run, "0"), color=WARM)
-    text = f'IF({looked.pivot}=0,"pivot does not accelerate","a_B = "&ROUND({looked.pivot},2)&" m/s²")'
+    text = f'IF({looked.pivot}=0,"pivot does not accelerate","a of B "&ROUND({looked.pivot},2)&" m/s²")'
     points.label(text, (f"{HALF + 0.03}*{reach}", f"{DECK - 0.07}*{reach}"), color=WARM)
     arc, sign, start = f"0.17*{reach}", f"SIGN({looked.torque})", 200
 
