@@ -72,7 +72,7 @@ def elevation(given: Inputs, work: Work, looked: Looked, page: Page, row: int) -
         title="Load case looked at, from the side",
         window=window,
     )
-    note = "● two hinges on the axis, mass center in the leaf; forces on the leaf in the plane of x and z"
+    note = "● hinges, and mass center in the leaf; forces in the plane of x and z"
     page.put(10, note, "RS note", row=row + 13)
 
 
@@ -111,7 +111,7 @@ def plan(given: Inputs, work: Work, looked: Looked, page: Page, row: int) -> Non
         page, f"{SKETCH_AT}{row + 1}", points.curves, width=WIDTH, title="From above, opening at the angle drawn",
         window=window,
     )  # fmt: skip
-    page.put(10, "● hinge axis, mass center on the leaf; forces on the leaf square to it", "RS note", row=row + 20)
+    page.put(10, "● hinge axis, and mass center; forces square to the leaf", "RS note", row=row + 20)
 
 
 def _scale(page: Page, column: int, row: int, formula: str) -> str:

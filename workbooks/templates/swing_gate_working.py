@@ -79,7 +79,7 @@ def _rolled_up(rows: _Rows, given: Inputs) -> None:
         ("center_x", "Mass center along the leaf", "x_G", "x", "", length, "mm", "from the hinge axis"),
         ("center_y", "Mass center beside the hinge axis", "y_G", "y", "", length, "mm", ""),
         ("center_z", "Mass center above the yard", "z_G", "z", "", length, "mm", ""),
-        ("inertia_g", "Moment of inertia about the mass center, along z", "I_G", "Izz", "", inertia, "kg*m^2", ""),
+        ("inertia_g", "Moment of inertia about the mass center", "I_G", "Izz", "", inertia, "kg*m^2", ""),
         ("inertia", "Moment of inertia about the hinge axis", "I_z", "Izz", "origin", inertia, "kg*m^2",
          "I_z = I_G + m (x_G² + y_G²), parallel axis"),
         ("izx", "Product of inertia about the origin", "I_{zx}", "Izx", "origin", inertia, "kg*m^2",
