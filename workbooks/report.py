@@ -173,8 +173,9 @@ class Report:
                 name = names.get((number, formula.ref)) or self._label(number, formula) or formula.ref
                 numbers = self._numbers(number, formula)
                 check = Check(name, verdict, sheet.name, formula.ref, **numbers)
-                given = whole.arguments if whole is not None and whole.name == "RB_CHECK" else []
-                found.append(self._with_given(number, check, given))
+                calls = self.reading.prepared.analyses[number, formula.ref].calls
+                call = next((c for c in calls if c.name == "RB_CHECK"), None)
+                found.append(self._with_given(number, check, call.arguments if call is not None else []))
         return tuple(found)
 
     def _label(self, number: int, formula: FormulaCell) -> str:
