@@ -6,6 +6,8 @@ import math
 from dataclasses import dataclass
 from typing import Any, Final
 
+import numpy as np
+
 
 @dataclass(frozen=True, slots=True)
 class Limit:
@@ -29,14 +31,21 @@ class Limit:
                 and (value < self.high if self.high_open else value <= self.high)
                 and not (self.nonzero and value == 0.0)
             )
-        return all(self.allows(float(v)) for v in value.ravel())
+        return bool(self._within(value).all())
 
     def first_outside(self, value: Any) -> tuple[int, float]:
         """Return position (from 0) and number of the first one outside the limit."""
         if type(value) is float:
             return 0, value
-        flat = [float(v) for v in value.ravel()]
-        return next((i, v) for i, v in enumerate(flat) if not self.allows(v))
+        flat = value.ravel()
+        position = int(np.argmin(self._within(flat)))
+        return position, float(flat[position])
+
+    def _within(self, values: Any) -> Any:
+        """Return where the numbers of an array lie within the limit."""
+        good = values > self.low if self.low_open else values >= self.low
+        good &= values < self.high if self.high_open else values <= self.high
+        return good & (values != 0.0) if self.nonzero else good
 
 
 POSITIVE: Final = Limit("greater than zero", low=0.0, low_open=True)

@@ -173,6 +173,12 @@ def unit_leads(argument: str, kind: Kind, cell: Block) -> InputError:
 def column(argument: str, kind: Kind, cell: Block) -> Array:
     """Read n x 1 cells (first or last may be the unit), or n x 2 of numbers beside units, as (n,)."""
     if len(cell[0]) == 2:
+        units = {row[1] for row in cell}
+        given = [row[0] for row in cell]
+        if len(units) == 1 and set(map(type, given)) == {float}:
+            same: Array = np.array(given, dtype=float) * unit_factor(argument, kind, str(cell[0][1]), "row 1")
+            if np.isfinite(same).all():
+                return same
         values = [
             beside_unit(argument, kind, row[0], str(row[1]), f"row {i}") for i, row in enumerate(cell, 1)
         ]

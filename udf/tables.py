@@ -6,6 +6,7 @@ import difflib
 import re
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, field
+from types import NoneType
 from typing import Any, Final
 
 import numpy as np
@@ -243,11 +244,22 @@ class Table:
                 i = int(np.flatnonzero(~np.isfinite(values))[0])
                 raise wrong(c.label, "a finite number", cells[i], where=f"{argument}, {data.where(i)}")
             values = values * f
+        elif types == {float, NoneType} and (unit or dimensionless) and c.blanks and not c.required:
+            values = np.array(cells, dtype=float) * f  # a blank becomes NaN
+            if np.isnan(values).sum() != cells.count(None) or np.isinf(values).any():
+                values = self._numbers(argument, c, unit, f, cells, data)
         else:
-            values = np.empty(len(cells))
-            for i, v in enumerate(cells):
-                values[i] = self._number(argument, c, unit, f, v, f"{argument}, {data.where(i)}")
+            values = self._numbers(argument, c, unit, f, cells, data)
         self._limited(argument, c, values, data)
+        return values
+
+    def _numbers(
+        self, argument: str, c: Column, unit: str | None, f: float, cells: Sequence[Value], data: TableData
+    ) -> NDArray[np.float64]:
+        """Read a column cell by cell, naming the row of a bad one."""
+        values = np.empty(len(cells))
+        for i, v in enumerate(cells):
+            values[i] = self._number(argument, c, unit, f, v, f"{argument}, {data.where(i)}")
         return values
 
     def _number(self, argument: str, c: Column, unit: str | None, f: float, v: Value, place: str) -> float:

@@ -127,6 +127,10 @@ class AnyQuantity:
                 raise InputError(argument, f"{AMOUNT}; the unit cell beside {shown(flat[0])} is blank")
             if len(cell[0]) == 1:
                 return amounts(argument, flat)
+            if len(cell[0]) == 2 and all(is_unit_text(unit) for unit in flat[1::2]):
+                if len({str(unit).strip() for unit in flat[1::2]}) > 1:
+                    raise InputError(argument, "a column in one unit; the units beside the numbers differ")
+                return amounts(argument, [*flat[::2], flat[1]])
             raise wrong(argument, AMOUNT, cell)
 
         return read
@@ -162,6 +166,10 @@ def amounts(argument: str, cells: list[Value]) -> Amount:
         unit, cells = str(cells[-1]).strip(), cells[:-1]
     elif is_unit_text(cells[0]):
         unit, cells, start = str(cells[0]).strip(), cells[1:], 2
+    if set(map(type, cells)) == {float}:
+        plain = np.array(cells, dtype=float)
+        if np.isfinite(plain).all():
+            return Amount(plain, unit)
     read = [one_amount(argument, c, f"row {i}") for i, c in enumerate(cells, start)]
     units = {a.unit for a in read}
     if len(units) > 1 or (unit and units != {""}):

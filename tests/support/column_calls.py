@@ -24,6 +24,11 @@ def texts(unit: str) -> Maker:
     return lambda rng, n: [[f"{v:.6f} {unit}"] for v in rng.uniform(0.2, 2.0, n)]
 
 
+def beside(unit: str) -> Maker:
+    """Numbers beside their unit, the way a calc sheet is laid out."""
+    return lambda rng, n: [[v, unit] for v in rng.uniform(0.2, 2.0, n).tolist()]
+
+
 ONE, TWO, THREE = scalars(), vectors(2), vectors(3)
 TENSOR = rows([[2.0, 0.1, 0.0], [0.1, 3.0, 0.2], [0.0, 0.2, 4.0]])
 BODY = body_cells(3.0, (0.4, -0.2, 0.7), TENSOR)
@@ -46,7 +51,8 @@ def pairs(rng: np.random.Generator, n: int) -> list[Any]:
 
 # Label: function, arguments; a list or text or number is one cell for all rows.
 CALLS: dict[str, tuple[str, list[Any]]] = {
-    "convert": ("RB_CONVERT", [texts("mm"), "in"]),
+    "convert": ("RB_CONVERT", [beside("mm"), "in"]),
+    "convert texts": ("RB_CONVERT", [texts("mm"), "in"]),
     "tensor of a shape": ("RB_SHAPE", ["tube", ONE, TUBE]),
     "moment of a shape": ("RB_SHAPE", ["tube", ONE, TUBE, "Izz", "kg*mm^2"]),
     "offset of a shape": ("RB_SHAPE", ["solid cone", ONE, "R 200 mm; H 1 m", "offset", "mm"]),
@@ -59,8 +65,8 @@ CALLS: dict[str, tuple[str, list[Any]]] = {
     "turn about vectors": ("RB_TURN", [TENSOR, THREE, 0.4]),
     "axis": ("RB_AXIS_INERTIA", [TENSOR, THREE]),
     "axis off the center": ("RB_AXIS_INERTIA", [TENSOR, "x", ONE, THREE]),
-    "gyration": ("RB_RADIUS_OF_GYRATION", [ONE, ONE, "mm"]),
-    "gd2": ("RB_GD2", [texts("kgf*m^2")]),
+    "gyration": ("RB_RADIUS_OF_GYRATION", [ONE, beside("lb"), "mm"]),
+    "gd2": ("RB_GD2", [beside("kgf*m^2")]),
     "gd2 from": ("RB_GD2_FROM", [ONE]),
     "tilt of a body": ("RB_MOVE", [BODY, "z", ONE, row((0.1, 0.2, 0.0)), "y", "mm"]),
     "tensor of a tilted body": ("RB_MOVE", [BODY, "y", ONE, "origin", "inertia"]),
@@ -92,7 +98,7 @@ CALLS: dict[str, tuple[str, list[Any]]] = {
     "spin torque about z": ("RB_SPIN_TORQUE", [TENSOR, ONE, ONE]),
     "reflected": ("RB_REFLECTED_INERTIA", [ONE, ONE]),
     "motor": ("RB_MOTOR_TORQUE", [ONE, ONE, scalars(0.5, 0.9), OMITTED, scalars(-1, 1)]),
-    "margin": ("RB_MARGIN", [texts("kN"), "3 kN", 1.5]),
+    "margin": ("RB_MARGIN", [beside("kN"), "3 kN", 1.5]),
     "factors": ("RB_MARGIN", ["300 N", texts("kN"), ONE, "factor"]),
     "check": ("RB_CHECK", [texts("kN"), "1 kN"]),
 }  # fmt: skip

@@ -148,3 +148,11 @@ def test_the_row_at_fault_is_named():
     said = refused("RB_INSTANT_CENTER_2", points, velocities, others, speeds)
     assert "they move apart at 1 m/s" in said.reason
     assert "row 2" in said.reason
+
+
+def test_units_beside_a_column_must_agree():
+    """Rule of the cells: rows of number and unit are one column when the unit is the same in each."""
+    assert ask("RB_CONVERT", [[1.0, "m"], [2.0, "m"], [3.0, "m"]], "mm") == [[1000.0], [2000.0], [3000.0]]
+    said = refused("RB_CONVERT", [[1.0, "m"], [2.0, "mm"], [3.0, "m"]], "mm")
+    assert "the units beside the numbers differ" in said.reason
+    assert ask("RB_GD2", [[4.0, "kg*m^2"], [4.0e3, "kg*cm^2"]]) == [[1.0], [0.1]]
