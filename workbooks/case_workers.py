@@ -5,7 +5,6 @@ from __future__ import annotations
 import multiprocessing
 import os
 import signal
-import threading
 import time
 from collections.abc import Iterator, Mapping
 from concurrent.futures import ProcessPoolExecutor
@@ -66,15 +65,15 @@ def _shared(cases: Cases, rows: tuple[Row, ...]) -> Iterator[Answer]:
 
 @contextmanager
 def _started_deaf() -> Iterator[None]:
-    """Let processes that start now ignore Ctrl-C from their first moment: they inherit it."""
-    if threading.current_thread() is not threading.main_thread():
+    """Hold Ctrl-C back while processes start: they inherit that, and this one gets it afterwards."""
+    if not hasattr(signal, "pthread_sigmask"):
         yield
         return
-    before = signal.signal(signal.SIGINT, signal.SIG_IGN)
+    before = signal.pthread_sigmask(signal.SIG_BLOCK, [signal.SIGINT])
     try:
         yield
     finally:
-        signal.signal(signal.SIGINT, before)
+        signal.pthread_sigmask(signal.SIG_SETMASK, before)
 
 
 def _begin(data: bytes, table: Table, inputs: Mapping[str, object]) -> None:
