@@ -105,7 +105,8 @@ def expected(v: Mapping[str, Any], parts: Sequence[Mapping[str, Any]]) -> Expect
     tip = speed * (v["edge"] + v["leaf_length"])
     demands = {name: largest(name) for name in ("radial_1", "radial_2", "axial")}
     demands |= {"brake_rating": largest("brake"), "latch_rating": largest("latch"), "tip_speed": tip}
-    demands["stop_fits"] = v["stop_angle"]
+    hand = v["hand_x"] if v["moved_by"] == "hand" else 0.0
+    demands |= {"stop_fits": v["stop_angle"], "on_leaf": max(body.first[0] / body.mass, v["latch_x"], hand)}
     if v["moved_by"] == "hand":
         demands["hand_rating"] = largest("hand")
     else:

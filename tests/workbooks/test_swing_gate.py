@@ -311,6 +311,7 @@ def test_the_governing_case_is_named() -> None:
         ({"latch_rating": "1 kN"}, "latch_rating"),
         ({"tip_limit": "0.5 m/s"}, "tip_speed"),
         ({"stop_angle": "96 deg"}, "stop_fits"),
+        ({"latch_x": "3690 mm"}, "on_leaf"),
     ],
 )
 def test_a_check_fails_when_its_capacity_does_not_suffice(changes: dict[str, Any], check: str) -> None:

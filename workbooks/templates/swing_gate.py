@@ -275,7 +275,7 @@ def _loads(rows: _Rows) -> None:
     rows.add("person", "Mass of the person on the tip", "m_p", 90, "kg", kinds.MASS, limit=POSITIVE)
     rows.add("swing", "Allowance for swinging on to it", "k_p", 1.5, "-", ratio, limit=AT_LEAST_ONE)
     rows.add("person_y", "Person hangs beside the leaf by", "y_p", 200, "mm", length, note="+ on the y side")
-    rows.add("latch_x", "Latch: from the hinge axis", "x_l", 3690, "mm", length, limit=POSITIVE)
+    rows.add("latch_x", "Latch: from the hinge axis", "x_l", 3650, "mm", length, limit=POSITIVE)
     rows.add("latch_z", "Latch: above the yard", "z_l", 1000, "mm", length, limit=NOT_NEGATIVE)
 
 

@@ -89,12 +89,16 @@ def _holding(given: Inputs, work: Work, cases: Cases) -> list[Check]:
 
 
 def _limits(given: Inputs, work: Work, cases: Cases) -> list[Check]:
-    stop = given["stop_angle"].si
+    stop, unit = given["stop_angle"].si, given["leaf_length"].unit
+    hand = f"IF({given.by_hand},{given['hand_x'].si},0)"
+    farthest = f'MAX({work["center_x"].si},{given["latch_x"].si},{hand})*RB_CONVERT("1 m",{unit})'
+    tip = f'{given.tip}*RB_CONVERT("1 m",{unit})'
     return [
         Check.against("Tip: speed", work["tip_speed"].si, "m/s", given["tip_limit"], "tip_speed"),
         Check.against(
             "Braking fits into the opening angle", stop, "rad", given["opening"], "stop_fits", plain=True
         ),
+        Check("Mass center, latch and hand: on the leaf", farthest, unit, tip, "on_leaf", plain=True),
     ]
 
 

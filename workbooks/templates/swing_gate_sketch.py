@@ -39,9 +39,9 @@ def elevation(given: Inputs, work: Work, looked: Looked, page: Page, row: int) -
     largest = f"MAX({f['look_weight']},{f['look_axial']},ABS({f['look_1x']}),ABS({f['look_2x']}))"
     scale = f"{ARROW}*{reach}/{largest}"
     z_a = f"IF({given.axial_below},{z_1},{z_2})"
-    low = f"-0.02*{reach}"
+    low = f"-0.06*{reach}"
     labels = {
-        "weight": ((center[0], low), "b"),
+        "weight": ((center[0], low), "r"),
         "person": ((given.tip, f"{given.top}-{person}*{scale}/2"), "r"),
         "axial": (("0", f"{z_a}-{f['look_axial']}*{scale}"), "r"),
         "lower": ((f"-0.5*ABS({f['look_1x']})*{scale}", z_1), "t"),
