@@ -234,7 +234,7 @@ class Page:
         self.put(self.LABEL, rich(label), "RS label")
         self.put(self.VALUE, f'=IFERROR(IF({formula}>0,"","{why}"),"")', "RS note")
         found = f"=IF(IFERROR({formula},1)>0,IFERROR({formula},0),NA())"  # what is missing shows elsewhere
-        self.put(self.SI, found, "RS si", form='General;-General;""')
+        self.put(self.SI, found, "RS si", form='0.0000;-0.0000;""')
         self.put(self.SI_UNIT, kind.si, "RS unit fixed")
         self._grey_errors(self.SI)
         self.book.need(self.at(self.SI), "")
