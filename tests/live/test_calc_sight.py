@@ -114,9 +114,19 @@ def test_a_text_answer_is_the_same_text_as_a_typed_one(calc: LiveCalc, doc: int)
         "A5": '=MATCH("OK",A1:A1,0)',
         "A6": '=IF(RB_KIND("mm")="length",1,2)',
         "A7": '=ISERROR(RB_KIND("furlongs"))*1',
+        "C1": "case",
+        "D1": "load [N]",
+        "C2": "empty",
+        "D2": 3,
+        "C3": "full",
+        "D3": 5,
+        "A8": '=MATCH(RB_ENVELOPE(C1:D3,"governing"),C1:C3,0)',
+        "A9": '=RB_ENVELOPE(C1:D3,"largest")',
+        "A10": "=INDEX(RB_ENVELOPE(C1:D3),1,2)",
     }
     calc.ask("put", doc, 0, formulas)
-    assert [r[0] for r in calc.read(doc, 0, "A1:A7")] == ["OK", 1.0, 1.0, 1.0, 1.0, 1.0, 1.0]
+    got = [r[0] for r in calc.read(doc, 0, "A1:A10")]
+    assert got == ["OK", 1.0, 1.0, 1.0, 1.0, 1.0, 1.0, 3.0, 5.0, "full"]
 
 
 def test_one_number_counts_as_a_number_everywhere(calc: LiveCalc, doc: int) -> None:

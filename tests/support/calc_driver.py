@@ -12,7 +12,6 @@ import uno
 from com.sun.star.beans import PropertyValue
 
 FILTERS = {".xlsx": "Calc MS Excel 2007 XML", ".ods": "calc8", ".pdf": "calc_pdf_Export"}
-VALUE, TEXT = 1, 2  # com.sun.star.sheet.FormulaResult
 
 
 def url_of(path):
@@ -38,17 +37,20 @@ def connect(pipe):
             time.sleep(0.05)
 
 
-def shown(cell):
-    """Return a cell as {"error": code}, {"number": x}, {"text": s} or {} when it is blank."""
-    error = cell.getError()
-    if error:
-        return {"error": error}
-    kind = cell.Type.value
-    if kind == "FORMULA":
-        kind = "VALUE" if cell.FormulaResultType2 == VALUE else "TEXT"
-    if kind == "VALUE":
-        return {"number": cell.Value}
-    return {"text": cell.String} if kind == "TEXT" else {}
+def cells_of(area):
+    """Return each cell as {"error": code}, {"number": x} or {"text": s}, which is empty for a blank."""
+    out = []
+    for r, row in enumerate(area.getDataArray()):
+        line = []
+        for c, value in enumerate(row):
+            if isinstance(value, float):
+                line.append({"number": value})
+            elif isinstance(value, str):
+                line.append({"text": value})
+            else:  # an error arrives as nothing
+                line.append({"error": area.getCellByPosition(c, r).getError()})
+        out.append(line)
+    return out
 
 
 class Driver:
@@ -106,12 +108,7 @@ class Driver:
         return [cell.Formula, cell.FormulaLocal]
 
     def read(self, doc, sheet, where):
-        area = self.area(doc, sheet, where)
-        address = area.RangeAddress
-        return [
-            [shown(area.getCellByPosition(c, r)) for c in range(address.EndColumn - address.StartColumn + 1)]
-            for r in range(address.EndRow - address.StartRow + 1)
-        ]
+        return cells_of(self.area(doc, sheet, where))
 
     def read_each(self, doc, sheet, places):
         """Return several blocks of cells, each as `read` does."""
@@ -130,12 +127,7 @@ class Driver:
 
     def name(self, doc, name):
         """Return the cells of a defined name, as `read` does."""
-        area = self.documents[doc].NamedRanges.getByName(name).getReferredCells()
-        address = area.RangeAddress
-        return [
-            [shown(area.getCellByPosition(c, r)) for c in range(address.EndColumn - address.StartColumn + 1)]
-            for r in range(address.EndRow - address.StartRow + 1)
-        ]
+        return cells_of(self.documents[doc].NamedRanges.getByName(name).getReferredCells())
 
     def conditions(self, doc, sheet):
         found = self.area(doc, sheet, "A1").Spreadsheet

@@ -7,8 +7,10 @@ import os
 import struct
 from typing import Any
 
+import uno
 import unohelper
 from com.sun.star.lang import XServiceInfo, XServiceName
+from com.sun.star.sheet import ResultEvent, XVolatileResult
 from com.sun.star.task import XJob
 from org.rigidsheet.cells import XFunctions
 from rigidsheet_channel import Channel, WorkerLost
@@ -18,7 +20,7 @@ from rigidsheet_sight import Sight
 with open(os.path.join(os.path.dirname(os.path.abspath(__file__)), "config.json"), encoding="utf-8") as _file:
     CONFIG: dict[str, Any] = json.load(_file)
 
-REMEMBERED = 1000  # lost calls whose reason is kept for RB_WHY
+REMEMBERED = 1000  # lost calls whose reason is kept for RB_WHY, and blocks
 
 
 def error_number(code: int) -> float:
@@ -102,7 +104,40 @@ class Functions(unohelper.Base, XFunctions, XServiceInfo, XServiceName):
         return (CONFIG["service"], "com.sun.star.sheet.AddIn")
 
 
-def method_of(name: str, own: str, one_text: bool) -> Any:
+class Block(unohelper.Base, XVolatileResult):
+    """A block of cells as the answer of a method that may also answer with one text.
+
+    As `any` Calc takes no block from Python; the value of a result that could change later it does take.
+    """
+
+    def __init__(self, rows: Any) -> None:
+        self._rows = rows
+
+    def addResultListener(self, listener: Any) -> None:
+        event = ResultEvent()
+        event.Source = self
+        event.Value = uno.Any("[][]any", self._rows)
+        listener.modified(event)
+
+    def removeResultListener(self, listener: Any) -> None:
+        """Nothing is kept: the value never changes."""
+
+
+# Calc keeps what belongs to a block until the document is closed, so the same answer is the same block.
+BLOCKS: dict[Any, Block] = {}
+
+
+def block_of(rows: Any) -> Block:
+    """Return the block with these rows."""
+    found = BLOCKS.get(rows)
+    if found is None:
+        while len(BLOCKS) >= REMEMBERED:
+            del BLOCKS[next(iter(BLOCKS))]
+        found = BLOCKS[rows] = Block(rows)
+    return found
+
+
+def method_of(name: str, own: str, text_alone: bool) -> Any:
     """Return the method behind a function; arguments omitted at the end are dropped."""
 
     def method(self: Functions, *arguments: Any) -> Any:
@@ -111,13 +146,14 @@ def method_of(name: str, own: str, one_text: bool) -> Any:
         return answer(name, own, arguments)
 
     def text_method(self: Functions, *arguments: Any) -> Any:
-        return method(self, *arguments)[0][0]
+        rows = method(self, *arguments)
+        return rows[0][0] if len(rows) == 1 and len(rows[0]) == 1 else block_of(rows)
 
-    return text_method if one_text else method
+    return text_method if text_alone else method
 
 
-for _name, (_method, _one_text) in CONFIG["functions"].items():
-    setattr(Functions, _method, method_of(_name, _method, _one_text))
+for _name, (_method, _text_alone) in CONFIG["functions"].items():
+    setattr(Functions, _method, method_of(_name, _method, _text_alone))
 
 NAMES = frozenset(name.lower() for name in CONFIG["functions"]) | frozenset(
     f"{CONFIG['service']}.{method}".lower() for method, _ in CONFIG["functions"].values()

@@ -46,14 +46,13 @@ def host_arguments(f: CellFunction) -> tuple[Arg, ...]:
     return (*arguments[:-1], *(replace(last, name=f"argument_{i}") for i in range(1, longest + 1)))
 
 
-def gives_one_text(f: CellFunction) -> bool:
-    """Say whether a function always gives one text.
+def gives_text_alone(f: CellFunction) -> bool:
+    """Say whether an answer of a function may be one text.
 
-    Calc finds a text that came inside a block unequal to the same text typed in a cell, so that
-    IF(RB_CHECK(...)="OK", ...) needs the text by itself.
+    Calc finds a text that came inside a block unequal to the same text typed in a cell. For
+    IF(RB_CHECK(...)="OK", ...) and the like the text has to leave by itself.
     """
-    fields = f.result.fields
-    return not f.result.open and len(fields) == 1 and fields[0].form is Form.TEXT
+    return f.result.open or any(field.form is Form.TEXT for field in f.result.fields)
 
 
 def normalise(arguments: tuple[Any, ...]) -> list[Cell]:

@@ -18,6 +18,7 @@ from com.sun.star.util import XModifyListener
 BLANK = ()  # stands for a blank cell on the line to the worker
 GAP_SECONDS = 0.03  # a recalculation calls without such a pause; after one the documents are read again
 LARGEST_SHEET = 400_000  # cells of the used area; above, a sheet is not looked at
+CONTENT = 1 | 2 | 4 | 16  # com.sun.star.sheet.CellFlags: numbers, dates, texts, formulas
 LARGEST_AREA = 400  # cells of an argument
 REMEMBERED = 100_000  # formula texts
 BOOLEANS = {"TRUE": True, "FALSE": False, "=TRUE()": True, "=FALSE()": False}
@@ -108,14 +109,16 @@ class Book:
         self.booleans = False
         for i in range(document.Sheets.Count):
             sheet = document.Sheets.getByIndex(i)
-            area = sheet.createCursor()
-            area.gotoStartOfUsedArea(False)
-            area.gotoEndOfUsedArea(True)
-            where = area.RangeAddress
-            size = (where.EndColumn - where.StartColumn + 1) * (where.EndRow - where.StartRow + 1)
-            if size <= LARGEST_SHEET:
-                rows = area.getFormulaArray()
-                self.sheets[sheet.Name] = where.StartColumn, where.StartRow, rows
+            # a cursor would know the used area, but asking it makes Calc work out cells out of turn
+            filled = sheet.queryContentCells(CONTENT).RangeAddresses
+            if not filled:
+                self.sheets[sheet.Name] = 0, 0, (("",),)
+                continue
+            left, top = min(f.StartColumn for f in filled), min(f.StartRow for f in filled)
+            right, bottom = max(f.EndColumn for f in filled), max(f.EndRow for f in filled)
+            if (right - left + 1) * (bottom - top + 1) <= LARGEST_SHEET:
+                rows = sheet.getCellRangeByPosition(left, top, right, bottom).getFormulaArray()
+                self.sheets[sheet.Name] = left, top, rows
                 self.booleans = self.booleans or any(not BOOLEANS.keys().isdisjoint(row) for row in rows)
         names = document.NamedRanges
         self.names = {}
