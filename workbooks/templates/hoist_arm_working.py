@@ -15,7 +15,7 @@ from .hoist_arm import CASES, LOWER, NAMES, STOP_LOWERING, Case, Inputs
 from .kit import Book, Page, Place
 from .kit_look import HAIR, INDENT, INK, SANS
 
-WORK_COLUMNS: Final = (2.5, 35.0, 8.5, 12.5, 10.0, 12.5, 9.0, 17.0, 9.5, 9.5, 9.5, 9.5, 9.5)
+WORK_COLUMNS: Final = (2.5, 34.0, 10.0, 12.5, 10.0, 12.5, 9.0, 17.0, 9.5, 9.5, 9.5, 9.5, 9.0)
 STEPS: Final = 40
 ANGLE, R_X, R_Y, TORQUE = 1, 2, 3, 4
 FIXED = TORQUE + len(CASES)  # drive torque of the stop while lowering with the pivot treated as fixed
