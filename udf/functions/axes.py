@@ -24,7 +24,7 @@ def direction_of(argument: str, axis: Any) -> Any:
     """Return the direction of an axis given by a word x, y, z or by a vector; refuse one of no length."""
     if isinstance(axis, str):
         return np.eye(3)["xyz".index(axis)]
-    if not np.all(np.any(axis != 0.0, axis=-1)):
+    if not axis.any(axis=-1).all():
         raise InputError(argument, "a direction: x, y, z or a vector that is not zero")
     return axis
 

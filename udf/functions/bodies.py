@@ -138,13 +138,11 @@ def moved(body: Any, axis: Any, angle: Any, through: Any) -> BodyTerms:
             raise InputError(name, "one row: a body turns about one line; only `angle` may be a column")
     rotation = rotation_matrix(direction, angle)
     center = point + rotation @ (rigid.center - point)
-    problem = "" if type(angle) is float else "given when columns are handed in: one result for each row"
-    return BodyTerms(
-        np.full(np.shape(angle), rigid.mass),
-        center,
-        turned(rigid.inertia, rotation),
-        record_problem=problem,
-    )
+    tensor = turned(rigid.inertia, rotation)
+    if type(angle) is float:
+        return BodyTerms(rigid.mass, center, tensor)
+    problem = "given when columns are handed in: one result for each row"
+    return BodyTerms(np.full(len(angle), rigid.mass), center, tensor, record_problem=problem)
 
 
 def moved_working(values: tuple[Any, ...], answer: BodyTerms) -> list[str]:
