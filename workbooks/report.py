@@ -172,7 +172,15 @@ class Report:
                 verdict = value.text if isinstance(value, CellError) else str(value)
                 name = names.get((number, formula.ref)) or self._label(number, formula) or formula.ref
                 numbers = self._numbers(number, formula)
-                check = Check(name, verdict, sheet.name, formula.ref, **numbers)
+                check = Check(
+                    name,
+                    verdict,
+                    sheet.name,
+                    formula.ref,
+                    numbers.get("demand"),
+                    numbers.get("capacity"),
+                    numbers.get("margin"),
+                )
                 calls = self.reading.prepared.analyses[number, formula.ref].calls
                 call = next((c for c in calls if c.name == "RB_CHECK"), None)
                 found.append(self._with_given(number, check, call.arguments if call is not None else []))
