@@ -111,7 +111,7 @@ def write(path: Path, blank: bool) -> None:
     arm, tray = tables.tables(book, given, work)
     looked = positions.position(book, given, work, arm, tray)
     checks.checks(book, given, work, arm, tray, looked)
-    sketches.sketch(given, work, looked, page, row=7)
+    sketches.sketch(given, looked, page, row=7)
     book.save(path)
 
 

@@ -2,16 +2,15 @@
 
 from __future__ import annotations
 
-from typing import Final
+from typing import Any, Final
 
 from .kit import Book, Page
 from .kit_charts import LINES, Curve, line_chart
 from .kit_checks import COLUMNS as CHECK_COLUMNS
 from .kit_checks import CaseTable, Check, Checks
 from .shaker_arm import CASES, Given
-from .shaker_arm_position import Looked
 from .shaker_arm_tables import ANGLE, Table
-from .shaker_arm_working import Work
+from .shaker_arm_working import Looked, Work
 
 # Columns of the table of load cases; the crank angle of each value stands right of it.
 COLUMN: Final = {"sensor": 4, "lift": 6, "slip": 8, "side": 10, "thrust": 12}
@@ -62,7 +61,7 @@ def _load_cases(book: Book, page: Page, work: Work, arm: Table, tray: Table) -> 
 
 
 def _machine(given: Given, work: Work, cases: CaseTable) -> list[Check]:
-    def found(key: str) -> dict[str, str]:
+    def found(key: str) -> dict[str, Any]:
         column = COLUMN[key]
         names = {
             "case": cases.envelope(column, "governing"),
@@ -153,8 +152,8 @@ def _chart(
         Curve(case, turn, (sheet, table.starts[key] + k, first, table.last), *LINES[k])
         for k, case in enumerate(CASES)
     ]
-    line = ((sheet, column, first, first + 1) for column in (beside, beside + 1))
-    curves.append(Curve(words[2], *line, width=2.5))
+    line_x, line_y = ((sheet, column, first, first + 1) for column in (beside, beside + 1))
+    curves.append(Curve(words[2], line_x, line_y, width=2.5))
     chart = line_chart(
         page, corner, curves, size=size, title=words[0], x_title="crank angle [deg]", y_title=words[1]
     )

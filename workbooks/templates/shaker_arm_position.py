@@ -1,111 +1,25 @@
-"""The shaker arm's working: load cases in SI, then one crank angle through the functions."""
+"""The shaker arm at one crank angle through the functions, along x and y, and how far the tables agree."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
 from typing import Final
 
 from rigidsheet.udf import kinds
-from rigidsheet.udf.kinds import Kind
 
-from .kit import Book, Place
-from .kit_look import LEFT, SOFT, rich
+from .kit import Book
+from .kit_look import LEFT
 from .shaker_arm import Given
 from .shaker_arm_tables import LOST, Table
-from .shaker_arm_working import NOTES, Work
+from .shaker_arm_working import BESIDE, Looked, Position, Work
 
 VECTOR_WORDS: Final = {4: "size", 5: "unit", 6: "x", 7: "y", 8: "unit"}
+HELD: Final = "arm held at this crank angle"
 STILL, STEADY = '"(0, 0) m/s"', '"(0, 0) m/s^2"'  # velocity and acceleration of the crank shaft
 SPINS: Final = (
     "sin φ = (e − r sin θ) / l,   ω_a = −r ω cos θ / (l cos φ),   "
     "α_a = (r (ω² sin θ − α cos θ) + l ω_a² sin φ) / (l cos φ)"
 )
 AT_REST: Final = "omega 0 rad/s; alpha 0 rad/s^2; center acceleration (0, 0) m/s^2; gravity down"
-
-
-@dataclass(frozen=True, slots=True)
-class Vector:
-    """A vector on the sheet: its components and unit, and its components in SI."""
-
-    ref: str  # x, y, unit: hand this to functions
-    x: str
-    y: str
-
-
-@dataclass(slots=True)
-class Looked:
-    """References to what the functions say about the position looked at."""
-
-    angle: str = ""  # of the arm, in SI
-    vectors: dict[str, Vector] = field(default_factory=dict)
-    gaps: str = ""  # differences between functions and tables
-    residual: str = ""  # of the far end across its guide, in m/s^2
-
-
-class Position:
-    """Writes the rows of one position, and keeps what later rows need."""
-
-    def __init__(self, book: Book, given: Given, work: Work) -> None:
-        self.book, self.page, self.given, self.work = book, work.page, given, work
-        self.number, self.looked = given["look_case"].si, Looked()
-        self.scalars: dict[str, Place] = {}
-
-    def scalar(
-        self, key: str, label: str, symbol: str, formula: str, kind: Kind, unit: str, note: str = ""
-    ) -> str:
-        """Write a number worked out in SI; give its reference."""
-        place = self.page.derived(label, symbol, formula, kind, unit, f"look_{key}", note=note)
-        self.scalars[key] = place
-        return place.si
-
-    def vector(
-        self,
-        key: str,
-        label: str,
-        symbol: str,
-        formula: str | tuple[str, str],
-        kind: Kind,
-        unit: str,
-        note: str = "",
-    ) -> str:
-        """Write a vector from a function (`{unit}` is its unit) or from two numbers in SI; give it with its unit."""
-        page, row = self.page, self.page.row
-        page.put(page.LABEL, label, "RS label")
-        page.put(page.SYMBOL, rich(symbol, 10, italic=True, serif=True), "RS symbol")
-        page.put(page.UNIT, unit, "RS unit")
-        page.unit_choices(page.UNIT, kind)
-        where = page.at(page.UNIT)
-        for k, column in enumerate((6, 7)):
-            if isinstance(formula, str):
-                text = f"INDEX({formula.replace('{unit}', where)},1,{k + 1})"
-            else:
-                text = f'({formula[k]})*RB_CONVERT("1 {kind.si}",{where})'
-            page.put(column, self.book.guarded(text), "RS value")
-        x, y = page.at(6), page.at(7)
-        page.put(page.VALUE, self.book.guarded(f"SQRT({x}^2+{y}^2)"), "RS value")
-        page.put(8, f"={where}", "RS unit fixed")
-        page.put(NOTES, rich(note, 8, italic=True, color=SOFT) or None, "RS note")
-        for name, cell in (("", page.at(page.VALUE)), ("_x", x), ("_y", y)):
-            self.book.name(f"look_{key}{name}", cell)
-        si = f'*RB_CONVERT("1 "&{where},"{kind.si}")'
-        self.looked.vectors[key] = Vector(page.span((row, 6), (row, 8)), f"({x}{si})", f"({y}{si})")
-        page.row += 1
-        return self.looked.vectors[key].ref
-
-    def on_arm(self, u: str, v: str) -> tuple[str, str]:
-        """Return along x and y what is given along and across the arm."""
-        phi = self.looked.angle
-        return f"{u}*COS({phi})-({v})*SIN({phi})", f"{u}*SIN({phi})+({v})*COS({phi})"
-
-    def along(self, x: str, y: str) -> tuple[str, str]:
-        """Return along and across the arm what is given along x and y."""
-        phi = self.looked.angle
-        return f"(({x})*COS({phi})+({y})*SIN({phi}))", f"(({y})*COS({phi})-({x})*SIN({phi}))"
-
-    def acceleration(self, arm: str, what: str = "total") -> str:
-        """Return RB_ACCELERATION_AT of a point of the arm."""
-        motion = f"{self.scalars['arm_omega'].pair},{self.scalars['arm_alpha'].pair}"
-        return f'RB_ACCELERATION_AT({self.looked.vectors["pin_acceleration"].ref},{motion},{arm},"{what}",{{unit}})'
 
 
 def position(book: Book, given: Given, work: Work, arm: Table, tray: Table) -> Looked:
@@ -186,7 +100,7 @@ def _center(at: Position) -> None:
     for key, call, note in calls:
         row = at.page.row
         at.vector(key, "Instant center of the arm", "C", call, length, "mm", note)
-        for column in (4, 6, 7):
+        for column in (4, 6, 7, *BESIDE):
             cell = at.page.sheet.cell(row, column)
             inner = str(cell.value).removeprefix(f"=IF({at.book.ready_ref}=1,").removesuffix(',"")')
             cell.value = at.book.guarded(f'IF({turns},{inner},"none")')
@@ -267,34 +181,24 @@ def _tray(at: Position) -> tuple[dict[str, str], str]:
     page.row = top + 9
     moves = f'RB_REACTIONS({body},{motion},"none",{supports}'
     rests = f'RB_REACTIONS({body},"{AT_REST}","none",{supports}'
-    force = [
-        page.result(
-            label, symbol, f'{ask},"{what} force",{{unit}})', kinds.FORCE, "N", f"look_{name}", note=note
-        ).si
-        for label, symbol, ask, what, name, note in (
-            ("Foot 1: force of the arm, moving", "N_1", moves, "foot 1", "foot_1", "RB_REACTIONS"),
-            ("Foot 2: force of the arm, moving", "N_2", moves, "foot 2", "foot_2", ""),
-            ("Mat: friction along the arm, moving", "F", moves, "mat", "mat", ""),
-            (
-                "Foot 1: force of the arm, at rest here",
-                "N_{1,0}",
-                rests,
-                "foot 1",
-                "foot_1_rest",
-                "arm held at this crank angle",
-            ),
-            ("Foot 2: force of the arm, at rest here", "N_{2,0}", rests, "foot 2", "foot_2_rest", ""),
-        )
-    ]
+    rows = (
+        ("Foot 1: force of the arm, moving", "N_1", moves, "foot 1", "foot_1", "RB_REACTIONS"),
+        ("Foot 2: force of the arm, moving", "N_2", moves, "foot 2", "foot_2", ""),
+        ("Mat: friction along the arm, moving", "F", moves, "mat", "mat", ""),
+        ("Foot 1: force of the arm, at rest here", "N_{1,0}", rests, "foot 1", "foot_1_rest", HELD),
+        ("Foot 2: force of the arm, at rest here", "N_{2,0}", rests, "foot 2", "foot_2_rest", ""),
+    )
+    force = []
+    for label, symbol, ask, what, name, note in rows:
+        call = f'{ask},"{what} force",{{unit}})'
+        foot = page.result(label, symbol, call, kinds.FORCE, "N", f"look_{name}", note=note)
+        force.append(foot.si)
     ask, note = f'{moves},"residual moment",{{unit}})', "must be next to nothing"
     page.result("Balance about a second point: residual moment", "", ask, kinds.TORQUE, "N*m", note=note)
-    lifts = ",".join(f"IF({force[k + 3]}>0,1-{force[k]}/{force[k + 3]},{LOST})" for k in (0, 1))
-    label, note = (
-        "Taken off the worse foot by the motion",
-        "q = 1 − N / N_0; lifts off at 1",
-    )
+    lifts = ",".join(f"IF({force[k + 3]}>0,MIN(1-{force[k]}/{force[k + 3]},{LOST}),{LOST})" for k in (0, 1))
+    label, note = "Taken off the worse foot by the motion", "q = 1 − N / N_0; lifts off at 1"
     lift = at.scalar("lift", label, "q", f"MAX({lifts})", kinds.RATIO, "", note)
-    slip = f"IF({force[0]}+{force[1]}>0,ABS({force[2]})/({force[0]}+{force[1]}),{LOST})"
+    slip = f"IF({force[0]}+{force[1]}>0,MIN(ABS({force[2]})/({force[0]}+{force[1]}),{LOST}),{LOST})"
     slip = at.scalar(
         "slip", "Friction coefficient that is needed", "μ_n", slip, kinds.RATIO, "", "|F| / (N_1 + N_2)"
     )

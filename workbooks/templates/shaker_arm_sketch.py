@@ -9,11 +9,10 @@ from .kit_charts import sketch_chart
 from .kit_look import INK, RULE, SOFT
 from .kit_sketch import Points
 from .shaker_arm import Given
-from .shaker_arm_position import Looked, Vector
-from .shaker_arm_working import Work
+from .shaker_arm_working import Looked, Vector
 
 WARM: Final = "A5622A"
-WINDOW: Final = (-0.42, 1.22, -0.5, 0.95)  # left, right, low, high, as parts of arm and crank
+WINDOW: Final = (-0.52, 1.22, -0.5, 0.95)  # left, right, low, high, as parts of arm and crank
 KEY: Final = (
     "Arrows: v velocity, a acceleration. ● sensor S, ◆ mass center G of tray",
     "and fruit, ■ pusher P, × instant center, where the dashed lines meet.",
@@ -21,7 +20,7 @@ KEY: Final = (
 Point = tuple[str, str]
 
 
-def sketch(given: Given, work: Work, looked: Looked, page: Page, row: int) -> None:
+def sketch(given: Given, looked: Looked, page: Page, row: int) -> None:
     """Draw beside the inputs, from a row on; the points stand right of the printed part of the page."""
     reach = f"({given['arm'].si}+{given['crank'].si})"
     points = Points(page, page.columns + 3, row, reach)
@@ -50,7 +49,8 @@ def _arrow(points: Points, looked: Looked, reach: str, word: str, tail: Point, k
     color, unit = (RULE, "m/s") if speeds else (WARM, "m/s²")
     points.arrow(word, tail, step, color=color)
     tip = (f"({tail[0]})+{step[0]}", f"({tail[1]})+{step[1]}")
-    text = f'"{word} "&ROUND(SQRT({vector.x}^2+{vector.y}^2),2)&" {unit}"'
+    size = f"ROUND(SQRT({vector.x}^2+{vector.y}^2),2)"
+    text = f'IF({size}=0," ","{word} "&{size}&" {unit}")'
     if key == "far_velocity":  # along the guide, so its label stands clear below
         points.label(text, (tip[0], f"({tip[1]})-0.05*{reach}"), color=color, side="b")
         return
@@ -121,5 +121,6 @@ def _center(points: Points, given: Given, looked: Looked, reach: str) -> None:
     points.add("instant center", cross, width=2.0, color=INK)
     cross = [(f"{b[0]}{i}{half}", f"{held}{k}{half}") for i, k in ("+-", "-+")]
     points.add("instant center, across", cross, width=2.0, color=INK)
-    words = f'IF({inside},"instant center C","to C, "&ROUND(ABS({away}),2)&" m away")'
+    apart = f'"to C, "&ROUND(ABS({away}),2)&" m away"'
+    words = f'IF({inside},"instant center C",IF(ABS({away})<99*{reach},{apart},"C is far away"))'
     points.label(words, (f"({b[0]})-{half}", f"0.96*({held})"), color=INK, side="l")

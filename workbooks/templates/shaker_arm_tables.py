@@ -14,7 +14,9 @@ from .shaker_arm_working import Work
 
 STEP: Final = 6  # deg: a peak between two rows is next to nothing higher
 ROWS: Final = 360 // STEP + 1
-LOST: Final = 99  # what stands where a foot carries nothing even at rest, or the tray has left the arm
+LOST: Final = (
+    99  # stands where a foot carries nothing even at rest, or the tray has left the arm; and at most
+)
 ANGLE, ARM_ANGLE, CRANK_ALONG, CRANK_ACROSS, TURN, BEND, WEIGHT_ALONG, WEIGHT_ACROSS = range(1, 9)
 HEADS: Final = tuple(case.replace("overspeed", "over- speed") for case in CASES)
 COUNT: Final = len(CASES)
@@ -137,6 +139,7 @@ def _rows(book: Book, given: Given, work: Work, arm: Table, tray: Table, row: in
     """Write a row of both tables; a number for the angle, or a formula for the position looked at."""
     constant = angle.isdigit()
     for table in (arm, tray):
+        table.page.sheet.row_dimensions[row].height = 12.4  # so that a whole turn stands on one page
         text = int(angle) if constant else book.guarded(angle)
         table.page.put(ANGLE, text, "RS number", row=row, form="0" if constant else "0.0")
     for column, formula, form in _linkage(given, work, row):
@@ -209,11 +212,11 @@ def _lift(work: Work, tray: Table, row: int, k: int) -> str:
     for share, sign, other in ((work.share_1.si, "+", "-"), (work.share_2.si, "-", "+")):
         moved = f"({share}*{across}{sign}{work.lever.si}*{along}{other}{bend})"
         rests = f"({share}*Arm!$H{row}{sign}{work.lever.si}*Arm!$G{row})"
-        shares.append(f"IF({rests}>0,-{moved}/{rests},{LOST})")
+        shares.append(f"IF({rests}>0,MIN(-{moved}/{rests},{LOST}),{LOST})")
     return f"MAX({','.join(shares)})"
 
 
 def _slip(tray: Table, row: int, k: int) -> str:
     along, across = (f"{get_column_letter(tray.starts[key] + k)}{row}" for key in ("along", "across"))
     press = f"({across}+Arm!$H{row})"
-    return f"IF({press}>0,ABS({along}+Arm!$G{row})/{press},{LOST})"
+    return f"IF({press}>0,MIN(ABS({along}+Arm!$G{row})/{press},{LOST}),{LOST})"

@@ -1,11 +1,12 @@
-"""What the tables of the shaker arm use: load cases in SI, slides of the pusher, inertia of the tray."""
+"""The shaker arm's sheet of working: load cases in SI, how the tray stands, and rows of vectors."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Final
 
 from rigidsheet.udf import kinds
+from rigidsheet.udf.kinds import Kind
 from rigidsheet.udf.states import STANDARD_GRAVITY
 
 from .kit import Book, Page, Place
@@ -14,6 +15,7 @@ from .shaker_arm import CASES, STOPPING, Given
 
 COLUMNS: Final = (2.5, 37.0, 9.0, 12.0, 9.0, 12.0, 12.0, 8.5, 13.0, 13.0)
 NOTES: Final = 9
+BESIDE: Final = (12, 13)  # components in SI, right of the printed part
 
 
 @dataclass(frozen=True, slots=True)
@@ -111,3 +113,91 @@ def _inertia(page: Page, given: Given) -> Place:
         "tray_inertia",
         note="I_G = m_T (L² + H²) / 12",
     )
+
+
+@dataclass(frozen=True, slots=True)
+class Vector:
+    """A vector on the sheet: its components and unit, and its components in SI."""
+
+    ref: str  # x, y, unit: hand this to functions
+    x: str
+    y: str
+
+
+@dataclass(slots=True)
+class Looked:
+    """References to what the functions say about the position looked at."""
+
+    angle: str = ""  # of the arm, in SI
+    vectors: dict[str, Vector] = field(default_factory=dict)
+    gaps: str = ""  # differences between functions and tables
+    residual: str = ""  # of the far end across its guide, in m/s^2
+
+
+class Position:
+    """Writes the rows of one position, and keeps what later rows need."""
+
+    def __init__(self, book: Book, given: Given, work: Work) -> None:
+        self.book, self.page, self.given, self.work = book, work.page, given, work
+        self.number, self.looked = given["look_case"].si, Looked()
+        self.scalars: dict[str, Place] = {}
+
+    def scalar(
+        self, key: str, label: str, symbol: str, formula: str, kind: Kind, unit: str, note: str = ""
+    ) -> str:
+        """Write a number worked out in SI; give its reference."""
+        place = self.page.derived(label, symbol, formula, kind, unit, f"look_{key}", note=note)
+        self.scalars[key] = place
+        return place.si
+
+    def vector(
+        self,
+        key: str,
+        label: str,
+        symbol: str,
+        formula: str | tuple[str, str],
+        kind: Kind,
+        unit: str,
+        note: str = "",
+    ) -> str:
+        """Write a vector from a function (`{unit}` is its unit) or from two numbers in SI; give it with its unit."""
+        page, row = self.page, self.page.row
+        page.put(page.LABEL, label, "RS label")
+        page.put(page.SYMBOL, rich(symbol, 10, italic=True, serif=True), "RS symbol")
+        page.put(page.UNIT, unit, "RS unit")
+        page.unit_choices(page.UNIT, kind)
+        where = page.at(page.UNIT)
+        for k, column in enumerate((6, 7)):
+            if isinstance(formula, str):
+                text = f"INDEX({formula.replace('{unit}', where)},1,{k + 1})"
+            else:
+                text = f'({formula[k]})*RB_CONVERT("1 {kind.si}",{where})'
+            page.put(column, self.book.guarded(text), "RS value")
+        x, y = page.at(6), page.at(7)
+        page.put(page.VALUE, self.book.guarded(f"SQRT({x}^2+{y}^2)"), "RS value")
+        page.put(8, f"={where}", "RS unit fixed")
+        page.put(NOTES, rich(note, 8, italic=True, color=SOFT) or None, "RS note")
+        for name, cell in (("", page.at(page.VALUE)), ("_x", x), ("_y", y)):
+            self.book.name(f"look_{key}{name}", cell)
+        for column, cell in zip(BESIDE, (x, y), strict=True):
+            text = f'{cell}*RB_CONVERT("1 "&{where},"{kind.si}")'
+            page.put(column, self.book.guarded(text), "RS si")
+        ref = page.span((row, 6), (row, 8))
+        self.looked.vectors[key] = Vector(ref, page.at(BESIDE[0]), page.at(BESIDE[1]))
+        page.row += 1
+        return self.looked.vectors[key].ref
+
+    def on_arm(self, u: str, v: str) -> tuple[str, str]:
+        """Return along x and y what is given along and across the arm."""
+        phi = self.looked.angle
+        return f"{u}*COS({phi})-({v})*SIN({phi})", f"{u}*SIN({phi})+({v})*COS({phi})"
+
+    def along(self, x: str, y: str) -> tuple[str, str]:
+        """Return along and across the arm what is given along x and y."""
+        phi = self.looked.angle
+        return f"(({x})*COS({phi})+({y})*SIN({phi}))", f"(({y})*COS({phi})-({x})*SIN({phi}))"
+
+    def acceleration(self, arm: str, what: str = "total") -> str:
+        """Return RB_ACCELERATION_AT of a point of the arm."""
+        motion = f"{self.scalars['arm_omega'].pair},{self.scalars['arm_alpha'].pair}"
+        return f'RB_ACCELERATION_AT({self.looked.vectors["pin_acceleration"].ref},{motion},{arm},"{what}",{{unit}})'
