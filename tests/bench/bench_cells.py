@@ -161,6 +161,26 @@ def scalar_lines() -> Iterator[Line]:
         cells = OWN_CELLS.get(name) or [a.shape.sample() for a in find(name).arguments if not a.optional]
         measured = 1e6 * best(calling(name, cells))
         yield f"one call of {name}", SLOWER.get(name, 60.0), measured, "us", False
+    for name in ("RB_REACTIONS", "RB_DRIVE_TORQUE", "RB_ANGULAR_MOMENTUM", "RB_KINETIC_ENERGY"):
+        measured = 1e6 * best(changing(name))
+        yield (
+            f"{name}, body and motion seen for the first time",
+            SLOWER.get(name, 60.0),
+            measured,
+            "us",
+            False,
+        )
+
+
+def changing(name: str) -> Callable[[], object]:
+    """Return a call whose body and motion differ each time, so that no reading is remembered."""
+    variants = []
+    for k in range(2_000):
+        body = [["mass", 100.0 + k, "kg"], *FLAT_BODY[1:]]
+        motion = [["omega", 12.0 + k / 100, "deg/s"], *MOTION[1:]]
+        variants.append([body, motion, *OWN_CELLS[name][2:]])
+    turn = itertools.cycle(variants)
+    return lambda: call(name, next(turn))
 
 
 def column_lines() -> Iterator[Line]:
