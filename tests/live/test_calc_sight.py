@@ -140,7 +140,10 @@ def test_one_number_counts_as_a_number_everywhere(calc: LiveCalc, doc: int) -> N
         "A7": '=RB_CONVERT(RB_CONVERT("1 m","mm")&" mm","m")',
         "A8": '=SUM(RB_ARM("(0, 0) m","(3, 4) m"))',
         "A9": "=SUM(A1,RB_KIND(1))",
+        "A10": '=IF(RB_CONVERT("1 m","mm")>0,IF(A1>0,IF(RB_TORQUE(2,3)=6,1,2),3),4)',
+        "A11": '=IF(ISERROR(RB_CONVERT("1 m","kg")),IF(A1>0,1,2),3)',
+        "A12": '=MAX(RB_TORQUE(2,3),1)*RB_MOMENT("(1, 0) N","(0, 2) m")',
     }
     calc.ask("put", doc, 0, formulas)
-    got = [r[0] for r in calc.read(doc, 0, "A1:A9")]
-    assert got == [1000.0, 2000.0, 1.0, 12.7, "is 1000", 4.0, 1.0, 7.0, VALUE]
+    got = [r[0] for r in calc.read(doc, 0, "A1:A12")]
+    assert got == [1000.0, 2000.0, 1.0, 12.7, "is 1000", 4.0, 1.0, 7.0, VALUE, 1.0, 1.0, -12.0]

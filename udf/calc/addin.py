@@ -105,7 +105,7 @@ class Functions(unohelper.Base, XFunctions, XServiceInfo, XServiceName):
 
 
 class Block(unohelper.Base, XVolatileResult):
-    """A block of cells as the answer of a method that may also answer with one text.
+    """A block of cells as the answer of a method that may also answer with one cell.
 
     As `any` Calc takes no block from Python; the value of a result that could change later it does take.
     """
@@ -137,7 +137,7 @@ def block_of(rows: Any) -> Block:
     return found
 
 
-def method_of(name: str, own: str, text_alone: bool) -> Any:
+def method_of(name: str, own: str, one_cell: bool) -> Any:
     """Return the method behind a function; arguments omitted at the end are dropped."""
 
     def method(self: Functions, *arguments: Any) -> Any:
@@ -145,15 +145,15 @@ def method_of(name: str, own: str, text_alone: bool) -> Any:
             arguments = arguments[:-1]
         return answer(name, own, arguments)
 
-    def text_method(self: Functions, *arguments: Any) -> Any:
+    def single_method(self: Functions, *arguments: Any) -> Any:
         rows = method(self, *arguments)
         return rows[0][0] if len(rows) == 1 and len(rows[0]) == 1 else block_of(rows)
 
-    return text_method if text_alone else method
+    return single_method if one_cell else method
 
 
-for _name, (_method, _text_alone) in CONFIG["functions"].items():
-    setattr(Functions, _method, method_of(_name, _method, _text_alone))
+for _name, (_method, _one_cell) in CONFIG["functions"].items():
+    setattr(Functions, _method, method_of(_name, _method, _one_cell))
 
 NAMES = frozenset(name.lower() for name in CONFIG["functions"]) | frozenset(
     f"{CONFIG['service']}.{method}".lower() for method, _ in CONFIG["functions"].values()

@@ -13,7 +13,7 @@ from xml.sax.saxutils import escape, quoteattr
 
 from ..catalogue import FUNCTIONS
 from ..declaration import Arg, CellFunction
-from .host import fingerprint, gives_text_alone, host_arguments, method_name
+from .host import fingerprint, host_arguments, may_be_one_cell, method_name
 
 IDENTIFIER: Final = "org.rigidsheet.cells"
 INTERFACE: Final = "XFunctions"
@@ -85,7 +85,7 @@ def configuration(python: str) -> str:
             "arguments": ["-E", "-P", "-m", "rigidsheet.udf.calc.worker"],
             "fingerprint": fingerprint(),
             "timeout": TIMEOUT_SECONDS,
-            "functions": {f.name: [method_name(f.name), gives_text_alone(f)] for f in FUNCTIONS.values()},
+            "functions": {f.name: [method_name(f.name), may_be_one_cell(f)] for f in FUNCTIONS.values()},
         },
         indent=1,
     )
@@ -94,14 +94,14 @@ def configuration(python: str) -> str:
 def type_library() -> str:
     """Return the interface with one method a function.
 
-    Every argument is `any`, which makes it optional and lets numbers, texts and ranges through. A result is a
-    block, the only type that serves single cells and array formulas alike; where the answer may be one text it
-    is `any`, and the add-in hands blocks over in another way.
+    Every argument is `any`, which makes it optional and lets numbers, texts and ranges through. What always
+    fills several cells is declared as a block. What may be one cell is declared as `any`; then the add-in
+    hands blocks over in another way.
     """
     lines = []
     for f in FUNCTIONS.values():
         taken = ", ".join(f"[in] any a{i}" for i in range(len(host_arguments(f))))
-        given = "any" if gives_text_alone(f) else "sequence< sequence< any > >"
+        given = "any" if may_be_one_cell(f) else "sequence< sequence< any > >"
         lines.append(f"  {given} {method_name(f.name)}({taken});")
     modules = IDENTIFIER.split(".")
     head = " ".join(f"module {m} {{" for m in modules)

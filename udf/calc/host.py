@@ -18,6 +18,9 @@ from ..words import Rest
 WHOLE_ROWS: Final = 65_536
 WHOLE_COLUMNS: Final = 1_024
 
+# Forms that always fill several cells.
+BLOCKS: Final = frozenset({Form.VECTOR, Form.SPACE, Form.TEXTS, Form.TABLE})
+
 
 @functools.cache
 def fingerprint() -> str:
@@ -46,13 +49,13 @@ def host_arguments(f: CellFunction) -> tuple[Arg, ...]:
     return (*arguments[:-1], *(replace(last, name=f"argument_{i}") for i in range(1, longest + 1)))
 
 
-def gives_text_alone(f: CellFunction) -> bool:
-    """Say whether an answer of a function may be one text.
+def may_be_one_cell(f: CellFunction) -> bool:
+    """Say whether an answer of a function may be one number or one text.
 
-    Calc finds a text that came inside a block unequal to the same text typed in a cell. For
-    IF(RB_CHECK(...)="OK", ...) and the like the text has to leave by itself.
+    In Calc a block of one cell is not that cell: IF with such a condition cannot hold another IF (Err:509),
+    and a text in it is unequal to the same text typed in a cell. So one cell has to leave by itself.
     """
-    return f.result.open or any(field.form is Form.TEXT for field in f.result.fields)
+    return f.result.open or any(field.form not in BLOCKS for field in f.result.fields)
 
 
 def normalise(arguments: tuple[Any, ...]) -> list[Cell]:
