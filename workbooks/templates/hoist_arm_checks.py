@@ -85,7 +85,7 @@ def _lost(book: Book, page: Page, work: Work, table: Table, looked: Looked) -> s
     highest = f"IF(MAX({heights})>=-MIN({heights}),MAX({heights}),MIN({heights}))"
     heads = (
         *("Load case", "Acceleration of the pivot", AT, "True torque [N*m]", "Pivot as fixed", "Error [N*m]"),
-        *("Error", "Table: gap"),
+        *("of the true", "Table: gap"),
     )
     made = CaseTable(book, page, heads, height=25.0)
     arm = page.span((made.first, 15), (made.first, 16))  # beside the printed page, for all rows

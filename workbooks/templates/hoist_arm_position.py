@@ -75,7 +75,8 @@ def _records(book: Book, page: Page, given: Inputs, work: Work, table: Table) ->
     for column, text in ((2, "Body, arm level"), (5, "Body, turned by RB_MOVE"), (8, "Motion")):
         for c in range(column, column + (3 if column < 8 else 4)):
             page.put(c, text if c == column else None, "RS head")
-    page.sheet.merge_cells(start_row=top, start_column=5, end_row=top, end_column=7)
+    for first, last in ((2, 4), (5, 7), (8, 11)):
+        page.sheet.merge_cells(start_row=top, start_column=first, end_row=top, end_column=last)
     level = _level(page, given, top)
     for i, field in enumerate(("mass", "x", "y", "Izz"), 1):
         move = f'RB_MOVE({level},"z",{given.given["look_angle"].pair},"origin","{field}","{_unit(field)}")'

@@ -11,7 +11,7 @@ from .hoist_arm_working import Work
 from .kit import Book, Page
 from .kit_charts import sketch_chart
 from .kit_look import INK, RULE, SOFT
-from .kit_sketch import Points, parts_reach
+from .kit_sketch import Outlines, Points
 
 WARM = "A5622A"
 TRACK, DECK, HALF = (
@@ -20,18 +20,19 @@ TRACK, DECK, HALF = (
     0.36,
 )  # heights of track and deck and half length of the carriage, by the reach
 WHEEL = 0.07
-WINDOW = (-0.75, 1.35, -0.68, 1.1)
+WINDOW = (-1.08, 1.32, -1.08, 1.08)  # the arm may point down and back
 
 
 def sketch(book: Book, given: Inputs, work: Work, looked: Looked, page: Page, row: int) -> None:
     """Draw beside the inputs, from a row on; the points stand right of the printed part of the page."""
     parts, where, theta = given.parts, page.columns + 3, given.si("look_angle")
-    reach = parts_reach(parts, where)
-    points = Points(page, where + 1, row, reach)
+    outlines = Outlines.beside(parts, where)
+    reach = outlines.reach
+    points = Points(page, where + 8, row, reach)
     _carriage(points)
     for part in range(parts.first, parts.last):
-        points.part(parts, part, theta, width=1.0, color=RULE)
-    points.part(parts, parts.last, theta, dash="sysDash", width=1.25, color=WARM)
+        points.part(outlines, part, theta, width=1.0, color=RULE)
+    points.part(outlines, parts.last, theta, dash="sysDash", width=1.25, color=WARM)
     low, high = given.si("angle_from"), given.si("angle_to")
     steps = [f"({low}+({high}-{low})*{k}/24)" for k in range(25)]
     arc = [(f"{reach}*COS({a})", f"{reach}*SIN({a})") for a in steps]
@@ -40,8 +41,10 @@ def sketch(book: Book, given: Inputs, work: Work, looked: Looked, page: Page, ro
     points.add("pivot", [("0", "0")], width=0.0, marker="circle", size=8, color=INK)
     _arrows(points, looked, reach)
     sketch_chart(page, f"J{row}", points.curves, width=106.0, title="Position looked at", window=WINDOW)
-    key = f'"● mass center (brown), pivot B (black). Arc: "&ROUND(1000*{reach},0)&" mm."'
-    page.put(SKETCH_COLUMN, book.guarded(key), "RS note", row=row + 21)
+    key = (
+        f'"● mass center (brown), pivot B (black). Arc: "&ROUND(1000*{reach},0)&" mm. Carriage not to scale."'
+    )
+    page.put(SKETCH_COLUMN, book.guarded(key), "RS note", row=row + 22)
 
 
 def _carriage(points: Points) -> None:
@@ -55,9 +58,9 @@ def _carriage(points: Points) -> None:
     low = TRACK + WHEEL
     base = ((-HALF, DECK), (-HALF, low), (HALF, low), (HALF, DECK))
     line("carriage", (*base, (0.09, DECK), (0.03, 0.0), (-0.03, 0.0), (-0.09, DECK), base[0]), 1.5, SOFT)
-    line("track", ((-0.72, TRACK), (1.3, TRACK)), 1.5, INK)
+    line("track", ((-1.0, TRACK), (1.3, TRACK)), 1.5, INK)
     turns = [math.radians(30 * k) for k in range(13)]
-    for center in (-0.24, 0.24):
+    for center in (-0.26, 0.26):
         rim = [(center + WHEEL * math.cos(a), low + WHEEL * math.sin(a)) for a in turns]
         line("wheel", rim, 1.25, SOFT)
 
@@ -77,7 +80,7 @@ def _arrows(points: Points, looked: Looked, reach: str) -> None:
     run = f"0.4*{reach}*SIGN({looked.pivot})"
     points.arrow("acceleration of B", ("0", f"{DECK - 0.07}*{reach}"), (run, "0"), color=WARM)
     text = f'IF({looked.pivot}=0,"pivot does not accelerate","a of B "&ROUND({looked.pivot},2)&" m/s²")'
-    points.label(text, (f"{HALF + 0.03}*{reach}", f"{DECK - 0.07}*{reach}"), color=WARM)
+    points.label(text, (f"-{HALF + 0.03}*{reach}", f"{DECK - 0.07}*{reach}"), color=WARM, side="l")
     arc, sign, start = f"0.17*{reach}", f"SIGN({looked.torque})", 200
 
     def around(radius: float, a: int) -> tuple[str, str]:

@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
+from dataclasses import dataclass
 from typing import Any
 
 from .kit import Page
@@ -11,16 +13,40 @@ from .kit_look import INK
 from .kit_parts import PartsTable
 
 
-def parts_reach(parts: PartsTable, column: int) -> str:
-    """Write, beside the printed part of a parts list, how far its parts reach from the origin; give that cell."""
-    page = parts.page
-    for row in range(parts.first, parts.last + 1):
-        x, y, length, width, od = (parts.si(label, row) for label in ("x", "y", "L", "W", "OD"))
-        half = f"SQRT((({length})*({width}>0))^2+({width})^2+({od})^2)/2"
-        page.put(column, page.book.guarded(f"SQRT(({x})^2+({y})^2)+{half}"), "RS si", row=row, form="0.000")
-    cells = page.span((parts.first, column), (parts.last, column))
-    page.put(column, page.book.guarded(f"MAX(0.001,MAX({cells}))"), "RS si", row=parts.last + 1, form="0.000")
-    return page.at(column, parts.last + 1)
+@dataclass(frozen=True, slots=True)
+class Outlines:
+    """Boxes and tubes of a parts list in SI, in cells beside its printed part: place, half sides, radius, turn."""
+
+    parts: PartsTable
+    column: int
+
+    @classmethod
+    def beside(cls, parts: PartsTable, column: int) -> Outlines:
+        """Write the cells: a box has sides and no radius, a tube, seen along its axis, a radius and no sides."""
+        made, page = cls(parts, column), parts.page
+        for row in range(parts.first, parts.last + 1):
+            x, y, length, width, od, turn = (
+                parts.si(label, row) for label in ("x", "y", "L", "W", "OD", "turn z")
+            )
+            half = f"IF(ISNUMBER({parts.cell('W', row)}),{length},0)/2"
+            for k, formula in enumerate((x, y, half, f"({width})/2", f"({od})/2", turn)):
+                page.put(column + k, page.book.guarded(formula), "RS si", row=row, form="0.000")
+            a, b, u, v, r, _ = made.cells(row)
+            far = f"SQRT({a}^2+{b}^2)+SQRT({u}^2+{v}^2)+{r}"
+            page.put(column + 6, page.book.guarded(far), "RS si", row=row, form="0.000")
+        cells = page.span((parts.first, column + 6), (parts.last, column + 6))
+        reach = page.book.guarded(f"MAX(0.001,MAX({cells}))")
+        page.put(column + 6, reach, "RS si", row=parts.last + 1, form="0.000")
+        return made
+
+    def cells(self, row: int) -> tuple[str, ...]:
+        """Return x, y, half length, half width, radius and turn of a part."""
+        return tuple(self.parts.page.at(self.column + k, row) for k in range(6))
+
+    @property
+    def reach(self) -> str:
+        """The cell that tells how far the parts reach from the origin."""
+        return self.parts.page.at(self.column + 6, self.parts.last + 1)
 
 
 class Points:
@@ -45,22 +71,22 @@ class Points:
         self.curves.append(Curve(name, x, y, **look))
         self.column += 2
 
-    def part(self, parts: PartsTable, row: int, turn: str, **look: Any) -> None:
+    def part(self, outlines: Outlines, row: int, turn: str, **look: Any) -> None:
         """Add the outline of a box or a tube of a parts list, the whole list turned about the origin."""
-        x, y, length, width, od = (parts.si(label, row) for label in ("x", "y", "L", "W", "OD"))
-        angle, box = f"({parts.si('turn z', row)}+{turn})", f'{parts.cell("W", row)}<>""'
+        x, y, u, v, r, own = outlines.cells(row)
+        angle = f"({own}+{turn})"
         corners = []
         for k in range(13):
             sx, sy = ((1, 1), (-1, 1), (-1, -1), (1, -1), (1, 1))[k // 3]
-            u = f"IF({box},{sx}*({length})/2,({od})/2*COS({k}*PI()/6))"
-            v = f"IF({box},{sy}*({width})/2,({od})/2*SIN({k}*PI()/6))"
+            along = f"({sx}*{u}+{r}*{math.cos(math.radians(30 * k)):.6f})"
+            across = f"({sy}*{v}+{r}*{math.sin(math.radians(30 * k)):.6f})"
             corners.append(
                 (
-                    f"({x})*COS({turn})-({y})*SIN({turn})+{u}*COS({angle})-{v}*SIN({angle})",
-                    f"({x})*SIN({turn})+({y})*COS({turn})+{u}*SIN({angle})+{v}*COS({angle})",
+                    f"{x}*COS({turn})-{y}*SIN({turn})+{along}*COS({angle})-{across}*SIN({angle})",
+                    f"{x}*SIN({turn})+{y}*COS({turn})+{along}*SIN({angle})+{across}*COS({angle})",
                 )
             )
-        self.add(f"part {row - parts.first + 1}", corners, **look)
+        self.add(f"part {row - outlines.parts.first + 1}", corners, **look)
 
     def label(self, text: str, point: tuple[str, str], **look: Any) -> None:
         """Add a text beside a point; `text` is a formula, so that it can hold a number of the sheet."""
