@@ -18,12 +18,12 @@ Array = NDArray[np.float64]
 G = 9.80665
 RAMP, STEADY = 8, 40
 CASES = (  # name, stuck, pours, direction, run, stop
-    ("empty, returning", 0, 0, -1, 1, 0),
-    ("full, pouring", 0, 1, 1, 1, 0),
-    ("stuck, tipping", 1, 0, 1, 1, 0),
-    ("stuck, returning", 1, 0, -1, 1, 0),
-    ("stuck, stop tipping", 1, 0, 1, 0, -1),
-    ("stuck, stop returning", 1, 0, -1, 0, 1),
+    ("empty: returning", 0, 0, -1, 1, 0),
+    ("full: pouring", 0, 1, 1, 1, 0),
+    ("stuck: tipping", 1, 0, 1, 1, 0),
+    ("stuck: returning", 1, 0, -1, 1, 0),
+    ("stuck: stop tipping", 1, 0, 1, 0, -1),
+    ("stuck: stop returning", 1, 0, -1, 0, 1),
 )
 
 

@@ -38,12 +38,12 @@ class Case:
 
 
 CASES: Final = (
-    Case("empty, returning", 0, 0, -1, 1, 0),
-    Case("full, pouring", 0, 1, 1, 1, 0),
-    Case("stuck, tipping", 1, 0, 1, 1, 0),
-    Case("stuck, returning", 1, 0, -1, 1, 0),
-    Case("stuck, stop tipping", 1, 0, 1, 0, -1),
-    Case("stuck, stop returning", 1, 0, -1, 0, 1),
+    Case("empty: returning", 0, 0, -1, 1, 0),
+    Case("full: pouring", 0, 1, 1, 1, 0),
+    Case("stuck: tipping", 1, 0, 1, 1, 0),
+    Case("stuck: returning", 1, 0, -1, 1, 0),
+    Case("stuck: stop tipping", 1, 0, 1, 0, -1),
+    Case("stuck: stop returning", 1, 0, -1, 0, 1),
 )
 WHOLE: Final = tuple(case.name for case in CASES if not case.pours)  # cases in which the body stays whole
 
@@ -273,4 +273,4 @@ def _looking(page: Page, got: dict[str, Any]) -> None:
     got["look_tilt"] = page.quantity(
         "Tilt", "φ", 35, "deg", "look_tilt", kinds.ANGLE, limit=NOT_NEGATIVE, note="up to the tilt at the end"
     )
-    got["look_case"] = page.choice("Load case", "", "stuck, stop returning", WHOLE, "look_case")
+    got["look_case"] = page.choice("Load case", "", "stuck: stop returning", WHOLE, "look_case")

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Final
 
@@ -36,6 +36,20 @@ FIELDS: Final = ("Drawing", "Revision", "Date", "By", "Checked")
 # Printable size that both A4 and Letter have inside the margins, in mm: width, height of a portrait page.
 PRINTABLE: Final = (186.0, 250.0)
 MARGIN_SIDE, MARGIN_TOP, MARGIN_FOOT = 12.0, 12.0, 16.0  # mm
+LONGEST_LIST: Final = 255  # characters that a list of words inside a validation can have
+
+
+def list_of(words: Sequence[str]) -> str:
+    """Return words as the list of a validation, in which a comma parts them; refuse what it cannot hold."""
+    for word in words:
+        if word != word.strip() or not word or "," in word or '"' in word:
+            raise ValueError(f"{word!r} must be a word without comma, quotation mark and blanks at its ends")
+    text = ",".join(words)
+    if len(text) > LONGEST_LIST:
+        raise ValueError(
+            f"a list must have up to {LONGEST_LIST} characters; got {len(text)} ({text[:40]}...)"
+        )
+    return f'"{text}"'
 
 
 def pixels(digits: float) -> int:

@@ -24,6 +24,7 @@ from .kit_cells import (
     PRINTABLE,
     UNITS,
     Place,
+    list_of,
     millimeters,
 )
 from .kit_look import HAIR, MARK, RULE, SOFT, rich
@@ -264,7 +265,7 @@ class Page:
         key = (*words, "strict" if strict else "")
         found = self._validations.get(key)
         if found is None:
-            found = DataValidation(type="list", formula1=f'"{",".join(words)}"', allow_blank=True)
+            found = DataValidation(type="list", formula1=list_of(words), allow_blank=True)
             found.showErrorMessage = strict
             found.errorTitle, found.error = "Not one of the words", prompt
             self._validations[key] = found

@@ -1,0 +1,60 @@
+"""What holds for every working sheet: words to choose from, and what the kit refuses while it is built."""
+
+from __future__ import annotations
+
+from functools import cache
+from io import BytesIO
+from pathlib import Path
+
+import openpyxl
+import pytest
+
+from rigidsheet.workbooks.templates import TEMPLATES
+from rigidsheet.workbooks.templates.kit import Book
+
+
+@cache
+def written(name: str) -> bytes:
+    import tempfile
+
+    with tempfile.TemporaryDirectory() as folder:
+        path = Path(folder) / "sheet.xlsx"
+        TEMPLATES[name].write(path, False)
+        return path.read_bytes()
+
+
+@pytest.mark.parametrize("name", TEMPLATES)
+def test_what_stands_in_a_cell_with_words_to_choose_from_is_one_of_them(name: str) -> None:
+    """A comma parts the words of such a list, which has up to 255 characters: common practice, from memory."""
+    lists = 0
+    for sheet in openpyxl.load_workbook(BytesIO(written(name))):
+        for rule in sheet.data_validations.dataValidation:
+            if rule.type != "list":
+                continue
+            lists += 1
+            text = rule.formula1
+            assert text.startswith('"')
+            assert text.endswith('"')
+            assert len(text) <= 257
+            words = text[1:-1].split(",")
+            for block in rule.sqref.ranges:
+                for row, column in block.cells:
+                    value = sheet.cell(row, column).value
+                    assert value is None or value in words, (sheet.title, row, column, value)
+    assert lists > 3
+
+
+@pytest.mark.parametrize("word", ["stop, then wait", 'a "quick" stop', " stop", ""])
+def test_a_word_that_a_list_cannot_hold_is_refused(word: str) -> None:
+    page = Book("Title", "Line", False).page("Inputs", (2.5, 30.0, 7.0, 13.0, 9.0, 10.0, 8.0, 9.0))
+    with pytest.raises(ValueError, match="must be a word without comma, quotation mark"):
+        page.choice("Stop", "", "go", ("go", word), "stop")
+
+
+def test_a_list_that_is_too_long_is_refused() -> None:
+    page = Book("Title", "Line", False).page("Inputs", (2.5, 30.0, 7.0, 13.0, 9.0, 10.0, 8.0, 9.0))
+    words = tuple(letter * 7 for letter in "abcdefghijklmnopqrstuvwxyzABCDEF")
+    assert len(",".join(words)) == 255
+    page.choice("Stop", "", words[0], words, "stop")
+    with pytest.raises(ValueError, match="up to 255 characters; got 256"):
+        page.choice("Go", "", words[0], (*words[:-1], words[-1] + "x"), "go")
