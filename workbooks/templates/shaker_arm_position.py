@@ -37,7 +37,7 @@ def position(book: Book, given: Given, work: Work, arm: Table, tray: Table) -> L
     page.section("Tray on its two feet", VECTOR_WORDS)
     contact, reactions = _tray(at)
     _compare(at, arm, tray, {**functions, **loads, **contact})
-    _steps(at, ((sensor, 5), (pusher, 6), (reactions, 9)))
+    _steps(at, ((sensor, 6), (pusher, 7), (reactions, 9)))
     return at.looked
 
 

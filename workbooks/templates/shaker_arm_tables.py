@@ -71,7 +71,7 @@ def tables(book: Book, given: Given, work: Work) -> tuple[Table, Table]:
         tray,
         (
             "Acceleration a of the mass center G along and across the arm by RB_ACCELERATION_AT. Foot load / m_T: "
-            "foot 1 s_1 a_across + h a_along − j α_a, foot 2 s_2 a_across − h a_along + j α_a;",
+            "foot 1 s_1 a_{across} + h a_{along} − j α_a, foot 2 s_2 a_{across} − h a_{along} + j α_a;",
             "the share taken off is minus this, over the same with g for a and no α_a; the worse foot lifts off at 1. "
             f"{LOST}: no load to take.",
         ),
