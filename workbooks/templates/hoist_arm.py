@@ -161,7 +161,7 @@ def _notes(page: Page) -> None:
             "Rigid arm, pivot and carriage on a level track. Pivot friction is left out; "
             "the gearbox turns the arm with a pure couple.",
             "The crate is latched in the cradle and turns with the arm. "
-            "A crate that a parallel rod keeps level counts as the shape point at the tip.",
+            "Kept level by a parallel rod, it is the shape point at the tip; then the drive is right, the pin not.",
             "Speeds rise and fall evenly in time. Lift and lower count the arm at full speed, "
             "with the ramp on the side that asks more of the drive.",
             "The brake holds the arm while the carriage stops; "

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from copy import copy
 from typing import Final
 
 from .hoist_arm import BACKWARD, BY_MOTOR, CASES, FORWARD, HOLD, NAMES, STOP_LOWERING, Inputs
@@ -142,18 +143,18 @@ def _governing(cases: CaseTable, column: int) -> dict[str, str]:
     return {"case": cases.envelope(column, "governing"), "at": cases.beside(column, "governing", column + 1)}
 
 
-def _part(book: Book, page: Page, cases: CaseTable, first: int, last: int) -> CaseTable:
+def _part(cases: CaseTable, first: int, last: int) -> CaseTable:
     """Return the same table of load cases, narrowed to some of its rows."""
-    narrow = object.__new__(CaseTable)
-    narrow.book, narrow.page, narrow.first, narrow.last = book, page, cases.first + first, cases.first + last
+    narrow = copy(cases)
+    narrow.first, narrow.last = cases.first + first, cases.first + last
     return narrow
 
 
 def _drive(given: Inputs, table: Table, cases: CaseTable) -> list[Check]:
     g = given.given
     drive = given.si("factor_drive")
-    motor = _part(cases.book, cases.page, cases, 0, BY_MOTOR - 1)
-    brake = _part(cases.book, cases.page, cases, BY_MOTOR, len(CASES) - 1)
+    motor = _part(cases, 0, BY_MOTOR - 1)
+    brake = _part(cases, BY_MOTOR, len(CASES) - 1)
     return [
         Check.against(
             "Gearbox: torque at the pivot", cases.envelope(TORQUE_AT, "magnitude"), "N*m", g["gear_rating"],
