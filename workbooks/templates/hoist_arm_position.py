@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import dataclass
-from typing import Final
+from typing import Final, NamedTuple
 
 from rigidsheet.udf import kinds
 
@@ -155,14 +155,49 @@ def _supports(page: Page, top: int) -> str:
 
 
 def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r: Records) -> Looked:
-    torque, force, inertia = kinds.TORQUE, kinds.FORCE, kinds.INERTIA
-    sum_about = f"RB_MOMENT_SUM({work.own.pair},{work.mass.pair},{r.arm},{r.omega},{r.alpha}"
-    drive = f'RB_DRIVE_TORQUE({r.turned},{r.motion},"none","(0, 0) m"'
-    solved = f'RB_REACTIONS({r.turned},{r.motion},"none",{r.supports}'
+    """Lay out the balance, then gearbox, motor and pin, then the workings of one position."""
+    calls = _Calls(
+        f"RB_MOMENT_SUM({work.own.pair},{work.mass.pair},{r.arm},{r.omega},{r.alpha}",
+        f'RB_DRIVE_TORQUE({r.turned},{r.motion},"none","(0, 0) m"',
+        f'RB_REACTIONS({r.turned},{r.motion},"none",{r.supports}',
+    )
     page.page_break()
+    gaps: list[str] = []
+    total, error = _balance(book, page, table, r, calls, gaps)
+    motor_call = _drive_train(book, page, given, work, table, r, calls, total, gaps)
+    pins = _pins(page, table, r, calls, total, gaps)
+    _steps(
+        page,
+        (f"{calls.sum_about},{r.pivot}", range(1, 7)),
+        (calls.drive, (4, 5, 6)),
+        (
+            f'{motor_call},"N*m",{r.omega}',
+            (f'IF({r.omega}=0,"At rest the brake holds: eta = 1",{{step}})', 2),
+        ),
+        (calls.solved, range(2, 10)),
+    )
+    return Looked(
+        r.x, r.y, f"{work.mass.si}*{work.gravity.si}", total.si, pins[0].si, pins[1].si,
+        r.pivot.partition(":")[0], r.level, r.force, ",".join(gaps), error,
+    )  # fmt: skip
+
+
+class _Calls(NamedTuple):
+    """The functions asked about the position, up to the argument that differs."""
+
+    sum_about: str
+    drive: str
+    solved: str
+
+
+def _balance(
+    book: Book, page: Page, table: Table, r: Records, calls: _Calls, gaps: list[str]
+) -> tuple[Place, Place]:
+    """Write the moment balance and what a fixed pivot would miss; give the torque and the error."""
+    torque = kinds.TORQUE
     page.section("Balance about the moving pivot", {**page.INPUT_WORDS, 9: "table", 10: "difference"})
     moment = page.result(
-        "Moments that the motion asks for, about B", "M_B", f"{sum_about},{r.pivot},{{unit}})", torque, "N*m",
+        "Moments that the motion asks for, about B", "M_B", f"{calls.sum_about},{r.pivot},{{unit}})", torque, "N*m",
         "look_moment_sum", note="RB_MOMENT_SUM",
     )  # fmt: skip
     weight = page.result(
@@ -170,14 +205,15 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
         "look_weight_moment", note="RB_MOMENT",
     )  # fmt: skip
     total = page.result(
-        "Drive torque, weight included", "T", f'{drive},"total",{{unit}})', torque, "N*m",
+        "Drive torque, weight included", "T", f'{calls.drive},"total",{{unit}})', torque, "N*m",
         "look_torque", note="RB_DRIVE_TORQUE", strong=True,
     )  # fmt: skip
-    gaps = [_compare(page, total, table.looked(TORQUE, r.number))]
+    gaps.append(_compare(page, total, table.looked(TORQUE, r.number)))
     gaps.append(_gap(page, moment, f"{total.si}+{weight.si}"))
     fixed = page.derived(
         "Drive torque if the pivot is treated as fixed", "T_f",
-        f"{sum_about},{FIXED_PIVOT})-({weight.si})", torque, "N*m", "look_torque_fixed", note="RB_MOMENT_SUM, a_B = 0",
+        f"{calls.sum_about},{FIXED_PIVOT})-({weight.si})", torque, "N*m", "look_torque_fixed",
+        note="RB_MOMENT_SUM, a_B = 0",
     )  # fmt: skip
     error = page.derived(
         "Error of the fixed pivot", "T_f − T", f"{fixed.si}-{total.si}", torque, "N*m", "look_error",
@@ -189,9 +225,18 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
     )  # fmt: skip
     for column in (page.VALUE, page.SI):
         page.sheet.cell(share.row, column).number_format = "+0.0%;-0.0%;0.0%"
+    return total, error
+
+
+def _drive_train(
+    book: Book, page: Page, given: Inputs, work: Work, table: Table, r: Records, calls: _Calls, total: Place,
+    gaps: list[str],
+) -> str:  # fmt: skip
+    """Write power, motor torque and reflected inertia; give the call for the motor torque."""
+    torque, inertia = kinds.TORQUE, kinds.INERTIA
     page.section("Gearbox, motor and pin", {**page.INPUT_WORDS, 9: "table", 10: "difference"})
     page.result(
-        "Power of the drive", "P", f'{drive},"power",{{unit}})', kinds.POWER, "kW", "look_power",
+        "Power of the drive", "P", f'{calls.drive},"power",{{unit}})', kinds.POWER, "kW", "look_power",
         note=book.guarded(
             f'IF({r.omega}=0,"at rest: the brake holds",'
             f'IF({total.si}*{r.omega}<0,"the load drives: overhauling","the motor drives"))'
@@ -221,9 +266,15 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
         "Its ratio to rotor and brake", "", f"IF({given.si('rotor')}=0,0,{seen.si}/{given.si('rotor')})",
         kinds.RATIO, "-", "inertia_ratio",
     )  # fmt: skip
+    return motor_call
+
+
+def _pins(page: Page, table: Table, r: Records, calls: _Calls, total: Place, gaps: list[str]) -> list[Place]:
+    """Write the pin's load and the torque by the reactions; give the parts of the load and its size."""
+    force, torque = kinds.FORCE, kinds.TORQUE
     pins = [
         page.result(
-            f"Pin on the arm: {words}", symbol, f'{solved},"pivot {what}",{{unit}})', force, "N",
+            f"Pin on the arm: {words}", symbol, f'{calls.solved},"pivot {what}",{{unit}})', force, "N",
             f"look_pin_{what}", note="RB_REACTIONS", strong=what == "force",
         )
         for words, symbol, what in (
@@ -232,24 +283,11 @@ def _results(book: Book, page: Page, given: Inputs, work: Work, table: Table, r:
     ]  # fmt: skip
     gaps.append(_compare(page, pins[2], table.looked(PIN, r.number)))
     solved_torque = page.result(
-        "Drive torque by the reactions", "", f'{solved},"drive mz",{{unit}})', torque, "N*m",
+        "Drive torque by the reactions", "", f'{calls.solved},"drive mz",{{unit}})', torque, "N*m",
         "look_torque_solved", note="RB_REACTIONS",
     )  # fmt: skip
     gaps.append(_gap(page, solved_torque, total.si))
-    _steps(
-        page,
-        (f"{sum_about},{r.pivot}", range(1, 7)),
-        (drive, (4, 5, 6)),
-        (
-            f'{motor_call},"N*m",{r.omega}',
-            (f'IF({r.omega}=0,"At rest the brake holds: eta = 1",{{step}})', 2),
-        ),
-        (solved, range(2, 10)),
-    )
-    return Looked(
-        r.x, r.y, f"{work.mass.si}*{work.gravity.si}", total.si, pins[0].si, pins[1].si,
-        r.pivot.partition(":")[0], r.level, r.force, ",".join(gaps), error,
-    )  # fmt: skip
+    return pins
 
 
 def _compare(page: Page, place: Place, table: str) -> str:
