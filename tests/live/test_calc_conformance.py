@@ -11,6 +11,7 @@ import gate_book
 import openpyxl
 import pytest
 from live_calc import LiveCalc
+from openpyxl.utils import coordinate_to_tuple, get_column_letter
 
 from rigidsheet.udf.cells import CellError
 from rigidsheet.workbooks import recalculate
@@ -64,12 +65,13 @@ def differing(calc: LiveCalc, doc: int, values: Any) -> list[str]:
     """Return the formula cells of an open document that are not what the headless run gave."""
     wrong = []
     scales = row_scales(values)
-    sheets: dict[str, list[str]] = {}
-    for sheet, where in values:
-        sheets.setdefault(sheet, []).append(where)
-    for sheet, places in sheets.items():
-        for where, block in zip(places, calc.read_each(doc, sheet, places), strict=True):
-            wanted, found = values[sheet, where], block[0][0]
+    for sheet in dict.fromkeys(sheet for sheet, _ in values):
+        places = [where for name, where in values if name == sheet]
+        spots = {where: coordinate_to_tuple(where) for where in places}
+        right, bottom = max(c for _, c in spots.values()), max(r for r, _ in spots.values())
+        block = calc.read(doc, sheet, f"A1:{get_column_letter(right)}{bottom}")
+        for where, (row, column) in spots.items():
+            wanted, found = values[sheet, where], block[row - 1][column - 1]
             if not agree(wanted, found, scales[sheet, row_of(where)]):
                 wrong.append(f"{sheet}!{where}: expected {wanted!r}, got {found!r}")
     return wrong

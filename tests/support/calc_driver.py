@@ -103,6 +103,9 @@ class Driver:
     def array(self, doc, sheet, where, formula):
         self.area(doc, sheet, where).setArrayFormula(formula)
 
+    def automatic(self, doc, on):
+        self.documents[doc].enableAutomaticCalculation(on)
+
     def formula(self, doc, sheet, where):
         cell = self.area(doc, sheet, where).getCellByPosition(0, 0)
         return [cell.Formula, cell.FormulaLocal]

@@ -20,6 +20,8 @@ from rigidsheet_sight import Sight
 with open(os.path.join(os.path.dirname(os.path.abspath(__file__)), "config.json"), encoding="utf-8") as _file:
     CONFIG: dict[str, Any] = json.load(_file)
 
+KEPT = 50_000  # answers
+KEPT_ROWS = 40  # rows of an argument; looking a long one up would cost more than asking again
 REMEMBERED = 1000  # lost calls whose reason is kept for RB_WHY, and blocks
 
 
@@ -54,13 +56,49 @@ LOST: dict[Any, str] = {}
 SIGHT: list[Sight] = []  # one, made with the first service
 
 
-def answer(name: str, method: str, arguments: tuple[Any, ...]) -> Any:
+class Known:
+    """Answers already given by the running worker; the functions have no memory, so they stay true.
+
+    Sheets ask the same again and again: a unit turned for each row, a table read for each of its results.
+    """
+
+    def __init__(self) -> None:
+        self._answers: dict[Any, Any] = {}
+        self._worker: Any = None
+
+    def get(self, name: str, arguments: tuple[Any, ...]) -> Any:
+        """Return the answer given to the same call, or None."""
+        if self._worker is not CHANNEL.process:
+            self._answers.clear()
+            self._worker = CHANNEL.process
+            return None
+        return self._answers.get((name, arguments))
+
+    def keep(self, name: str, arguments: tuple[Any, ...], found: Any) -> None:
+        """Note an answer, unless its arguments are long."""
+        if any(type(a) is tuple and len(a) > KEPT_ROWS for a in arguments):
+            return
+        if self._worker is not CHANNEL.process or len(self._answers) >= KEPT:
+            self._answers.clear()
+            self._worker = CHANNEL.process
+        self._answers[name, arguments] = found
+
+
+KNOWN = Known()
+
+
+def answer(name: str, method: str, given: tuple[Any, ...]) -> Any:
     """Return what the cell shows: rows of numbers and texts, or an error."""
-    arguments = SIGHT[0].restored(method, arguments)
+    arguments = SIGHT[0].restored(method, given)
     if name == "RB_WHY" and LOST:
         reason = LOST.get(asked_about(arguments))
         if reason is not None:
             return ((reason,),)
+    plain = arguments is given  # else they may hold TRUE, which is equal to 1 as a key
+    if plain:
+        found = KNOWN.get(name, arguments)
+        if found is not None:
+            return found
     try:
         reply = CHANNEL.ask((name, arguments))
     except WorkerLost as lost:
@@ -72,7 +110,10 @@ def answer(name: str, method: str, arguments: tuple[Any, ...]) -> Any:
         return ERRORS["#VALUE!"]
     if LOST:
         LOST.pop((name, arguments), None)
-    return reply if type(reply) is tuple else ERRORS.get(reply, ERRORS["#VALUE!"])
+    found = reply if type(reply) is tuple else ERRORS.get(reply, ERRORS["#VALUE!"])
+    if plain:
+        KNOWN.keep(name, arguments, found)
+    return found
 
 
 def asked_about(arguments: tuple[Any, ...]) -> tuple[str, tuple[Any, ...]]:
