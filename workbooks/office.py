@@ -119,7 +119,11 @@ def run_unopkg(office: Office, arguments: Sequence[str]) -> None:
     if done.returncode != 0:
         said = [line.strip() for line in (done.stderr + done.stdout).splitlines() if line.strip()]
         told = [line for line in said if "unopkg failed" not in line]
-        reason = told[0].removeprefix("ERROR:").strip() if told else f"exit code {done.returncode}"
+        reason = (
+            told[0].removeprefix("ERROR:").partition(" at ./")[0].strip()
+            if told
+            else f"exit code {done.returncode}"
+        )
         raise InputError(
             "", f"The extension was not changed: {reason}", remedy="Close LibreOffice and try again"
         )
