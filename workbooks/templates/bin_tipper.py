@@ -75,11 +75,11 @@ class Inputs:
 
     @property
     def by_cylinder(self) -> str:
-        return f'{self.drive.ref}="cylinder"'
+        return self.parts.page.chosen(self.drive, "cylinder")
 
     @property
     def by_gearbox(self) -> str:
-        return f'{self.drive.ref}="gearbox"'
+        return self.parts.page.chosen(self.drive, "gearbox")
 
     @property
     def table(self) -> str:
@@ -226,7 +226,7 @@ def _drive(page: Page, got: dict[str, Any]) -> None:
         "drive",
         note="only the rows of this drive are needed",
     )
-    when = f'{got["drive"].ref}="cylinder"'
+    when = page.chosen(got["drive"], "cylinder")
     rows: tuple[tuple[str, str, str, float, str, Any, Any, str], ...] = (
         ("anchor_x", "Cylinder: eye on the frame, x", "x_a", 780, "mm", length, None, ""),
         ("anchor_y", "Cylinder: eye on the frame, y", "y_a", -780, "mm", length, None, ""),
@@ -252,7 +252,7 @@ def _drive(page: Page, got: dict[str, Any]) -> None:
         name: page.quantity(label, symbol, value, unit, name, kind, limit=limit, note=note, when=when)
         for name, label, symbol, value, unit, kind, limit, note in rows
     }
-    when = f'{got["drive"].ref}="gearbox"'
+    when = page.chosen(got["drive"], "gearbox")
     torque, speed = kinds.TORQUE, kinds.ANGULAR_VELOCITY
     rows = (
         ("ratio", "Gearbox: ratio, motor to hinge", "i", 320, "-", kinds.RATIO, POSITIVE, ""),

@@ -52,7 +52,7 @@ def position(book: Book, given: Inputs, work: Work, tilt: Table, hinges: Table) 
     page.put(page.SI, book.guarded(_case_number(given)), "RS si", form='"load case "0')
     page.row += 1
     first = page.row
-    level = _body(page, given)
+    level = _body(page, given, work)
     turned = _turned(page, given, first, level)
     motion = _motion(page, work, tilt, first, number)
     page.row = first + 12
@@ -70,7 +70,7 @@ def position(book: Book, given: Inputs, work: Work, tilt: Table, hinges: Table) 
     return looked
 
 
-def _body(page: Page, given: Inputs) -> str:
+def _body(page: Page, given: Inputs, work: Work) -> str:
     """Write the record of the body with the table level; give its range."""
     empty = f'{given.look_case.ref}="{CASES[0].name}"'
     top = page.row
@@ -79,8 +79,9 @@ def _body(page: Page, given: Inputs) -> str:
     page.put(4, None, "RS head")
     for i, field in enumerate(("mass", "x", "y", "z", *TERMS), 1):
         unit = "kg" if field == "mass" else ("m" if field in "xyz" else "kg*m^2")
-        calls = (f'RB_ROLLUP({parts},"{field}",,"{unit}")' for parts in (given.table, given.whole))
-        _record(page, top + i, 2, field, f"IF({empty},{','.join(calls)})", unit)
+        known = [rows[field].si for rows in work.rolled.values() if field in rows]
+        calls = [f'RB_ROLLUP({parts},"{field}",,"{unit}")' for parts in (given.table, given.whole)]
+        _record(page, top + i, 2, field, f"IF({empty},{','.join(known or calls)})", unit)
     _record(page, top + 11, 2, "products", '"tensor terms"', "")
     return page.span((top + 1, 2), (top + 11, 4))
 

@@ -90,7 +90,8 @@ def _outlines(page: Page, points: Points, given: Inputs, where: int, reach: str)
 
 
 def _marks(points: Points, work: Work, phi: str) -> None:
-    for state, (x, y) in work.centers.items():
+    for state, rows in work.rolled.items():
+        x, y = rows["x"], rows["y"]
         center = (f"({x.si}*COS({phi})-{y.si}*SIN({phi}))", f"({x.si}*SIN({phi})+{y.si}*COS({phi}))")
         look = ("circle", 8) if state == "whole" else ("diamond", 7)
         points.add(f"mass center {state}", [center], width=0.0, marker=look[0], size=look[1], color=WARM)

@@ -33,6 +33,7 @@ class Table:
 
 TILT, TIME, SPEED, ACCELERATION, FRUIT_LEFT, LENGTH, ARM, ALONG_X, ALONG_Y, TORQUE = range(1, 11)
 WORK_DONE, ENERGY, GAP = TORQUE + len(CASES), TORQUE + len(CASES) + 1, TORQUE + len(CASES) + 2
+COSINE, SINE, SPEED_SQUARED = GAP + 2, GAP + 3, GAP + 4  # right of the printed part
 EFFORT, HINGE_1, HINGE_2 = 2, 2 + len(CASES), 2 + 2 * len(CASES)
 ENERGY_CASE: Final = next(case for case in CASES if case.stuck and case.run and case.direction > 0)
 
@@ -42,6 +43,13 @@ def alpha_of(case: Case, tilt: Table, work: Work, row: int) -> str:
     if case.run:
         return tilt.cell(ACCELERATION, row)
     return work.stop.si if case.stop > 0 else f"-{work.stop.si}"
+
+
+def same_but_direction(case: Case) -> int | None:
+    """Return the place of an earlier case of the same body and acceleration: same torque, same hinge forces."""
+    keys = [(one.stuck, one.pours, one.run, one.stop) for one in CASES]
+    first = keys.index(keys[CASES.index(case)])
+    return first if first < CASES.index(case) else None
 
 
 def sums_of(case: Case, tilt: Table, work: Work, row: int, pick: Any) -> str:
@@ -76,6 +84,8 @@ def tilt_table(book: Book, given: Inputs, work: Work) -> Table:
         units,
         [("Drive torque at the hinge", TORQUE)],
     )
+    for column, word in ((COSINE, "cos"), (SINE, "sin"), (SPEED_SQUARED, "speed^2")):
+        page.put(column, word, "RS column", row=page.row - 1)
     first = page.row
     count = 2 * RAMP_STEPS + STEADY_STEPS + 3
     table = Table(page, first, first + count - 1, first + count + 3)
@@ -155,14 +165,18 @@ def _tilt_row(given: Inputs, work: Work, table: Table, row: int, i: int | None) 
         SPEED: chosen[1],
         ACCELERATION: chosen[2],
         FRUIT_LEFT: fall,
+        COSINE: f"COS({phi})",
+        SINE: f"SIN({phi})",
+        SPEED_SQUARED: f"{table.cell(SPEED, row)}^2",
     }
-    cells |= _cylinder(given, table, row, phi)
+    cells |= _cylinder(given, table, row)
     for k, case in enumerate(CASES):
-        cells[TORQUE + k] = _torque(case, table, work, row, phi)
+        cells[TORQUE + k] = _torque(case, table, work, row)
     if i is not None:
         cells |= _energy(table, work, row, phi, i)
     forms = {TILT: "0.00", TIME: "0.00", SPEED: "0.000", ACCELERATION: "0.000;-0.000;0", FRUIT_LEFT: "0.00"}
     forms |= dict.fromkeys((LENGTH, ARM, ALONG_X, ALONG_Y), "0.000;-0.000;")
+    forms |= dict.fromkeys((COSINE, SINE, SPEED_SQUARED), "0.0000")
     for column, formula in cells.items():
         page.put(
             column, page.book.guarded(formula), "RS number", row=row, form=forms.get(column, "#,##0;-#,##0;0")
@@ -171,11 +185,12 @@ def _tilt_row(given: Inputs, work: Work, table: Table, row: int, i: int | None) 
         page.sheet.cell(row, GAP).number_format = "0.0"
 
 
-def _cylinder(given: Inputs, table: Table, row: int, phi: str) -> dict[int, str]:
+def _cylinder(given: Inputs, table: Table, row: int) -> dict[int, str]:
     """Return length, arm and direction of the cylinder in the table's own axes, where its eye stands still."""
     c = {name: place.si for name, place in given.cylinder.items()}
-    x = f"{c['eye_x']}-({c['anchor_x']}*COS({phi})+{c['anchor_y']}*SIN({phi}))"
-    y = f"{c['eye_y']}-({c['anchor_y']}*COS({phi})-{c['anchor_x']}*SIN({phi}))"
+    cos, sin = table.cell(COSINE, row), table.cell(SINE, row)
+    x = f"{c['eye_x']}-{c['anchor_x']}*{cos}-{c['anchor_y']}*{sin}"
+    y = f"{c['eye_y']}-{c['anchor_y']}*{cos}+{c['anchor_x']}*{sin}"
     length, ux, uy = (table.cell(column, row) for column in (LENGTH, ALONG_X, ALONG_Y))
     formulas = {
         LENGTH: (f"SQRT(({x})^2+({y})^2)", '""'),
@@ -189,12 +204,17 @@ def _cylinder(given: Inputs, table: Table, row: int, phi: str) -> dict[int, str]
     }
 
 
-def _torque(case: Case, table: Table, work: Work, row: int, phi: str) -> str:
+def _torque(case: Case, table: Table, work: Work, row: int) -> str:
+    same = same_but_direction(case)
+    if same is not None:
+        return table.cell(TORQUE + same, row)
+
     def pick(part: str) -> str:
         return sums_of(case, table, work, row, lambda body: getattr(body, part))
 
     alpha = alpha_of(case, table, work, row)
-    return f"{pick('inertia')}*{alpha}+{work.gravity.si}*({pick('x')}*COS({phi})-{pick('y')}*SIN({phi}))"
+    cos, sin = table.cell(COSINE, row), table.cell(SINE, row)
+    return f"{pick('inertia')}*{alpha}+{work.gravity.si}*({pick('x')}*{cos}-{pick('y')}*{sin})"
 
 
 def _energy(table: Table, work: Work, row: int, phi: str, i: int) -> dict[int, str]:
@@ -205,10 +225,11 @@ def _energy(table: Table, work: Work, row: int, phi: str, i: int) -> dict[int, s
     else:
         mean = f"({table.cell(torque, row)}+{table.cell(torque, row - 1)})/2"
         done = f"{table.cell(WORK_DONE, row - 1)}+{mean}*({phi}-RADIANS($A{row - 1}))"
-    rise = f"{g}*({body.x}*SIN({phi})+{body.y}*COS({phi})-{body.y})"
+    cos, sin = table.cell(COSINE, row), table.cell(SINE, row)
+    rise = f"{g}*({body.x}*{sin}+{body.y}*{cos}-{body.y})"
     return {
         WORK_DONE: done,
-        ENERGY: f"{rise}+{body.inertia}*{table.cell(SPEED, row)}^2/2",
+        ENERGY: f"{rise}+{body.inertia}*{table.cell(SPEED_SQUARED, row)}/2",
         GAP: f"{table.cell(WORK_DONE, row)}-{table.cell(ENERGY, row)}",
     }
 
@@ -248,6 +269,9 @@ def hinge_table(book: Book, given: Inputs, work: Work, tilt: Table) -> Table:
                 (HINGE_1 + k, _hinge(case, work, tilt, row, effort, 1), "#,##0"),
                 (HINGE_2 + k, _hinge(case, work, tilt, row, effort, 2), "#,##0"),
             ):
+                same = same_but_direction(case)
+                if same is not None and column > EFFORT + k:
+                    formula = table.cell(column - k + same, row + shift)
                 page.put(column, book.guarded(formula), "RS number", row=row + shift, form=form)
     page.row = table.last + 1
     _extremes(table, range(EFFORT, HINGE_2 + len(CASES)))
@@ -257,9 +281,9 @@ def hinge_table(book: Book, given: Inputs, work: Work, tilt: Table) -> Table:
 
 def _effort(case: Case, k: int, given: Inputs, work: Work, tilt: Table, row: int) -> str:
     torque, g = tilt.cell(TORQUE + k, row), {name: place.si for name, place in given.gearbox.items()}
-    drives = f"{torque}>=0" if case.direction > 0 else f"{torque}<=0"
-    rotor = f"{g['rotor']}*{g['ratio']}*{alpha_of(case, tilt, work, row)}"
-    motor = f"IF({drives},{torque}/{g['efficiency']},{torque}*{g['efficiency']})/{g['ratio']}+{rotor}"
+    drives, driven = ("MAX", "MIN") if case.direction > 0 else ("MIN", "MAX")
+    eta, rotor = g["efficiency"], f"{g['rotor']}*{g['ratio']}*{alpha_of(case, tilt, work, row)}"
+    motor = f"({drives}(0,{torque})/{eta}+{driven}(0,{torque})*{eta})/{g['ratio']}+{rotor}"
     return f"IF({given.by_cylinder},{torque}/{tilt.cell(ARM, row)},{motor})"
 
 
@@ -269,9 +293,9 @@ def _hinge(case: Case, work: Work, tilt: Table, row: int, effort: str, hinge: in
     def pick(part: int) -> str:
         return sums_of(case, tilt, work, row, lambda body: body.shares[hinge - 1][part])
 
-    phi, omega = f"RADIANS({tilt.cell(TILT, row)})", tilt.cell(SPEED, row)
+    cos, sin, squared = (tilt.cell(column, row) for column in (COSINE, SINE, SPEED_SQUARED))
     alpha, weight = alpha_of(case, tilt, work, row), f"{work.gravity.si}*{pick(0)}"
     push = f"{work.drive_shares[hinge - 1]}*{effort}"
-    x = f"-{alpha}*{pick(2)}-{omega}^2*{pick(1)}+{weight}*SIN({phi})-{push}*{tilt.cell(ALONG_X, row)}"
-    y = f"{alpha}*{pick(1)}-{omega}^2*{pick(2)}+{weight}*COS({phi})-{push}*{tilt.cell(ALONG_Y, row)}"
+    x = f"-{alpha}*{pick(2)}-{squared}*{pick(1)}+{weight}*{sin}-{push}*{tilt.cell(ALONG_X, row)}"
+    y = f"{alpha}*{pick(1)}-{squared}*{pick(2)}+{weight}*{cos}-{push}*{tilt.cell(ALONG_Y, row)}"
     return f"SQRT(({x})^2+({y})^2)"

@@ -40,8 +40,7 @@ class Work:
     stop: Place
     bodies: dict[str, Body]
     drive_shares: tuple[str, str]  # parts of the cylinder's force that count for hinge 1 and 2
-    masses: dict[str, Place]
-    centers: dict[str, tuple[Place, Place]]
+    rolled: dict[str, dict[str, Place]]  # state of the bin, field
 
 
 def working(book: Book, given: Inputs) -> Work:
@@ -64,8 +63,7 @@ def working(book: Book, given: Inputs) -> Work:
         stop,
         bodies,
         _drive_shares(page, given),
-        {state: rows["mass"] for state, rows in rolled.items()},
-        {state: (rows["x"], rows["y"]) for state, rows in rolled.items()},
+        rolled,
     )
 
 

@@ -103,7 +103,11 @@ class Book:
 
     def guarded(self, formula: str) -> str:
         """Return a formula that stays empty text until everything it rests on is there."""
-        return f'=IF({self.ready_ref}=1,{formula.removeprefix("=")},"")'
+        return f'=IF({self.ready_ref},{formula.removeprefix("=")},"")'
+
+    def unguarded(self, formula: str) -> str:
+        """Return what a guarded formula works out once all is there."""
+        return formula.removeprefix(f"=IF({self.ready_ref},").removesuffix(',"")')
 
     def save(self, path: Path) -> None:
         """Write the workbook."""

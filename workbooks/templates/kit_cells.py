@@ -8,6 +8,8 @@ from typing import Final
 
 from openpyxl.utils import get_column_letter
 
+from rigidsheet.udf.limits import Limit
+
 # What the unit cells offer, most usual first; each can be typed over with any unit of the kind.
 UNITS: Final[Mapping[str, tuple[str, ...]]] = {
     "length": ("mm", "cm", "m", "in", "ft"),
@@ -50,6 +52,18 @@ def list_of(words: Sequence[str]) -> str:
             f"a list must have up to {LONGEST_LIST} characters; got {len(text)} ({text[:40]}...)"
         )
     return f'"{text}"'
+
+
+def outside(ref: str, limit: Limit | None) -> str:
+    """Return the formula that is true for a number outside a limit; empty when every number is within."""
+    if limit is None or limit.nonzero:
+        return f"AND(ISNUMBER({ref}),{ref}=0)" if limit is not None else ""
+    sides = [
+        f"{ref}{sign}{bound:g}"
+        for sign, bound in (("<=" if limit.low_open else "<", limit.low), (">", limit.high))
+        if abs(bound) != float("inf")
+    ]
+    return f"AND(ISNUMBER({ref}),OR({','.join(sides)}))"
 
 
 def pixels(digits: float) -> int:

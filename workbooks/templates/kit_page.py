@@ -26,6 +26,7 @@ from .kit_cells import (
     Place,
     list_of,
     millimeters,
+    outside,
 )
 from .kit_look import HAIR, MARK, RULE, SOFT, rich
 
@@ -48,6 +49,7 @@ class Page:
         self.row = 1
         self.sections = 0
         self._validations: dict[tuple[str, ...], Any] = {}
+        self._chosen: dict[int, list[str]] = {}  # words by the row of their choice
         for i, width in enumerate(self.widths, 1):
             sheet.column_dimensions[get_column_letter(i)].width = width
         sheet.sheet_view.showGridLines = False
@@ -177,10 +179,10 @@ class Page:
             if not plain
             else f"IF(ISNUMBER({place.ref}),{place.ref},NA())"
         )
-        outside = self._outside(place.ref, limit)
-        if outside:
-            si = f"IF({outside},NA(),{si})"
-            self._say_outside(f"AND({when},{outside})" if when else outside, limit, note)
+        beyond = outside(place.ref, limit)
+        if beyond:
+            si = f"IF({beyond},NA(),{si})"
+            self._say_outside(f"AND({when},{beyond})" if when else beyond, limit, note)
         self.put(self.SI, f'=IF({when},{si},"not used")' if when else f"={si}", "RS si")
         si_unit = f'=IF({when},"{kind.si}","")' if when else kind.si
         self.put(self.SI_UNIT, None if plain else si_unit, "RS unit fixed")
@@ -192,22 +194,10 @@ class Page:
         self.row += 1
         return place
 
-    @staticmethod
-    def _outside(ref: str, limit: Limit | None) -> str:
-        """Return the formula that is true for a number outside a limit; empty when every number is within."""
-        if limit is None or limit.nonzero:
-            return f"AND(ISNUMBER({ref}),{ref}=0)" if limit is not None else ""
-        sides = [
-            f"{ref}{sign}{bound:g}"
-            for sign, bound in (("<=" if limit.low_open else "<", limit.low), (">", limit.high))
-            if abs(bound) != float("inf")
-        ]
-        return f"AND(ISNUMBER({ref}),OR({','.join(sides)}))"
-
-    def _say_outside(self, outside: str, limit: Limit | None, note: str) -> None:
+    def _say_outside(self, beyond: str, limit: Limit | None, note: str) -> None:
         """Say in the place of the note what a number outside its limit must be."""
         if limit is not None and "_" not in note:
-            text = f'=IF({outside},"must be {limit.words}","{note}")'
+            text = f'=IF({beyond},"must be {limit.words}","{note}")'
             self.put(self.NOTE, text, "RS note")
 
     def choice(
@@ -229,6 +219,15 @@ class Page:
         self._list(self.VALUE, words, f"{label}: one of {', '.join(words)}", strict=True)
         self.row += 1
         return place
+
+    def chosen(self, choice: Place, word: str) -> str:
+        """Return a cell, right of the printed part, that holds 1 when a word is chosen and else 0."""
+        words = self._chosen.setdefault(choice.row, [])
+        if word not in words:
+            words.append(word)
+            column = self.columns + len(words)
+            self.put(column, f'=IF({choice.ref}="{word}",1,0)', "RS si", row=choice.row)
+        return self.at(self.columns + 1 + words.index(word), choice.row)
 
     def condition(self, label: str, formula: str, kind: Kind, why: str) -> None:
         """Write a number in SI that must be above zero before anything is worked out, and why if it is not."""

@@ -71,6 +71,15 @@ class Points:
         self.curves.append(Curve(name, x, y, **look))
         self.column += 2
 
+    def shared(self, formulas: Sequence[str], below: int) -> list[str]:
+        """Write numbers that the points of the next curve share, so many rows below; give their cells."""
+        cells = []
+        for k, formula in enumerate(formulas):
+            column, row = self.column + k % 2, self.row + 2 + below + k // 2
+            self.page.put(column, self.page.book.guarded(formula), "RS si", row=row, form="0.0000")
+            cells.append(self.page.at(column, row))
+        return cells
+
     def part(self, outlines: Outlines, row: int, turn: str, **look: Any) -> None:
         """Add the outline of a box or a tube of a parts list, the whole list turned about the origin."""
         x, y, u, v, r, own = outlines.cells(row)

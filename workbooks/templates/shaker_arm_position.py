@@ -102,7 +102,7 @@ def _center(at: Position) -> None:
         at.vector(key, "Instant center of the arm", "C", call, length, "mm", note)
         for column in (4, 6, 7, *BESIDE):
             cell = at.page.sheet.cell(row, column)
-            inner = str(cell.value).removeprefix(f"=IF({at.book.ready_ref}=1,").removesuffix(',"")')
+            inner = at.book.unguarded(str(cell.value))
             cell.value = at.book.guarded(f'IF({turns},{inner},"none")')
 
 

@@ -98,15 +98,15 @@ class Inputs:
 
     @property
     def by_drive(self) -> str:
-        return f'{self["moved_by"].ref}="{DRIVE}"'
+        return self.parts.page.chosen(self["moved_by"], DRIVE)
 
     @property
     def by_hand(self) -> str:
-        return f'{self["moved_by"].ref}="{HAND}"'
+        return self.parts.page.chosen(self["moved_by"], HAND)
 
     @property
     def axial_below(self) -> str:
-        return f'{self["axial_hinge"].ref}="{LOWER}"'
+        return self.parts.page.chosen(self["axial_hinge"], LOWER)
 
     @property
     def tip(self) -> str:
@@ -214,7 +214,7 @@ def _motion(rows: _Rows) -> None:
     rows.add("opening", "Opening angle", "φ_1", 95, "deg", angle, limit=POSITIVE)
     rows.choose("law", "Motion law", RAMPS, (RAMPS, SMOOTH))
     rows.add("run_time", "Time to open, and to close", "T", 14, "s", time, limit=POSITIVE)
-    ramps = f'{rows.got["law"].ref}="{RAMPS}"'
+    ramps = page.chosen(rows.got["law"], RAMPS)
     rows.add(
         "ramp_time", "Time to speed up, and to slow down", "t_r", 2.5, "s", time, limit=POSITIVE, when=ramps
     )
@@ -229,7 +229,7 @@ def _moved(rows: _Rows) -> None:
     page, torque = rows.page, kinds.TORQUE
     page.section("Drive", page.INPUT_WORDS)
     rows.choose("moved_by", "The gate is moved by", DRIVE, (DRIVE, HAND), "only the rows of this are needed")
-    when = f'{rows.got["moved_by"].ref}="{DRIVE}"'
+    when = page.chosen(rows.got["moved_by"], DRIVE)
     rest = {"limit": POSITIVE, "when": when}
     rows.add("ratio", "Gearbox: ratio, motor to hinge axis", "i", 900, "-", kinds.RATIO, **rest)
     rows.add(
@@ -256,7 +256,7 @@ def _moved(rows: _Rows) -> None:
         limit=NOT_NEGATIVE,
         when=when,
     )
-    when = f'{rows.got["moved_by"].ref}="{HAND}"'
+    when = page.chosen(rows.got["moved_by"], HAND)
     rest = {"limit": POSITIVE, "when": when}
     rows.add("hand_x", "Hand: from the hinge axis", "x_h", 3500, "mm", kinds.LENGTH, **rest)
     rows.add("hand_z", "Hand: above the yard", "z_h", 1000, "mm", kinds.LENGTH, **rest)

@@ -161,7 +161,7 @@ def sources(case: Case, given: Inputs, work: Work) -> dict[str, str]:
         couple, x, z = given.by_drive, given["hand_x"].si, given["hand_z"].si
     else:
         couple, x, z = (
-            ("1=1", "0", "0") if case.turn == "brake" else ("1=0", given["latch_x"].si, given["latch_z"].si)
+            ("1", "0", "0") if case.turn == "brake" else ("0", given["latch_x"].si, given["latch_z"].si)
         )
     return {
         "omega": f"{case.speed}*{work['speed'].si}",
@@ -255,7 +255,7 @@ def _results(page: Page, given: Inputs, work: Work, row: int, case: Case, card: 
     page.put(3, page.book.guarded(held_by(case, given)), "RS text", row=row)
     for column in (4, 5, 13):
         page.put(column, None, "RS text", row=row)
-    couple = given.by_drive if case.turn == "move" else ("1=1" if case.turn == "brake" else "1=0")
+    couple = given.by_drive if case.turn == "move" else ("1" if case.turn == "brake" else "0")
     for name, column, _, what in SOLVED:
         asked = what.format(below=given.axial_below, couple=couple)
         form = "0.0E+00" if name == "residual" else FORCE

@@ -129,20 +129,15 @@ def _parts(points: Points, given: Inputs) -> None:
     """Draw each part as the rectangle that it shows from the side, turned about y."""
     parts = given.parts
     for row in range(parts.first, parts.last + 1):
-        x, z, length, height, od, turn = (
-            parts.si(label, row) for label in ("x", "z", "L", "H", "OD", "turn y")
-        )
+        labels = ("x", "z", "L", "H", "OD", "turn y")
+        x, z, length, height, od, turn = points.shared([parts.si(label, row) for label in labels], 5)
         round_ = f'{parts.cell("OD", row)}<>""'
-        corners = []
-        for sx, sz in ((1, 1), (-1, 1), (-1, -1), (1, -1), (1, 1)):
-            u = f"IF({round_},{sx}*({od})/2,{sx}*({length})/2)"
-            v = f"IF({round_},{sz}*({length})/2,{sz}*({height})/2)"
-            corners.append(
-                (
-                    f"({x})+{u}*COS({turn})+{v}*SIN({turn})",
-                    f"({z})-{u}*SIN({turn})+{v}*COS({turn})",
-                )
-            )
+        half = f"IF({round_},{od},{length})/2", f"IF({round_},{length},{height})/2"
+        u, v = points.shared(half, 8)
+        corners = [
+            (f"{x}+{a}{u}*COS({turn})+{b}{v}*SIN({turn})", f"{z}-{a}{u}*SIN({turn})+{b}{v}*COS({turn})")
+            for a, b in (("", ""), ("-", ""), ("-", "-"), ("", "-"), ("", ""))
+        ]
         points.add(f"part {row - parts.first + 1}", corners, width=1.0, color=LEAF)
 
 

@@ -102,7 +102,7 @@ def _motion(rows: _Rows, given: Inputs) -> None:
     page = rows.page
     page.section("Motion", page.INPUT_WORDS)
     turn, run, ramp, stop = given.si("opening", "run_time", "ramp_time", "stop_angle")
-    even = f'{given["law"].ref}="{RAMPS}"'
+    even = given.parts.page.chosen(given["law"], RAMPS)
     spin, spin_up = kinds.ANGULAR_VELOCITY, kinds.ANGULAR_ACCELERATION
     rows.derive(
         "gravity", "Standard gravity", "g", f"{STANDARD_GRAVITY}", kinds.ACCELERATION, "m/s^2", "along -z"
