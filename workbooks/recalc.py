@@ -9,7 +9,7 @@ import threading
 from collections.abc import Callable, Collection, Iterator, Mapping
 from contextlib import contextmanager
 from dataclasses import dataclass, replace
-from functools import cache, partial
+from functools import cache, cached_property, partial
 from pathlib import Path
 from types import FrameType, MappingProxyType
 from typing import Any, Final, TypeAlias
@@ -18,7 +18,7 @@ from rigidsheet.udf.cells import CellError, Value
 
 from . import package as packages
 from . import saving
-from .addresses import size
+from .addresses import Area, size
 from .book import describe
 from .calls import TEXT_LIMIT, Calls, Function
 from .cautions import Caution, cautions, open_elsewhere
@@ -191,8 +191,22 @@ class Run:
             loaded.run()
         if self.calls.interrupted is not None:
             raise self.calls.interrupted
-        for number, sheet, formula in self.prepared.formulas():
-            self._collect(loaded, number, sheet, formula)
+        results, held = self.results, loaded.value
+        for key, sheet, name, formula, row, column, frame in self._formulas:
+            if frame is not None:
+                self._collect_frame(loaded, key[0], sheet, formula, frame)
+                continue
+            value = held(name, row, column)
+            finite = type(value) is float and value - value == 0.0
+            results[key] = value if finite else self._lawful(sheet, formula, value)
+
+    @cached_property
+    def _formulas(self) -> list[tuple[tuple[int, str], Sheet, str, FormulaCell, int, int, Area | None]]:
+        """What reading a result needs of each formula: listed once, for load cases read all again and again."""
+        return [
+            ((n, f.ref), sheet, sheet.name, f, f.row, f.column, f.array)
+            for n, sheet, f in self.prepared.formulas()
+        ]
 
     def result(self) -> Recalculation:
         """Work the workbook out and make the new file."""
@@ -212,12 +226,9 @@ class Run:
             new != self.source,
         )
 
-    def _collect(self, loaded: Sheets, number: int, sheet: Sheet, formula: FormulaCell) -> None:
-        frame = formula.array
-        if frame is None:
-            value = loaded.value(sheet.name, formula.row, formula.column)
-            self.results[number, formula.ref] = self._lawful(sheet, formula, value)
-            return
+    def _collect_frame(
+        self, loaded: Sheets, number: int, sheet: Sheet, formula: FormulaCell, frame: Area
+    ) -> None:
         found = self.calls.sizes.get((number, formula.row, formula.column), size(frame))
         if formula.dynamic and found != size(frame):
             raise FormulaRefused(

@@ -17,7 +17,7 @@ from .errors import address
 from .formulas import Argument
 from .quantities import common_unit_in, unit_in
 from .reading import Place, Reading
-from .sheetxml import FormulaCell
+from .sheetxml import FormulaCell, Sheet
 
 
 @dataclass(frozen=True)
@@ -165,10 +165,10 @@ class Report:
         """Return every cell with a verdict."""
         names = {(number, ref): name for name, number, ref in self._names}
         found = []
-        for number, sheet, formula in self.reading.prepared.formulas():
-            value = self.reading.results[number, formula.ref]
-            whole = self.reading.prepared.analyses[number, formula.ref].whole
-            if value in _VERDICTS or (whole is not None and whole.name == "RB_CHECK"):
+        results = self.reading.results
+        for number, sheet, formula, asks in self._formulas:
+            value = results[number, formula.ref]
+            if asks or value in _VERDICTS:
                 verdict = value.text if isinstance(value, CellError) else str(value)
                 name = names.get((number, formula.ref)) or self._label(number, formula) or formula.ref
                 numbers = self._numbers(number, formula)
@@ -185,6 +185,13 @@ class Report:
                 call = next((c for c in calls if c.name == "RB_CHECK"), None)
                 found.append(self._with_given(number, check, call.arguments if call is not None else []))
         return tuple(found)
+
+    @cached_property
+    def _formulas(self) -> list[tuple[int, Sheet, FormulaCell, bool]]:
+        """Every formula cell, and whether it is a call of RB_CHECK and no more."""
+        prepared = self.reading.prepared
+        wholes = ((n, s, f, prepared.analyses[n, f.ref].whole) for n, s, f in prepared.formulas())
+        return [(n, s, f, whole is not None and whole.name == "RB_CHECK") for n, s, f, whole in wholes]
 
     def _label(self, number: int, formula: FormulaCell) -> str:
         """Return the first text in the row, left of the verdict."""
