@@ -61,4 +61,6 @@ def test_the_sheet_of_your_own_gives_what_the_text_says(tmp_path: Path) -> None:
 def test_no_placeholder_is_left() -> None:
     for name in ("README.md", "DEVELOPERS.md"):
         text = (ROOT / name).read_text(encoding="utf-8")
-        assert not re.findall(r"\b[A-Z]{9,}\b(?<!MERCHANTABILITY)(?<!NONINFRINGEMENT)", text.split("## Licence")[0])
+        assert not re.findall(
+            r"\b[A-Z]{9,}\b(?<!MERCHANTABILITY)(?<!NONINFRINGEMENT)", text.split("## Licence")[0]
+        )

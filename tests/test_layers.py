@@ -206,7 +206,7 @@ def test_a_public_function_of_core_is_documented(name: str) -> None:
 # -- sizes
 
 # One long table of data, which no cut would make clearer.
-TABLES = {"rigidsheet.udf.spellings._symbols"}
+TABLES = {"rigidsheet.udf.units.spellings._symbols"}
 
 
 @pytest.mark.parametrize("module", MODULES)

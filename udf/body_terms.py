@@ -5,9 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
-from . import kinds
-from .bodies import MOMENTS, PRODUCTS, TENSOR_TERMS
 from .declaration import Field, Form
+from .reading.bodies import MOMENTS, PRODUCTS, TENSOR_TERMS
+from .units import kinds
 
 
 @dataclass(frozen=True, eq=False, slots=True)

@@ -25,7 +25,7 @@ from .functions import (
     tensors,
     units,
 )
-from .words import hint
+from .reading.words import hint
 
 
 @functools.cache

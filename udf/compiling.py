@@ -14,13 +14,15 @@ from ..core.errors import AbsentError, InputError, KindError, PhysicsError, Rigi
 from . import frame, results
 from .cells import Answer, Cell, CellError, Omitted, Refusal
 from .declaration import UNIT, WHAT, Arg, CellFunction, Reader
-from .words import Choice, Rest, Text
+from .reading.words import Choice, Rest, Text
 from .working import NOT_FINITE
 
 # One table from error class to what the cell shows.
 CELL_ERRORS: Final = MappingProxyType(
     {InputError: "#VALUE!", KindError: "#VALUE!", PhysicsError: "#NUM!", AbsentError: "#N/A"}
 )
+
+KEPT: Final = 16  # answers of a kernel that gives several results
 
 UNIT_HELP: Final = "unit of the result; SI when omitted"
 
@@ -70,6 +72,7 @@ class Compiled:
         derived = {a.name: i for i, (a, own) in enumerate(placed) if not own}
         self._what = derived.get(WHAT)
         self._unit = derived.get(UNIT)
+        self._kept: dict[tuple[int, ...], tuple[Sequence[Any], Any]] = {}
 
     def read(self, cells: Sequence[Cell]) -> list[Any]:
         """Return what the readers make of the cells, defaults filled in."""
@@ -97,7 +100,23 @@ class Compiled:
         unit = values[self._unit] if self._unit is not None else None
         own, planar = self.frame.align([values[i] for i in self.own])
         self.express.check(what, unit, lambda: self.frame.has_columns(own))
-        return self.express(self.function.kernel(*own), what, unit, planar)
+        return self.express(self._answer_of(own), what, unit, planar)
+
+    def _answer_of(self, own: Sequence[Any]) -> Any:
+        """Return the kernel's answer: a recent one again when only `what` or the unit differs.
+
+        Readings of the same cells are the same objects, which nobody can write to; they are kept beside the
+        answer, so that no other object can get their identity.
+        """
+        if self._what is None or np.ndarray in set(map(type, own)):  # vectors and columns are read anew
+            return self.function.kernel(*own)
+        key = tuple(map(id, own))
+        kept = self._kept.get(key)
+        if kept is None:
+            if len(self._kept) >= KEPT:
+                self._kept.clear()
+            kept = self._kept[key] = own, self.function.kernel(*own)
+        return kept[1]
 
     def working(self, cells: Sequence[Cell]) -> list[str]:
         """Return the lines of the working, or raise as `answer` does."""
@@ -105,7 +124,7 @@ class Compiled:
         values = self.read(cells)
         own, planar = self.frame.align([values[i] for i in self.own])
         own, rows = (own, 1) if self.function.result.gathers else self.frame.first_row(own)
-        answer = self.function.kernel(*own)
+        answer = self._answer_of(own)
         lines = list(self.function.working(tuple(own), answer))
         unit = values[self._unit] if self._unit is not None else None
         if unit is not None:

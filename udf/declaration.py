@@ -8,8 +8,8 @@ from enum import Enum
 from typing import Any, Final, Protocol
 
 from .cells import Cell
-from .kinds import Kind
 from .limits import Limit
+from .units.kinds import Kind
 
 Reader = Callable[[Cell], Any]
 

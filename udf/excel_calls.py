@@ -22,7 +22,7 @@ from .catalogue import FUNCTIONS
 from .cells import OMITTED, Answer, Cell, CellError, Refusal, Value
 from .compiling import arguments_of, short
 from .declaration import Arg, CellFunction
-from .words import Rest
+from .reading.words import Rest
 
 # The number behind each error of Excel. The last seven exist in newer versions only, where alone they occur.
 ERROR_NUMBERS: Final = MappingProxyType(

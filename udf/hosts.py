@@ -7,7 +7,7 @@ from typing import Final
 from . import results
 from .compiling import short
 from .declaration import Arg, CellFunction
-from .words import Rest
+from .reading.words import Rest
 
 # The longest text a function wizard shows (Excel cuts there; Calc shows more).
 MOST_HELP: Final = 255

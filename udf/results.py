@@ -10,10 +10,10 @@ import numpy as np
 from ..core.errors import AbsentError, InputError, PhysicsError
 from .cells import Answer
 from .declaration import Field, Form, Result, Row
-from .kinds import Kind
-from .quantities import folded
-from .units import factor
-from .words import hint
+from .reading.words import hint
+from .units.factors import factor
+from .units.kinds import Kind
+from .units.quantities import folded
 from .working import NOT_FINITE
 
 ALL: Final = "all"

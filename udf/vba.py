@@ -15,7 +15,7 @@ from .catalogue import FUNCTIONS
 from .compiling import arguments_of
 from .declaration import Arg, CellFunction
 from .excel_calls import ERROR_NUMBERS
-from .words import Rest
+from .reading.words import Rest
 
 MODULE: Final = "RigidsheetFunctions"
 PYTHON_MODULE: Final = "rigidsheet.udf.excel"

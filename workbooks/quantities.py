@@ -6,11 +6,11 @@ from functools import lru_cache
 
 from rigidsheet.core.errors import RigidsheetError
 from rigidsheet.udf.cells import Value
-from rigidsheet.udf.kinds import KINDS
-from rigidsheet.udf.numbers import split_quantity
-from rigidsheet.udf.quantities import is_unit_text
-from rigidsheet.udf.spellings import canonical
-from rigidsheet.udf.units import readings
+from rigidsheet.udf.units.factors import readings
+from rigidsheet.udf.units.kinds import KINDS
+from rigidsheet.udf.units.numbers import split_quantity
+from rigidsheet.udf.units.quantities import is_unit_text
+from rigidsheet.udf.units.spellings import canonical
 
 from .errors import InputRefused
 

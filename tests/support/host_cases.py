@@ -17,7 +17,7 @@ from rigidsheet.udf.catalogue import FUNCTIONS
 from rigidsheet.udf.cells import OMITTED, Answer, CellError, Omitted, Refusal
 from rigidsheet.udf.compiling import arguments_of
 from rigidsheet.udf.declaration import CellFunction, Role
-from rigidsheet.udf.words import Choice, Rest
+from rigidsheet.udf.reading.words import Choice, Rest
 
 
 class Date(float):

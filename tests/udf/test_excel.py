@@ -18,7 +18,7 @@ from rigidsheet.udf.catalogue import FUNCTIONS
 from rigidsheet.udf.cells import ERRORS, OMITTED, Cell, CellError, Refusal
 from rigidsheet.udf.compiling import arguments_of
 from rigidsheet.udf.declaration import CellFunction
-from rigidsheet.udf.words import Rest
+from rigidsheet.udf.reading.words import Rest
 
 
 def asks(f: CellFunction) -> bool:

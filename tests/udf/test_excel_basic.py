@@ -20,7 +20,7 @@ from rigidsheet.udf import hosts, vba
 from rigidsheet.udf.catalogue import FUNCTIONS
 from rigidsheet.udf.compiling import arguments_of
 from rigidsheet.udf.declaration import CellFunction
-from rigidsheet.udf.words import Rest
+from rigidsheet.udf.reading.words import Rest
 
 pytestmark = pytest.mark.live
 

@@ -11,7 +11,7 @@ from rigidsheet.udf.catalogue import FUNCTIONS
 from rigidsheet.udf.cells import ERRORS
 from rigidsheet.udf.compiling import arguments_of
 from rigidsheet.udf.declaration import CellFunction
-from rigidsheet.udf.words import Rest
+from rigidsheet.udf.reading.words import Rest
 
 every_function = pytest.mark.parametrize("f", FUNCTIONS.values(), ids=lambda f: f.name)
 

@@ -8,12 +8,12 @@ import numpy as np
 import pytest
 
 from rigidsheet.core.errors import InputError
-from rigidsheet.udf import kinds
-from rigidsheet.udf.arguments import Offset, Scalar, Spin, Tensor, Vector
 from rigidsheet.udf.declaration import Arg
 from rigidsheet.udf.frame import Frame
-from rigidsheet.udf.sizes import Sizes
-from rigidsheet.udf.words import Amount, AnyQuantity, Choice
+from rigidsheet.udf.reading.arguments import Offset, Scalar, Spin, Tensor, Vector
+from rigidsheet.udf.reading.sizes import Sizes
+from rigidsheet.udf.reading.words import Amount, AnyQuantity, Choice
+from rigidsheet.udf.units import kinds
 
 MASS = Arg("mass", Scalar(kinds.MASS), "")
 ARM = Arg("arm", Vector(kinds.LENGTH), "")

@@ -18,7 +18,7 @@ from rigidsheet.udf.catalogue import FUNCTIONS, GROUPS
 from rigidsheet.udf.cells import OMITTED, Refusal
 from rigidsheet.udf.compiling import arguments_of
 from rigidsheet.udf.declaration import Arg, CellFunction, Form
-from rigidsheet.udf.words import Rest
+from rigidsheet.udf.reading.words import Rest
 
 every = pytest.mark.parametrize("f", FUNCTIONS.values(), ids=FUNCTIONS)
 PUBLISHED = Path(__file__).parents[1] / "published"

@@ -12,9 +12,9 @@ import pint
 import pytest
 
 from rigidsheet.core.errors import AbsentError
-from rigidsheet.udf import kinds
-from rigidsheet.udf.kinds import KINDS, Kind, kind_named
-from rigidsheet.udf.units import canonical, factor, is_si, shown
+from rigidsheet.udf.units import kinds
+from rigidsheet.udf.units.factors import canonical, factor, is_si, shown
+from rigidsheet.udf.units.kinds import KINDS, Kind, kind_named
 
 REGISTRY = pint.UnitRegistry(cache_folder=None)
 

@@ -11,7 +11,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from rigidsheet.core.errors import InputError
-from rigidsheet.udf.numbers import read_number, split_quantity
+from rigidsheet.udf.units.numbers import read_number, split_quantity
 
 READ = {
     "0.4": 0.4,

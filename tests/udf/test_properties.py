@@ -11,12 +11,12 @@ from cell_answers import answer, flat
 from hypothesis import assume, given
 from hypothesis import strategies as st
 
-from rigidsheet.udf import kinds
-from rigidsheet.udf.arguments import Scalar, Spin, Vector
 from rigidsheet.udf.catalogue import FUNCTIONS
 from rigidsheet.udf.cells import OMITTED
 from rigidsheet.udf.compiling import arguments_of
-from rigidsheet.udf.kinds import KINDS, Kind
+from rigidsheet.udf.reading.arguments import Scalar, Spin, Vector
+from rigidsheet.udf.units import kinds
+from rigidsheet.udf.units.kinds import KINDS, Kind
 
 Rows = list[list[Any]]
 

@@ -9,9 +9,9 @@ import numpy as np
 import pytest
 
 from rigidsheet.core.errors import AbsentError, InputError, KindError, PhysicsError
-from rigidsheet.udf import kinds
 from rigidsheet.udf.declaration import Field, Form, Result, Row
 from rigidsheet.udf.results import Expression, block, express, finite, gate_rows, has_unit, names, record
+from rigidsheet.udf.units import kinds
 
 NOT_FINITE = "not a finite number"
 

@@ -13,10 +13,10 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from rigidsheet.core.errors import InputError, KindError
-from rigidsheet.udf import kinds as k
-from rigidsheet.udf import units
-from rigidsheet.udf.kinds import KINDS, Kind
-from rigidsheet.udf.units import canonical, factor, is_si, readings
+from rigidsheet.udf.units import factors as units
+from rigidsheet.udf.units import kinds as k
+from rigidsheet.udf.units.factors import canonical, factor, is_si, readings
+from rigidsheet.udf.units.kinds import KINDS, Kind
 
 CANONICAL = {
     "kg*m^2": [
@@ -352,8 +352,8 @@ def test_the_memory_of_texts_is_bounded(monkeypatch: pytest.MonkeyPatch) -> None
 def test_common_units_do_not_load_the_registry() -> None:
     code = (
         "import sys\n"
-        "from rigidsheet.udf.units import factor\n"
-        "from rigidsheet.udf.kinds import TORQUE, LENGTH\n"
+        "from rigidsheet.udf.units.factors import factor\n"
+        "from rigidsheet.udf.units.kinds import TORQUE, LENGTH\n"
         "assert factor('FT.-LBS.', TORQUE) > 1 and 'pint' not in sys.modules\n"
         "assert factor('millimetres', LENGTH) == 0.001 and 'pint' in sys.modules\n"
     )

@@ -379,8 +379,8 @@ def test_inputs_results_and_checks_have_names() -> None:
 
 
 def test_units_on_offer_are_read() -> None:
-    from rigidsheet.udf.kinds import KINDS
-    from rigidsheet.udf.units import factor
+    from rigidsheet.udf.units.factors import factor
+    from rigidsheet.udf.units.kinds import KINDS
     from rigidsheet.workbooks.templates.kit_cells import UNITS
 
     kinds = {kind.name: kind for kind in KINDS}

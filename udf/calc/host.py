@@ -12,7 +12,7 @@ from ..catalogue import FUNCTIONS
 from ..cells import OMITTED, Answer, Cell, Refusal, Value
 from ..compiling import arguments_of
 from ..declaration import Arg, CellFunction, Form
-from ..words import Rest
+from ..reading.words import Rest
 
 # A reference to whole columns or rows arrives in full; its blank end is not meant.
 WHOLE_ROWS: Final = 65_536

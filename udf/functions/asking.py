@@ -9,7 +9,7 @@ from ...core.errors import InputError
 from ..cells import Refusal
 from ..compiling import Compiled, answered, worked
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
-from ..words import Rest, Text
+from ..reading.words import Rest, Text
 
 Find = Callable[[str], Compiled]
 

@@ -12,10 +12,10 @@ from ...core.errors import InputError, PhysicsError
 from ...core.principal import principal
 from ...core.tensors import shift_from_center, tensor_problem
 from ...core.vectors import rotation_matrix
-from .. import kinds
-from ..arguments import Scalar, Tensor, Vector
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..limits import NOT_NEGATIVE, POSITIVE
+from ..reading.arguments import Scalar, Tensor, Vector
+from ..units import kinds
 from ..working import num, tensor_rows, vec
 from .tensors import DYNAMICS, GROUP
 

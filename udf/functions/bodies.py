@@ -12,14 +12,14 @@ from ...core.errors import InputError
 from ...core.plates import section_body
 from ...core.tensors import offset_tensor, turned
 from ...core.vectors import rotation_matrix
-from .. import kinds
-from ..arguments import Scalar, Vector
-from ..bodies import BODY, MOMENTS, needs_space
 from ..body_terms import BodyTerms, body_fields
 from ..declaration import WHAT, Arg, CellFunction, Example, Field, Form, Result
 from ..limits import POSITIVE
-from ..outlines import Outline
-from ..parts import PARTS, PartsList
+from ..reading.arguments import Scalar, Vector
+from ..reading.bodies import BODY, MOMENTS, needs_space
+from ..reading.outlines import Outline
+from ..reading.parts import PARTS, PartsList
+from ..units import kinds
 from ..working import num, tensor_rows, vec
 from .axes import axis_text, direction_of
 

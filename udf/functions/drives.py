@@ -5,10 +5,10 @@ from __future__ import annotations
 from typing import Any
 
 from ...core import drives
-from .. import kinds
-from ..arguments import Scalar
 from ..declaration import UNIT, Arg, CellFunction, Example, Field, Result
 from ..limits import FRACTION, NONZERO, NOT_NEGATIVE
+from ..reading.arguments import Scalar
+from ..units import kinds
 from ..working import num
 
 GROUP = "Forces"

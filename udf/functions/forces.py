@@ -8,11 +8,11 @@ import numpy as np
 
 from ...core import balance, drives, loads
 from ...core.errors import InputError, PhysicsError
-from .. import kinds
-from ..arguments import Scalar, Spin, Tensor, Vector
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..limits import NOT_NEGATIVE, POSITIVE
-from ..states import LOADS, LoadsRead
+from ..reading.arguments import Scalar, Spin, Tensor, Vector
+from ..reading.states import LOADS, LoadsRead
+from ..units import kinds
 from ..working import is_flat, num, signed, tensor_rows, total, vec
 
 GROUP = "Forces"

@@ -8,11 +8,11 @@ import numpy as np
 
 from ...core import balance, motion
 from ...core.errors import InputError
-from .. import kinds
-from ..arguments import Spin, Tensor, Vector
-from ..bodies import BodyRead
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
-from ..states import MotionRead
+from ..reading.arguments import Spin, Tensor, Vector
+from ..reading.bodies import BodyRead
+from ..reading.states import MotionRead
+from ..units import kinds
 from ..working import num, tensor_rows, vec
 from .reactions import BODY_ARG, MOTION_ARG
 

@@ -5,9 +5,9 @@ from __future__ import annotations
 from typing import Any
 
 from ...core import motion
-from .. import kinds
-from ..arguments import Spin, Vector
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
+from ..reading.arguments import Spin, Vector
+from ..units import kinds
 from ..working import is_flat, num, vec
 
 KINEMATICS = (

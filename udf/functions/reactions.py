@@ -12,11 +12,11 @@ from ...core.errors import InputError
 from ...core.reactions import SolvedReactions, solve_reactions
 from ...core.supports import Hold
 from ...core.vectors import cross
-from .. import kinds
-from ..arguments import Vector
-from ..bodies import BODY, BodyRead, needs_space
 from ..declaration import Arg, CellFunction, Example, Field, Result, Row
-from ..states import LOADS, MOTION, SUPPORTS, SUPPORTS_3D, LoadsRead, MotionRead, SupportsRead
+from ..reading.arguments import Vector
+from ..reading.bodies import BODY, BodyRead, needs_space
+from ..reading.states import LOADS, MOTION, SUPPORTS, SUPPORTS_3D, LoadsRead, MotionRead, SupportsRead
+from ..units import kinds
 from ..working import num, vec
 
 GROUP = "Forces"

@@ -8,13 +8,13 @@ from typing import Any
 import numpy as np
 
 from ...core.errors import InputError, PhysicsError
-from .. import kinds
-from ..amounts import pair
-from ..arguments import Scalar
-from ..cases import Cases, CaseValues
 from ..declaration import WHAT, Arg, CellFunction, Example, Field, Form, Result
 from ..limits import POSITIVE
-from ..words import Amount, AnyQuantity, Choice
+from ..reading.arguments import Scalar
+from ..reading.cases import Cases, CaseValues
+from ..reading.words import Amount, AnyQuantity, Choice
+from ..units import kinds
+from ..units.amounts import pair
 from ..working import num
 
 GROUP = "Review"

@@ -7,13 +7,13 @@ from typing import Any
 import numpy as np
 
 from ...core.shapes import complete_sizes, shape_body, shape_mass, shape_named
-from .. import kinds
-from ..arguments import Scalar
 from ..body_terms import TERM_FIELDS, BodyTerms
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..limits import POSITIVE
-from ..sizes import Sizes
-from ..words import Text
+from ..reading.arguments import Scalar
+from ..reading.sizes import Sizes
+from ..reading.words import Text
+from ..units import kinds
 from ..working import num, tensor_rows, vec
 
 GROUP = "Mass"

@@ -5,9 +5,9 @@ from __future__ import annotations
 from typing import Any
 
 from ...core import motion
-from .. import kinds
-from ..arguments import Vector
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
+from ..reading.arguments import Vector
+from ..units import kinds
 from ..working import is_flat, num, vec
 from .motion import ALPHA, KINEMATICS, OMEGA, cross_text, planar_spin
 

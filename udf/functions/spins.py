@@ -8,9 +8,9 @@ import numpy as np
 
 from ...core import motion, spin_fit
 from ...core.errors import InputError
-from .. import kinds
-from ..arguments import Spin, Vector
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
+from ..reading.arguments import Spin, Vector
+from ..units import kinds
 from ..working import num, vec
 from .motion import OMEGA
 

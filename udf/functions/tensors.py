@@ -16,12 +16,12 @@ from ...core.tensors import (
     tensor_from_terms,
     tensor_problem,
 )
-from .. import kinds
-from ..arguments import Offset, Scalar, Tensor
-from ..bodies import INTEGRALS, MOMENTS, PRODUCT_WORDS, PRODUCTS, TENSOR_TERMS, products_form
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..limits import NOT_NEGATIVE, POSITIVE
-from ..words import Choice
+from ..reading.arguments import Offset, Scalar, Tensor
+from ..reading.bodies import INTEGRALS, MOMENTS, PRODUCT_WORDS, PRODUCTS, TENSOR_TERMS, products_form
+from ..reading.words import Choice
+from ..units import kinds
 from ..working import num, tensor_rows, vec
 
 GROUP = "Mass"

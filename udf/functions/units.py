@@ -7,12 +7,12 @@ from typing import Any
 import numpy as np
 
 from ...core.errors import InputError
-from ..amounts import kinds_text, shared_kind
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
-from ..kinds import Kind
-from ..quantities import asked
-from ..units import readings
-from ..words import Amount, AnyQuantity, Text
+from ..reading.words import Amount, AnyQuantity, Text
+from ..units.amounts import kinds_text, shared_kind
+from ..units.factors import readings
+from ..units.kinds import Kind
+from ..units.quantities import asked
 from ..working import num
 
 GROUP = "Units"

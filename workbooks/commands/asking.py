@@ -32,7 +32,7 @@ def functions(word: str | None) -> None:
         return
     found = [f for f in catalogue.FUNCTIONS.values() if _speaks_of(f, word.strip().lower())]
     if not found:
-        from rigidsheet.udf.words import nearest
+        from rigidsheet.udf.reading.words import nearest
 
         close = nearest(word, catalogue.FUNCTIONS)
         raise Refused(f"no function speaks of {word!r}." + (f" Did you mean {close}?" if close else ""))

@@ -10,8 +10,8 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any, Final
 
-from rigidsheet.udf import kinds
 from rigidsheet.udf.limits import AT_LEAST_ONE, FRACTION, NOT_NEGATIVE, POSITIVE
+from rigidsheet.udf.units import kinds
 
 from .bin_tipper_parts import FRUIT, TABLE
 from .kit import Book, Page, Place

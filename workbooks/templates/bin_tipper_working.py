@@ -5,8 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any, Final
 
-from rigidsheet.udf import kinds
-from rigidsheet.udf.states import STANDARD_GRAVITY
+from rigidsheet.udf.reading.states import STANDARD_GRAVITY
+from rigidsheet.udf.units import kinds
 
 from .bin_tipper import Inputs
 from .kit import Book, Page, Place

@@ -6,7 +6,7 @@ from collections.abc import Iterable
 from dataclasses import dataclass
 from typing import Final, NamedTuple
 
-from rigidsheet.udf import kinds
+from rigidsheet.udf.units import kinds
 
 from .hoist_arm import CASES, Inputs
 from .hoist_arm_working import A_X, A_Y, ALPHA, EFFORT, OMEGA, PIN, TORQUE, Table, Work

@@ -8,8 +8,8 @@ from typing import Any, Final
 from openpyxl.styles import Border, Font, Side
 from openpyxl.utils import get_column_letter
 
-from rigidsheet.udf import kinds
-from rigidsheet.udf.states import STANDARD_GRAVITY
+from rigidsheet.udf.reading.states import STANDARD_GRAVITY
+from rigidsheet.udf.units import kinds
 
 from .hoist_arm import CASES, LOWER, NAMES, STOP_LOWERING, Case, Inputs
 from .kit import Book, Page, Place

@@ -11,9 +11,9 @@ from openpyxl.utils import get_column_letter
 from openpyxl.worksheet.datavalidation import DataValidation
 from openpyxl.worksheet.pagebreak import Break
 
-from rigidsheet.udf.kinds import Kind
 from rigidsheet.udf.limits import Limit
-from rigidsheet.udf.quantities import asked
+from rigidsheet.udf.units.kinds import Kind
+from rigidsheet.udf.units.quantities import asked
 
 from .kit_cells import (
     CAUTIONS,

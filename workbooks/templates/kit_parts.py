@@ -8,9 +8,9 @@ from typing import Any, Final
 
 from openpyxl.utils import get_column_letter
 
-from rigidsheet.udf import kinds
-from rigidsheet.udf.kinds import Kind
 from rigidsheet.udf.limits import POSITIVE
+from rigidsheet.udf.units import kinds
+from rigidsheet.udf.units.kinds import Kind
 
 from .kit import Page
 from .kit_look import MARK

@@ -12,9 +12,9 @@ from typing import Final
 
 from openpyxl.utils import get_column_letter
 
-from rigidsheet.udf import kinds
-from rigidsheet.udf.kinds import Kind
 from rigidsheet.udf.limits import NONZERO, NOT_NEGATIVE, POSITIVE, Limit
+from rigidsheet.udf.units import kinds
+from rigidsheet.udf.units.kinds import Kind
 
 from .kit import Book, Page, Place
 

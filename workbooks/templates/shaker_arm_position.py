@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Final
 
-from rigidsheet.udf import kinds
+from rigidsheet.udf.units import kinds
 
 from .kit import Book
 from .kit_look import LEFT

@@ -5,9 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from typing import Final
 
-from rigidsheet.udf import kinds
-from rigidsheet.udf.kinds import Kind
-from rigidsheet.udf.states import STANDARD_GRAVITY
+from rigidsheet.udf.reading.states import STANDARD_GRAVITY
+from rigidsheet.udf.units import kinds
+from rigidsheet.udf.units.kinds import Kind
 
 from .kit import Book, Page, Place
 from .kit_look import SOFT, rich

@@ -11,8 +11,8 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any, Final
 
-from rigidsheet.udf import kinds
 from rigidsheet.udf.limits import AT_LEAST_ONE, FRACTION, NOT_NEGATIVE, POSITIVE
+from rigidsheet.udf.units import kinds
 
 from .kit import Book, Page, Place
 from .kit_parts import Part, PartsTable, parts_table, turned_about

@@ -6,12 +6,12 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 from typing import Any
 
-from ..core.errors import InputError, RigidsheetError
-from .cells import Block, Cell, Value
-from .declaration import Reader, Role, Shape
-from .limits import Limit
+from ...core.errors import InputError, RigidsheetError
+from ..cells import Block, Cell, Value
+from ..declaration import Reader, Role, Shape
+from ..limits import Limit
+from ..units.quantities import folded, is_unit_text, shown, wrong
 from .memory import remembered
-from .quantities import folded, is_unit_text, shown, wrong
 from .tables import label_and_unit
 from .words import hint
 

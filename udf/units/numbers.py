@@ -7,7 +7,7 @@ from collections.abc import Callable
 from math import isinf
 from typing import Final, NoReturn
 
-from ..core.errors import InputError
+from ...core.errors import InputError
 
 # Atomic, so that a number is never cut short to make sense of the rest (`11/min` is not 1 and 1/min).
 _DIGITS: Final = r"(?>[+\-\u2212]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+\-\u2212]?[0-9]+)?)"

@@ -9,12 +9,12 @@ from typing import Any, Final
 
 import numpy as np
 
-from ..core.errors import InputError
-from .cells import Cell, Value
-from .declaration import Reader, Role
-from .limits import Limit
-from .numbers import split_quantity
-from .quantities import folded, is_unit_text, shown, wrong
+from ...core.errors import InputError
+from ..cells import Cell, Value
+from ..declaration import Reader, Role
+from ..limits import Limit
+from ..units.numbers import split_quantity
+from ..units.quantities import folded, is_unit_text, shown, wrong
 
 
 def nearest(word: str, known: Iterable[str]) -> str | None:

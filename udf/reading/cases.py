@@ -8,15 +8,15 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from ..core.errors import InputError
-from .amounts import shared_kind
-from .cells import Block, Cell, Value
-from .declaration import Reader, Role
-from .limits import Limit
+from ...core.errors import InputError
+from ..cells import Block, Cell, Value
+from ..declaration import Reader, Role
+from ..limits import Limit
+from ..units.amounts import shared_kind
+from ..units.factors import readings
+from ..units.quantities import is_unit_text, shown, wrong
 from .memory import remembered
-from .quantities import is_unit_text, shown, wrong
 from .tables import TOTAL, label_and_unit
-from .units import readings
 from .words import one_amount
 
 

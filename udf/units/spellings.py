@@ -16,7 +16,7 @@ from itertools import product
 from math import pi
 from typing import Final, NamedTuple, TypeAlias
 
-from ..core.errors import InputError
+from ...core.errors import InputError
 
 # Powers of mass, length, time and angle. Angle counts as a dimension here, so that a torque per radian
 # and a torque, or a speed in turns and a frequency, can never be mistaken for each other.

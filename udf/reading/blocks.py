@@ -10,11 +10,11 @@ from typing import Final
 
 import numpy as np
 
-from ..core.errors import InputError
-from . import kinds
-from .cells import Block, Value
-from .kinds import Kind
-from .quantities import (
+from ...core.errors import InputError
+from ..cells import Block, Value
+from ..units import kinds
+from ..units.kinds import Kind
+from ..units.quantities import (
     Array,
     asked,
     beside_unit,

@@ -7,10 +7,10 @@ from typing import Any
 
 import numpy as np
 
-from ..core.errors import InputError, KindError
+from ...core.errors import InputError, KindError
+from ..reading.words import Amount
+from .factors import readings
 from .kinds import Kind
-from .units import readings
-from .words import Amount
 
 
 def common_kinds(first: str, second: str) -> list[tuple[Kind, float, float]]:

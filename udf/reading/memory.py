@@ -9,8 +9,8 @@ from typing import Any, Final
 
 import numpy as np
 
-from .cells import Cell
-from .declaration import Reader
+from ..cells import Cell
+from ..declaration import Reader
 
 KEPT: Final = 256  # readings, for each argument of each function
 LARGEST: Final = 600  # cells; a longer table is read anew, as it takes long to tell from another

@@ -11,17 +11,17 @@ from typing import Any, Final
 import numpy as np
 from numpy.typing import NDArray
 
-from ..core.body import RigidBody, combine_arrays
-from ..core.errors import InputError
-from ..core.shapes import shape_body, shape_mass, shape_named
-from ..core.tensors import turned
-from ..core.vectors import turn_xyz
-from . import kinds
+from ...core.body import RigidBody, combine_arrays
+from ...core.errors import InputError
+from ...core.shapes import shape_body, shape_mass, shape_named
+from ...core.tensors import turned
+from ...core.vectors import turn_xyz
+from ..limits import NOT_NEGATIVE, POSITIVE
+from ..units import kinds
+from ..units.quantities import folded
 from .bodies import MOMENTS, PRODUCTS
-from .limits import NOT_NEGATIVE, POSITIVE
 from .measured import CENTER, fill_measured, word_of
 from .patterns import XYZ, pattern_of
-from .quantities import folded
 from .sizes import SIZE_COLUMNS, size_texts
 from .tables import Column, Table, TableData
 

@@ -10,16 +10,16 @@ from typing import Any, Final
 
 import numpy as np
 
-from ..core.errors import InputError, RigidsheetError
-from ..core.shapes import SHAPES
-from . import kinds
+from ...core.errors import InputError, RigidsheetError
+from ...core.shapes import SHAPES
+from ..cells import Block, Cell
+from ..declaration import Reader, Role
+from ..limits import Limit
+from ..units import kinds
+from ..units.kinds import Kind
+from ..units.quantities import folded, is_unit_text, numbers, quantity, shown, unit_factor, wrong
 from .arguments import Scalar
-from .cells import Block, Cell
-from .declaration import Reader, Role
-from .kinds import Kind
-from .limits import Limit
 from .memory import remembered
-from .quantities import folded, is_unit_text, numbers, quantity, shown, unit_factor, wrong
 from .records import block_lines
 from .tables import Column, label_and_unit
 from .words import hint

@@ -8,12 +8,12 @@ from typing import Any, Final, Literal
 
 import numpy as np
 
-from ..core.body import RigidBody
-from ..core.errors import InputError
-from ..core.tensors import tensor_from_terms
-from . import kinds
+from ...core.body import RigidBody
+from ...core.errors import InputError
+from ...core.tensors import tensor_from_terms
+from ..limits import NOT_NEGATIVE, POSITIVE
+from ..units import kinds
 from .arguments import Scalar, Vector
-from .limits import NOT_NEGATIVE, POSITIVE
 from .records import Entry, Record
 
 TENSOR_TERMS: Final = "tensor terms"

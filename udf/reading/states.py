@@ -10,12 +10,12 @@ from typing import Any, Final
 import numpy as np
 from numpy.typing import NDArray
 
-from ..core import states
-from ..core.errors import InputError
-from ..core.supports import COMPONENTS, PLANAR_KINDS, SPATIAL_KINDS, Hold, planar_support, spatial_support
-from . import kinds
+from ...core import states
+from ...core.errors import InputError
+from ...core.supports import COMPONENTS, PLANAR_KINDS, SPATIAL_KINDS, Hold, planar_support, spatial_support
+from ..units import kinds
+from ..units.quantities import folded, shown
 from .arguments import Spin, Vector
-from .quantities import folded, shown
 from .records import Entry, Record
 from .tables import Column, Table, TableData
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from math import pi
 from typing import Final
 
-from ..core.errors import AbsentError
+from ...core.errors import AbsentError
 from .kind import Kind as Kind
 from .kind import make_kind, selected, times
 from .spellings import GRAVITY

@@ -6,10 +6,10 @@ from typing import Final
 
 import numpy as np
 
-from ..core.errors import InputError
-from ..core.tensors import turned
-from ..core.vectors import rotation_matrix
-from .quantities import Array, folded, shown
+from ...core.errors import InputError
+from ...core.tensors import turned
+from ...core.vectors import rotation_matrix
+from ..units.quantities import Array, folded, shown
 from .tables import TableData
 
 ONE_PLACE, CIRCLE, LINE = "one place", "circle", "line"

@@ -12,13 +12,13 @@ from typing import Any, Final
 import numpy as np
 from numpy.typing import NDArray
 
-from ..core.errors import InputError
-from .cells import Block, Cell, Value
-from .declaration import Reader, Role
-from .kinds import Kind
-from .limits import Limit
+from ...core.errors import InputError
+from ..cells import Block, Cell, Value
+from ..declaration import Reader, Role
+from ..limits import Limit
+from ..units.kinds import Kind
+from ..units.quantities import asked, check_limit, folded, is_unit_text, quantity, shown, unit_factor, wrong
 from .memory import remembered
-from .quantities import asked, check_limit, folded, is_unit_text, quantity, shown, unit_factor, wrong
 from .words import hint, nearest
 
 HEADER: Final = re.compile(r"\s*(.*?)\s*(?:\[\s*(.*?)\s*\])?\s*\Z")

@@ -13,7 +13,7 @@ from fractions import Fraction
 from functools import lru_cache
 from typing import Any, Final
 
-from ..core.errors import InputError, KindError
+from ...core.errors import InputError, KindError
 from .kinds import COUNT, KINDS, TORQUE, Kind
 from .spellings import (
     LONGEST_UNIT,

@@ -9,13 +9,13 @@ from typing import Any, Final
 import numpy as np
 from numpy.typing import NDArray
 
-from ..core.errors import InputError, KindError
+from ...core.errors import InputError, KindError
+from ..cells import Block, CellError, Value
+from ..limits import Limit
 from . import kinds
-from .cells import Block, CellError, Value
+from .factors import factor
 from .kinds import Kind
-from .limits import Limit
 from .numbers import split_quantity
-from .units import factor
 
 Array = NDArray[np.float64]
 

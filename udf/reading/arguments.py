@@ -5,16 +5,14 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
-from ..core.errors import InputError
-from . import kinds
-from .blocks import along_x, lifted, single, tensor, three_numbers, vector_text, vectors
-from .cells import Block, Cell
-from .declaration import Reader, Role
-from .frame import Upright
-from .kinds import Kind
-from .limits import NOT_NEGATIVE, Limit
-from .memory import remembered
-from .quantities import (
+from ...core.errors import InputError
+from ..cells import Block, Cell
+from ..declaration import Reader, Role
+from ..frame import Upright
+from ..limits import NOT_NEGATIVE, Limit
+from ..units import kinds
+from ..units.kinds import Kind
+from ..units.quantities import (
     Array,
     asked,
     beside_unit,
@@ -29,6 +27,8 @@ from .quantities import (
     unit_leads,
     wrong,
 )
+from .blocks import along_x, lifted, single, tensor, three_numbers, vector_text, vectors
+from .memory import remembered
 
 
 @dataclass(frozen=True, slots=True)

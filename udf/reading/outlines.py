@@ -8,15 +8,15 @@ from typing import Any, Final
 import numpy as np
 from numpy.typing import NDArray
 
-from ..core.errors import InputError
-from ..core.plates import Section, plate_section
-from . import kinds
+from ...core.errors import InputError
+from ...core.plates import Section, plate_section
+from ..cells import Cell
+from ..declaration import Reader, Role
+from ..limits import POSITIVE, Limit
+from ..units import kinds
+from ..units.quantities import folded, wrong
 from .arguments import Vector
-from .cells import Cell
-from .declaration import Reader, Role
-from .limits import POSITIVE, Limit
 from .memory import remembered
-from .quantities import folded, wrong
 from .tables import Column, Table, TableData
 
 Array = NDArray[np.float64]

@@ -6,11 +6,11 @@ from typing import Final
 
 import numpy as np
 
-from ..core.errors import InputError
-from ..core.tensors import shift_to_center
+from ...core.errors import InputError
+from ...core.tensors import shift_to_center
+from ..units.quantities import Array, folded, shown
 from .bodies import INTEGRALS, MOMENTS, PRODUCT_WORDS, PRODUCTS, TENSOR_TERMS, products_form, tensor_of
 from .patterns import XYZ
-from .quantities import Array, folded, shown
 from .tables import TableData
 
 CENTER: Final = "mass center"

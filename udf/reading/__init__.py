@@ -1,0 +1,1 @@
+"""Readers: from cells to what kernels take, by what they read."""

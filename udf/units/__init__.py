@@ -1,0 +1,1 @@
+"""Numbers, kinds of quantity and unit texts."""
