@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import Any, Final
+from typing import Any, Final, TypeAlias
 
 from rigidsheet.udf.reading.states import STANDARD_GRAVITY
 from rigidsheet.udf.units import kinds
@@ -15,6 +15,45 @@ from .kit_look import SOFT, rich
 WORK_COLUMNS: Final = (2.5, 36.0, 8.0, 12.5, 10.0, 12.5, 9.0, *([9.0] * 6))
 STATES: Final = ("empty", "fruit", "whole")
 LOOK: Final = "position"
+# Field of RB_ROLLUP, label, symbol, about, kind, unit, note.
+ROLLED: Final[tuple[tuple[str, str, str, str, Any, str, str], ...]] = (
+    ("mass", "Mass", "m", "", kinds.MASS, "kg", "RB_ROLLUP of the parts list"),
+    ("x", "Mass center from the hinge, along x", "x_G", "", kinds.LENGTH, "mm", "table level"),
+    ("y", "Mass center from the hinge, along y", "y_G", "", kinds.LENGTH, "mm", ""),
+    ("z", "Mass center along the hinge", "z_G", "", kinds.LENGTH, "mm", ""),
+    ("Izz", "Moment of inertia about the mass center", "I_G", "", kinds.INERTIA, "kg*m^2", ""),
+    (
+        "Izz", "Moment of inertia about the hinge", "I_O", "origin", kinds.INERTIA, "kg*m^2",
+        "I_O = I_G + m (x_G² + y_G²)",
+    ),
+    (
+        "Izx", "Product of inertia about the hinge", "I_{zx}", "origin", kinds.INERTIA, "kg*m^2",
+        "tensor term, = minus the sum of z x m",
+    ),
+    (
+        "Iyz", "Product of inertia about the hinge", "I_{yz}", "origin", kinds.INERTIA, "kg*m^2",
+        "tensor term, = minus the sum of y z m",
+    ),
+)  # fmt: skip
+# Label, symbol, unit and rule of the sums about the hinge axis.
+SUMS: Final = (
+    ("Mass", "m", "kg", ""),
+    ("First moment of mass along x", "S_x", "kg*m", "S_x = m x_G"),
+    ("First moment of mass along y", "S_y", "kg*m", "S_y = m y_G"),
+    ("Moment of inertia about the hinge", "I_O", "kg*m^2", "fruit: all fruit less empty"),
+    ("First moment of mass along the hinge", "S_z", "kg*m", "S_z = m z_G"),
+    ("Sum of z x m", "K_x", "kg*m^2", "K_x = −I_{zx} about the hinge"),
+    ("Sum of z y m", "K_y", "kg*m^2", "K_y = −I_{yz} about the hinge"),
+)
+# What counts for one hinge: label, symbol and its index, unit, the sums across and along, what they are called.
+SHARES: Final = (
+    ("Mass", "m_{h", "kg", 4, 0, ("S_z", "m")),
+    ("First moment along x", "S_{x,h", "kg*m", 5, 1, ("K_x", "S_x")),
+    ("First moment along y", "S_{y,h", "kg*m", 6, 2, ("K_y", "S_y")),
+)
+
+
+Cells: TypeAlias = tuple[str, str, str]  # one for each state of the bin
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,42 +108,8 @@ def working(book: Book, given: Inputs) -> Work:
 
 def _rolled_up(page: Page, parts: str, title: str, word: str) -> dict[str, Place]:
     page.section(title, {**page.INPUT_WORDS})
-    rows: tuple[tuple[str, str, str, str, Any, str, str], ...] = (
-        ("mass", "Mass", "m", "", kinds.MASS, "kg", "RB_ROLLUP of the parts list"),
-        ("x", "Mass center from the hinge, along x", "x_G", "", kinds.LENGTH, "mm", "table level"),
-        ("y", "Mass center from the hinge, along y", "y_G", "", kinds.LENGTH, "mm", ""),
-        ("z", "Mass center along the hinge", "z_G", "", kinds.LENGTH, "mm", ""),
-        ("Izz", "Moment of inertia about the mass center", "I_G", "", kinds.INERTIA, "kg*m^2", ""),
-        (
-            "Izz",
-            "Moment of inertia about the hinge",
-            "I_O",
-            "origin",
-            kinds.INERTIA,
-            "kg*m^2",
-            "I_O = I_G + m (x_G² + y_G²)",
-        ),
-        (
-            "Izx",
-            "Product of inertia about the hinge",
-            "I_{zx}",
-            "origin",
-            kinds.INERTIA,
-            "kg*m^2",
-            "tensor term, = minus the sum of z x m",
-        ),
-        (
-            "Iyz",
-            "Product of inertia about the hinge",
-            "I_{yz}",
-            "origin",
-            kinds.INERTIA,
-            "kg*m^2",
-            "tensor term, = minus the sum of y z m",
-        ),
-    )
     got = {}
-    for field, label, symbol, about, kind, unit, note in rows:
+    for field, label, symbol, about, kind, unit, note in ROLLED:
         key = f"{field}_hinge" if about else field
         point = f',"{about}"' if about else ","
         got[key] = page.result(
@@ -181,54 +186,9 @@ def _sums(page: Page, given: Inputs, rolled: dict[str, dict[str, Place]]) -> dic
     for column in range(9, page.columns + 1):
         page.put(column, None, "RS head")
     page.row += 1
-    z1, z2 = given.hinge_1.si, given.hinge_2.si
-    rows = []
-    e, w = rolled["empty"], rolled["whole"]
-
-    def sums(r: dict[str, Place]) -> tuple[str, ...]:
-        m, x, y, z = r["mass"].si, r["x"].si, r["y"].si, r["z"].si
-        return (
-            m,
-            f"{m}*{x}",
-            f"{m}*{y}",
-            r["Izz_hinge"].si,
-            f"{m}*{z}",
-            f"-{r['Izx_hinge'].si}",
-            f"-{r['Iyz_hinge'].si}",
-        )
-
-    texts = (
-        ("Mass", "m", "kg", ""),
-        ("First moment of mass along x", "S_x", "kg*m", "S_x = m x_G"),
-        ("First moment of mass along y", "S_y", "kg*m", "S_y = m y_G"),
-        ("Moment of inertia about the hinge", "I_O", "kg*m^2", "fruit: all fruit less empty"),
-        ("First moment of mass along the hinge", "S_z", "kg*m", "S_z = m z_G"),
-        ("Sum of z x m", "K_x", "kg*m^2", "K_x = −I_{zx} about the hinge"),
-        ("Sum of z y m", "K_y", "kg*m^2", "K_y = −I_{yz} about the hinge"),
-    )
-    for text, empty, whole in zip(texts, sums(e), sums(w), strict=True):
-        rows.append(_sum_row(page, text, empty, whole))
-    for name, other, span in (("1", z2, f"({z1}-{z2})"), ("2", z1, f"({z2}-{z1})")):
-        for label, symbol, across, along, unit in (
-            ("Mass", "m", 4, 0, "kg"),
-            ("First moment along x", "S_x", 5, 1, "kg*m"),
-            ("First moment along y", "S_y", 6, 2, "kg*m"),
-        ):
-            cells = [f"({rows[across][k]}-{other}*{rows[along][k]})/{span}" for k in (0, 2)]
-            far = "z_2" if name == "1" else "z_1"
-            sign = "(z_1 − z_2)" if name == "1" else "(z_2 − z_1)"
-            rule = {
-                "m": f"(S_z − {far} m) / {sign}",
-                "S_x": f"(K_x − {far} S_x) / {sign}",
-                "S_y": f"(K_y − {far} S_y) / {sign}",
-            }
-            text = (
-                f"{label} that counts for hinge {name}",
-                f"{symbol.replace('_', '_{')}{',' if '_' in symbol else '_{'}h{name}}}",
-                unit,
-                rule[symbol],
-            )
-            rows.append(_sum_row(page, text, *cells))
+    empty, whole = (_sums_of(rolled[state]) for state in ("empty", "whole"))
+    rows = [_sum_row(page, *one) for one in zip(SUMS, empty, whole, strict=True)]
+    rows += _hinge_rows(page, given, rows)
     return {
         state: Body(
             rows[0][k],
@@ -239,6 +199,25 @@ def _sums(page: Page, given: Inputs, rolled: dict[str, dict[str, Place]]) -> dic
         )
         for k, state in enumerate(STATES)
     }
+
+
+def _sums_of(rows: dict[str, Place]) -> tuple[str, ...]:
+    """Return the formulas of the sums about the hinge axis out of a roll-up."""
+    m, x, y, z = (rows[field].si for field in ("mass", "x", "y", "z"))
+    products = f"-{rows['Izx_hinge'].si}", f"-{rows['Iyz_hinge'].si}"
+    return (m, f"{m}*{x}", f"{m}*{y}", rows["Izz_hinge"].si, f"{m}*{z}", *products)
+
+
+def _hinge_rows(page: Page, given: Inputs, sums: list[Cells]) -> list[Cells]:
+    """Write the mass and first moments that count for each hinge: what balances about the other one."""
+    z1, z2, made = given.hinge_1.si, given.hinge_2.si, []
+    for hinge, far, other, span in (("1", "2", z2, f"({z1}-{z2})"), ("2", "1", z1, f"({z2}-{z1})")):
+        for label, symbol, unit, across, along, (high, low) in SHARES:
+            rule = f"({high} − z_{far} {low}) / (z_{hinge} − z_{far})"
+            text = f"{label} that counts for hinge {hinge}", f"{symbol}{hinge}}}", unit, rule
+            cells = [f"({sums[across][k]}-{other}*{sums[along][k]})/{span}" for k in (0, 2)]
+            made.append(_sum_row(page, text, *cells))
+    return made
 
 
 def _drive_shares(page: Page, given: Inputs) -> tuple[str, str]:
@@ -256,7 +235,7 @@ def _drive_shares(page: Page, given: Inputs) -> tuple[str, str]:
     return cells[0], cells[1]
 
 
-def _sum_row(page: Page, text: tuple[str, str, str, str], empty: str, whole: str) -> tuple[str, str, str]:
+def _sum_row(page: Page, text: tuple[str, str, str, str], empty: str, whole: str) -> Cells:
     label, symbol, unit, note = text
     page.put(2, label, "RS label")
     page.put(3, rich(symbol, 10, italic=True, serif=True), "RS symbol")

@@ -59,13 +59,16 @@ INDENT = Alignment(horizontal="left", indent=1, **_MIDDLE)
 
 
 def _styles() -> dict[str, dict[str, Any]]:
-    input_box = _box("medium")
+    return _page_styles() | _input_styles() | _result_styles()
+
+
+def _page_styles() -> dict[str, dict[str, Any]]:
+    """Titles, headings, labels and prose."""
     return {
         "RS title": {"font": _font(17, bold=True, color=RULE), "alignment": LEFT},
         "RS line": {"font": _font(9, color=SOFT), "alignment": LEFT},
         "RS rule": {"font": _font(9), "border": Border(bottom=_side("medium", RULE))},
         "RS field name": {"font": _font(7, color=SOFT), "alignment": FOOT},
-        "RS field": {"font": _font(9), "alignment": LEFT, "fill": _fill(TINT), "border": input_box},
         "RS field shown": {"font": _font(9), "alignment": LEFT, "border": _under()},
         "RS heading": {
             "font": _font(10.5, bold=True, color=RULE),
@@ -73,9 +76,27 @@ def _styles() -> dict[str, dict[str, Any]]:
             "border": _under("thin", RULE),
         },
         "RS column": {"font": _font(7.5, color=SOFT), "alignment": CENTER},
+        "RS head": {
+            "font": _font(8, bold=True),
+            "alignment": HEAD,
+            "fill": _fill(BAND),
+            "border": Border(top=_side("thin", RULE), bottom=_side("thin", RULE)),
+        },
         "RS label": {"font": _font(), "alignment": LEFT},
         "RS mark": {"font": _font(7, color=RULE), "alignment": CENTER},
         "RS symbol": {"font": _font(10, italic=True, name=SERIF), "alignment": CENTER},
+        "RS note": {"font": _font(8, italic=True, color=SOFT), "alignment": INDENT},
+        "RS step": {"font": _font(8.5), "alignment": WRAP},
+        "RS prose": {"font": _font(8.5), "alignment": LEFT},
+        "RS status": {"font": _font(9, bold=True), "alignment": LEFT},
+    }
+
+
+def _input_styles() -> dict[str, dict[str, Any]]:
+    """Cells that a person fills in."""
+    input_box = _box("medium")
+    return {
+        "RS field": {"font": _font(9), "alignment": LEFT, "fill": _fill(TINT), "border": input_box},
         "RS input": {
             "font": _font(9.5, bold=True),
             "alignment": INNER,
@@ -96,9 +117,14 @@ def _styles() -> dict[str, dict[str, Any]]:
             "border": _box("thin"),
         },
         "RS unit": {"font": _font(9), "alignment": CENTER, "border": _box("hair", SOFT)},
+    }
+
+
+def _result_styles() -> dict[str, dict[str, Any]]:
+    """Cells that are worked out."""
+    return {
         "RS unit fixed": {"font": _font(9, color=SOFT), "alignment": LEFT},
         "RS si": {"font": _font(8.5, color=SOFT), "alignment": RIGHT, "number_format": "General"},
-        "RS note": {"font": _font(8, italic=True, color=SOFT), "alignment": INDENT},
         "RS value": {"font": _font(9), "alignment": RIGHT, "number_format": AUTO, "border": _under()},
         "RS result": {
             "font": _font(9.5, bold=True),
@@ -107,12 +133,6 @@ def _styles() -> dict[str, dict[str, Any]]:
             "border": Border(bottom=_side("thin")),
         },
         "RS text": {"font": _font(9), "alignment": LEFT, "border": _under()},
-        "RS head": {
-            "font": _font(8, bold=True),
-            "alignment": HEAD,
-            "fill": _fill(BAND),
-            "border": Border(top=_side("thin", RULE), bottom=_side("thin", RULE)),
-        },
         "RS number": {
             "font": _font(8.5),
             "alignment": RIGHT,
@@ -126,9 +146,6 @@ def _styles() -> dict[str, dict[str, Any]]:
             "border": Border(top=_side("thin", RULE)),
         },
         "RS verdict": {"font": _font(9.5, bold=True), "alignment": CENTER, "border": _box("thin")},
-        "RS step": {"font": _font(8.5), "alignment": WRAP},
-        "RS prose": {"font": _font(8.5), "alignment": LEFT},
-        "RS status": {"font": _font(9, bold=True), "alignment": LEFT},
     }
 
 
