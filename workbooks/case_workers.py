@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import gc
 import multiprocessing
 import os
 import signal
@@ -80,6 +81,7 @@ def _begin(data: bytes, table: Table, inputs: Mapping[str, object]) -> None:
     """Load the workbook in a process of its own, which leaves Ctrl-C to the one that started it."""
     global _mine
     signal.signal(signal.SIGINT, signal.SIG_IGN)
+    gc.disable()  # as in the process that started it: there are no cycles to find
     _mine = Cases(data, table, inputs)
 
 

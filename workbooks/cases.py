@@ -24,7 +24,7 @@ from .formulas import OMITTED_MARK
 from .inputs import Filled, input_cell, input_value
 from .quantities import converted, quantity, unit_in
 from .reading import Place
-from .recalc import Finder, Run, located
+from .recalc import Finder, Run, collector_paused, located
 from .report import Check, NamedResult, Report
 
 MARKS: Final = ",;\t"
@@ -260,7 +260,7 @@ class Cases:
 def opened(path: Path, table: Table, inputs: Mapping[str, object]) -> Iterator[Cases]:
     """Load a workbook for the load cases; refusals say which file is meant."""
     seen = saving.load(path)
-    with located(seen):
+    with located(seen), collector_paused():
         yield Cases(seen.data, table, inputs)
 
 
@@ -268,7 +268,7 @@ def _named(results: Sequence[NamedResult], checks: Sequence[Check]) -> dict[str,
     verdicts = {(check.sheet, check.cell) for check in checks}
     named: dict[str, tuple[Value, str]] = {}
     for one in results:
-        if (one.sheet, one.cell) in verdicts:
+        if one.checks or (one.sheet, one.cell) in verdicts:
             continue
         name = one.name if one.name not in named else f"{one.name} ({address(one.sheet, one.cell)})"
         named[name] = (one.value, one.unit)

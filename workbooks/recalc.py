@@ -118,7 +118,7 @@ def recalculate(
     """
     seen = None if isinstance(source, bytes) else saving.load(Path(source))
     data = source if isinstance(source, bytes) else (seen.data if seen is not None else b"")
-    with located(seen), _collector_paused():
+    with located(seen), collector_paused():
         target = Path(to) if to is not None else (seen.path if seen is not None else None)
         writes = (target is not None) if write is None else write
         if writes and target is None:
@@ -297,7 +297,7 @@ def _no_unit(name: str) -> int | None:
 
 
 @contextmanager
-def _collector_paused() -> Iterator[None]:
+def collector_paused() -> Iterator[None]:
     """Pause the search for reference cycles: it takes half the time of a large file and finds nothing."""
     if not gc.isenabled():
         yield

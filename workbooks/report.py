@@ -44,6 +44,7 @@ class NamedResult:
     unit: str
     sheet: str
     cell: str
+    checks: bool = False  # the formula asks RB_CHECK: a check, which may say that it is not used
 
 
 @dataclass(frozen=True)
@@ -147,7 +148,8 @@ class Report:
             if (number, ref) in self.reading.results:
                 value = self.reading.results[number, ref]
                 unit = self.unit_beside(number, ref) if isinstance(value, float) else ""
-                found.append(NamedResult(name, value, unit, self.tabs[number], ref))
+                asks = (number, ref) in self._asking
+                found.append(NamedResult(name, value, unit, self.tabs[number], ref, asks))
         return tuple(found)
 
     def unit_beside(self, number: int, ref: str) -> str:
@@ -185,6 +187,12 @@ class Report:
                 call = next((c for c in calls if c.name == "RB_CHECK"), None)
                 found.append(self._with_given(number, check, call.arguments if call is not None else []))
         return tuple(found)
+
+    @cached_property
+    def _asking(self) -> frozenset[tuple[int, str]]:
+        """Every cell whose formula calls RB_CHECK."""
+        calls = ((place, one.calls) for place, one in self.reading.prepared.analyses.items())
+        return frozenset(place for place, ours in calls if any(call.name == "RB_CHECK" for call in ours))
 
     @cached_property
     def _formulas(self) -> list[tuple[int, Sheet, FormulaCell, bool]]:

@@ -36,7 +36,7 @@ def show_report(title: str, result: Recalculation) -> None:
     rows = [
         (one.name, shown(one.value), one.unit, address(one.sheet, one.cell))
         for one in result.results
-        if (one.sheet, one.cell) not in verdicts
+        if (one.sheet, one.cell) not in verdicts and not one.checks and one.value != ""
     ]
     if rows:
         table(("result", "value", "unit", "cell"), rows, numbers=("value",))
