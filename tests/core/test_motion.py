@@ -138,7 +138,7 @@ def test_spin_sum_matches_sympy():
         np.testing.assert_allclose(found.alpha, alpha, rtol=1e-10, atol=1e-10)
 
 
-# Published examples. Origin "read": number read in a transcription; "memory": answer from memory.
+# Published examples. Origin "read": number read in a retyped copy of the book; "memory": answer from memory.
 
 
 def test_rim_of_an_accelerating_disk():

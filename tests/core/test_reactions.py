@@ -17,7 +17,7 @@ from rigidsheet.core.body import RigidBody
 from rigidsheet.core.states import Motion
 from rigidsheet.core.supports import planar_support
 
-# Published examples. Origin "read": number read in a transcription of the book.
+# Published examples. Origin "read": number read in a retyped copy of the book.
 
 
 def test_falling_rod_with_a_couple():

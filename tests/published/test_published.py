@@ -4,7 +4,7 @@ A row is a chain of steps. A step calls a function with cells or does plain arit
 `=` is arithmetic on the results of earlier steps, `$omitted` is an argument left out. Each of the row's
 `values` is compared with what the source prints, within half a unit of its last printed digit ("exact": a
 definition or a fraction). `also_holds` are relations inside the row; they are no published values and don't
-count. Origin: read in the source or a transcription of it, from memory, or a printed formula evaluated by us.
+count. Origin: read in the source or a retyped copy of it, from memory, or a printed formula evaluated by us.
 """
 
 from __future__ import annotations
