@@ -5,6 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any, Final
 
+from openpyxl.formatting.rule import Rule
+from openpyxl.styles.differential import DifferentialStyle
+from openpyxl.styles.numbers import NumberFormat
 from openpyxl.utils import get_column_letter
 
 from .bin_tipper import CASES, Case, Inputs
@@ -106,7 +109,7 @@ def _heads(page: Page, words: tuple[str, ...], units: tuple[str, ...], groups: l
     page.row += 1
     page.sheet.row_dimensions[page.row].height = 46.0
     for column, (word, unit) in enumerate(zip(words, units, strict=True), 1):
-        page.put(column, rich(word, 8), "RS head")
+        page.put(column, rich(word.replace(": ", ":\n"), 8), "RS head")
         page.put(column, unit, "RS column", row=page.row + 1)
     page.row += 2
     page.sheet.freeze_panes = page.sheet.cell(page.row, 2)
@@ -265,7 +268,7 @@ def hinge_table(book: Book, given: Inputs, work: Work, tilt: Table) -> Table:
         for k, case in enumerate(CASES):
             effort = f"${get_column_letter(EFFORT + k)}{row + shift}"
             for column, formula, form in (
-                (EFFORT + k, _effort(case, k, given, work, tilt, row), "#,##0.0"),
+                (EFFORT + k, _effort(case, k, given, work, tilt, row), "#,##0"),
                 (HINGE_1 + k, _hinge(case, work, tilt, row, effort, 1), "#,##0"),
                 (HINGE_2 + k, _hinge(case, work, tilt, row, effort, 2), "#,##0"),
             ):
@@ -275,8 +278,18 @@ def hinge_table(book: Book, given: Inputs, work: Work, tilt: Table) -> Table:
                 page.put(column, book.guarded(formula), "RS number", row=row + shift, form=form)
     page.row = table.last + 1
     _extremes(table, range(EFFORT, HINGE_2 + len(CASES)))
+    _tenths(table)
     page.row = table.look + 1
     return table
+
+
+def _tenths(table: Table) -> None:
+    """Show the torque of a motor, which is small, with one more digit than the force of a cylinder."""
+    left, right = (get_column_letter(column) for column in (EFFORT, EFFORT + len(CASES) - 1))
+    more = DifferentialStyle(numFmt=NumberFormat(numFmtId=164, formatCode="#,##0.0"))
+    rule = Rule(type="expression", dxf=more, formula=[f'${left}${table.first - 1}="N*m"'])
+    cells = f"{left}{table.first}:{right}{table.look}"
+    table.page.sheet.conditional_formatting.add(cells, rule)
 
 
 def _effort(case: Case, k: int, given: Inputs, work: Work, tilt: Table, row: int) -> str:
