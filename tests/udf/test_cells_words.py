@@ -240,3 +240,29 @@ def test_a_number_beyond_all_bounds_is_no_answer() -> None:
 def test_no_negative_zero_leaves() -> None:
     assert str(answer("RB_TORQUE", 0.0, -1.0)) == "0.0"
     assert [str(v) for v in flat("RB_TORQUE", [[0.0], [0.0]], -1.0)] == ["0.0", "0.0"]
+
+
+@pytest.mark.parametrize(
+    "value",
+    [
+        *("n/a", "N.A.", "-", "\N{EM DASH}", "...", "?", "TBD", "pending", "#N/A", "#VALUE!", "=180", "OK"),
+        *("FALSE", "(180)", "~180", "<180", "180,5", None, ""),
+    ],
+)
+def test_a_first_case_without_a_clean_value_never_passes_for_a_header(value: Any) -> None:
+    """It would vanish from the envelope, and it may be the case that governs."""
+    refused("RB_ENVELOPE", [[["jam stop", value], ["lift", 130.0], ["hold", 90.0]]], "row 1, 'jam stop'")
+
+
+@pytest.mark.parametrize("value", ["-180", "-180 N*m", "\N{MINUS SIGN}180 N*m", "+180 N*m", ".18 kN*m"])
+def test_a_first_case_with_a_number_as_text_counts(value: str) -> None:
+    unit = " N*m" if "N" in value else ""
+    cases = [["jam stop", value], ["lift", f"130{unit}"], ["hold", f"90{unit}"]]
+    assert answer("RB_ENVELOPE", cases, "governing") == "jam stop"
+
+
+@pytest.mark.parametrize("label", ["torque [N*m]", "torque (N*m)", "Torque", "[N*m]", "M2", "n"])
+def test_a_header_of_cases_is_no_case(label: str) -> None:
+    cases = [["case", label], ["lift", 130.0], ["lower", -180.0]]
+    assert answer("RB_ENVELOPE", cases, "governing") == "lower"
+    assert answer("RB_ENVELOPE", cases, "unit") == ("N*m" if "N*m" in label else "")

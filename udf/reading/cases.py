@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+import re
+from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import Any
+from typing import Any, Final
 
 import numpy as np
 from numpy.typing import NDArray
@@ -18,6 +20,12 @@ from ..units.quantities import is_unit_text, shown, wrong
 from .memory import remembered
 from .tables import TOTAL, label_and_unit
 from .words import one_amount
+
+# Texts that stand where a value is missing or was mistyped: signs, numbers, spreadsheet errors, 'n/a'.
+NO_LABEL: Final = re.compile(
+    r"[\W_]*\d|[-−–—.?*/ ]+\Z|#|=|(n\.? ?/? ?a\.?|nan|none|nil|inf|tb[acd]|pending|ok|fail|true|false)\Z",
+    re.IGNORECASE,
+)
 
 
 @dataclass(frozen=True, eq=False, slots=True)
@@ -57,9 +65,7 @@ def read_cases(argument: str, cell: Block) -> CaseValues:
     if not rows:
         raise InputError(argument, "load cases with rows; all cells are blank")
     unit = ""
-    if all(c is None or type(c) is str for c in rows[0][1]) and not any(
-        type(c) is str and c[:1].isdigit() for c in rows[0][1][1:]
-    ):
+    if _is_header(rows[0][1]):
         head = rows[0][1]
         rows = rows[1:]
         last = next((c for c in reversed(head) if type(c) is str and c.strip()), "")
@@ -86,6 +92,14 @@ def read_cases(argument: str, cell: Block) -> CaseValues:
     if twice is not None:
         raise InputError(argument, f"load cases with different names; '{twice}' stands twice")
     return in_one_unit(argument, tuple(names), np.array(numbers), units, unit)
+
+
+def _is_header(row: Sequence[Value]) -> bool:
+    """Say whether a first row names its columns; a case whose value is no number must not pass for one."""
+    if any(c is not None and type(c) is not str for c in row):
+        return False
+    labels = [c.strip() for c in row[1:] if type(c) is str and c.strip()]
+    return bool(labels) and not any(NO_LABEL.match(c) for c in labels)
 
 
 def _unit(argument: str, own: str, beside: Value, where: str) -> str:
