@@ -14,9 +14,9 @@ from .declaration import Arg, Role
 
 @dataclass(frozen=True, slots=True)
 class Upright:
-    """Three numbers below each other: x y z, or a column if the call has three rows.
+    """Numbers below each other: x y z (of an offset x y too), or a column if the call has as many rows.
 
-    `column` is what they are as a column: (3, 1) for a spin, (3, 3) along x for distances.
+    `column` is what they are as a column: (3, 1) for a spin, (n, 3) along x for distances.
     """
 
     array: Any
@@ -56,6 +56,8 @@ class Frame:
         spins, vectors = self._spins, self._vectors
         upright = [i for i in spins if type(values[i]) is Upright]
         rows = self._rows(values)
+        if upright and rows != 3:
+            self._tell_apart(values, upright[0])
         for i in upright:
             values[i] = values[i].column if rows == 3 else values[i].array
         # a tensor couples the axes: what it gives is never one number about z
@@ -80,17 +82,33 @@ class Frame:
                 values[i] = np.concatenate((np.zeros((len(v), 2)), v), axis=1)
         return values, planar
 
+    def _tell_apart(self, values: list[Any], position: int) -> None:
+        """Refuse three spins below each other where all else is planar: x y z would be a guess."""
+        if any(_is_tensor(values[i]) for i in self._tensors):
+            return
+        vectors = [values[i].shape[-1] for i in self._vectors if type(values[i]) is np.ndarray]
+        spins = [values[i] for i in self._spins]
+        spatial = 3 in vectors or any(type(s) is np.ndarray and s.shape[-1] == 3 for s in spins)
+        about_z = any(type(s) is float and s != 0.0 for s in spins)
+        if not spatial and (vectors or about_z):
+            raise InputError(
+                self._names[position],
+                "clear; three cells below each other are x y z or three cases",
+                remedy="Write x y z side by side, or hand in three rows of the other arguments too",
+            )
+
     def _offset(self, values: list[Any], position: int, rows: int) -> Any:
-        """Return three offsets below each other as what the other arguments say they are."""
+        """Return two or three offsets below each other as what the other arguments say they are."""
         upright: Upright = values[position]
         if any(_is_tensor(values[i]) for i in self._tensors):
             return upright.array
-        if rows == 3:
+        if rows == len(upright.column):
             return upright.column
+        count, axes = ("three", "x y z") if len(upright.column) == 3 else ("two", "x y")
         raise InputError(
             self._names[position],
-            "clear; three cells below each other are x y z or three distances",
-            remedy="Write x y z side by side, or hand in three rows of the other arguments too",
+            f"clear; {count} cells below each other are {axes} or {count} distances",
+            remedy=f"Write {axes} side by side, or hand in {count} rows of the other arguments too",
         )
 
     def has_columns(self, values: list[Any]) -> bool:

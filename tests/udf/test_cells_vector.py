@@ -142,8 +142,6 @@ def test_a_spin_as_one_number_is_about_z(omega: Any) -> None:
     [
         [[1.0, 2.0, 3.0]],
         [[1.0, 2.0, 3.0, "rad/s"]],
-        [[1.0], [2.0], [3.0]],
-        [[1.0], [2.0], [3.0], ["rad/s"]],
         "(1, 2, 3) rad/s",
         [["1 rad/s", 2.0, "3 rad/s"]],
     ],
@@ -151,6 +149,26 @@ def test_a_spin_as_one_number_is_about_z(omega: Any) -> None:
 def test_a_spin_as_x_y_z(omega: Any) -> None:
     # (1, 2, 3) x (2, 1, 0) = (2*0 - 3*1, 3*2 - 1*0, 1*1 - 2*2)
     assert flat("RB_VELOCITY_AT", STILL, omega, ARM) == [-3.0, 6.0, -3.0]
+
+
+UPRIGHT = ([[1.0], [2.0], [3.0]], [[1.0], [2.0], [3.0], ["rad/s"]])
+
+
+@pytest.mark.parametrize("omega", UPRIGHT)
+def test_three_spins_below_each_other_are_x_y_z_in_a_call_in_space(omega: Any) -> None:
+    assert flat("RB_VELOCITY_AT", STILL, omega, [[2.0, 1.0, 0.0]]) == [-3.0, 6.0, -3.0]
+    assert flat("RB_SPIN_SUM", omega, [[0.0, 0.0, 2.0]]) == [1.0, 2.0, 5.0]
+    assert flat("RB_SPIN_SUM", omega, omega) == [2.0, 4.0, 6.0]
+    assert flat("RB_SPIN_TORQUE", np.eye(3).tolist(), omega, 0.0) == [0.0, 0.0, 0.0]
+
+
+@pytest.mark.parametrize("omega", UPRIGHT)
+def test_three_spins_below_each_other_are_not_guessed_at_in_a_planar_call(omega: Any) -> None:
+    says = ("`omega` must be clear", "x y z or three cases", "side by side")
+    refused("RB_VELOCITY_AT", [STILL, omega, ARM], *says)
+    refused("RB_ACCELERATION_AT", [STILL, omega, [[0.0], [0.0], [0.0]], ARM], *says)
+    refused("RB_SPIN_SUM", [omega, 2.0], "`omega_1` must be clear")
+    refused("RB_MOMENT_SUM", [2.0, 3.0, ARM, 0.0, [[1.0], [2.0], [3.0]], STILL], "`alpha` must be clear")
 
 
 def test_three_spins_below_each_other_are_a_column_when_the_call_has_three_rows() -> None:
@@ -219,18 +237,23 @@ def test_an_offset_is_a_distance_or_a_vector(offset: Any, distance: float) -> No
 
 
 def test_distances_below_each_other_are_a_column() -> None:
-    assert flat("RB_SHIFT", 1.0, 2.0, [[0.1], [0.2]]) == pytest.approx([1.02, 1.08], rel=1e-14)
-    assert flat("RB_SHIFT", 1.0, 2.0, [[100.0], [200.0], ["mm"]]) == pytest.approx([1.02, 1.08], rel=1e-14)
+    pair = [[2.0], [2.0]]
+    assert flat("RB_SHIFT", 1.0, pair, [[0.1], [0.2]]) == pytest.approx([1.02, 1.08], rel=1e-14)
+    assert flat("RB_SHIFT", 1.0, pair, [[100.0], [200.0], ["mm"]]) == pytest.approx([1.02, 1.08], rel=1e-14)
     masses, distances = [[1.0], [2.0], [3.0]], [[0.1], [0.2], [0.3]]
     assert flat("RB_SHIFT", 1.0, masses, distances) == pytest.approx([1.01, 1.08, 1.27], rel=1e-14)
     assert flat("RB_SHIFT", 1.0, 1.0, [[0.1], [0.2], [0.3], [0.4]]) == pytest.approx([1.01, 1.04, 1.09, 1.16])
     assert flat("RB_SHIFT", 1.0, 2.0, [[0.3, 0.4], [0.6, 0.8]]) == pytest.approx([1.5, 3.0])
 
 
-def test_three_offsets_below_each_other_are_not_guessed_at() -> None:
+def test_two_or_three_offsets_below_each_other_are_not_guessed_at() -> None:
     refused("RB_SHIFT", [1.0, 2.0, [[0.3], [0.4], [0.5]]], "x y z or three distances", "side by side")
     refused("RB_SHIFT", [1.0, 2.0, [[0.3], [0.4], [0.5], ["m"]]], "x y z or three distances")
+    refused("RB_SHIFT", [1.0, 2.0, [[0.3], [0.4]]], "x y or two distances", "side by side")
+    refused("RB_SHIFT_BACK", [1.0, 2.0, [[300.0], [400.0], ["mm"]]], "x y or two distances")
     # for a tensor they can only be x y z
+    flat_one = answer("RB_SHIFT", np.eye(3).tolist(), 2.0, [[0.3], [0.4]])
+    assert flat_one == answer("RB_SHIFT", np.eye(3).tolist(), 2.0, [[0.3, 0.4]])
     upright = answer("RB_SHIFT", np.eye(3).tolist(), 2.0, [[0.3], [0.4], [0.5]])
     assert upright == answer("RB_SHIFT", np.eye(3).tolist(), 2.0, [[0.3, 0.4, 0.5]])
 
@@ -239,7 +262,7 @@ def test_three_offsets_below_each_other_are_not_guessed_at() -> None:
     ("offset", "says"),
     [
         (-0.5, ("of zero or more", "-0.5 m")),
-        ([[0.1], [-0.2]], ("of zero or more", "row 2")),
+        ([[0.1], [-0.2], [0.3], [0.4]], ("of zero or more", "row 2")),
         (None, ("a blank cell",)),
         ([["mm", 0.5]], ("the unit after the number",)),
         ("(0.3, x) m", ("`offset`",)),
@@ -254,7 +277,7 @@ def test_no_offset(offset: Any, says: tuple[str, ...]) -> None:
 
 def test_a_tensor_needs_a_vector() -> None:
     refused("RB_SHIFT", [np.eye(3).tolist(), 2.0, 0.5], "`offset` must be a vector x y z for a tensor")
-    refused("RB_SHIFT", [np.eye(3).tolist(), 2.0, [[0.1], [0.2]]], "`offset`")
+    refused("RB_SHIFT", [np.eye(3).tolist(), 2.0, [[0.1], [0.2], [0.3], [0.4]]], "`offset`")
 
 
 TENSOR = [[2.0, -0.1, 0.0], [-0.1, 3.0, 0.2], [0.0, 0.2, 4.0]]

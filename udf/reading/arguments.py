@@ -27,7 +27,7 @@ from ..units.quantities import (
     unit_leads,
     wrong,
 )
-from .blocks import along_x, lifted, single, tensor, three_numbers, vector_text, vectors
+from .blocks import along_x, lifted, numbers_in, single, tensor, vector_text, vectors
 from .memory import remembered
 
 
@@ -214,9 +214,9 @@ class Offset:
                     return lifted(vector(cell))
             elif type(cell) is str and cell.lstrip().startswith("("):
                 return lifted(vector(cell))
-            if type(cell) is list and len(cell[0]) == 1 and three_numbers(cell):
+            if type(cell) is list and len(cell[0]) == 1 and numbers_in(cell) in (2, 3):
                 upright = Scalar(kind).reader(argument, None)(cell)
-                return Upright(upright, along_x(upright))
+                return Upright(lifted(upright), along_x(upright))
             value = distance(cell)
             return value if type(value) is float else along_x(value)
 

@@ -148,9 +148,9 @@ def parts_with_units(argument: str, kind: Kind, cells: Sequence[Value], units: S
     )
 
 
-def three_numbers(cell: Block) -> bool:
-    """Say whether a column holds three numbers, perhaps with their unit first or last."""
-    return len(cell) == 3 + (is_unit_text(cell[-1][0]) or is_unit_text(cell[0][0]))
+def numbers_in(cell: Block) -> int:
+    """Return how many numbers a column holds, perhaps with their unit first or last."""
+    return len(cell) - (is_unit_text(cell[-1][0]) or is_unit_text(cell[0][0]))
 
 
 def along_x(distances: Array) -> Array:
