@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import signal
 import sys
 
 import pytest
@@ -14,6 +15,12 @@ settings.register_profile(
     "long", deadline=None, max_examples=1000, suppress_health_check=[HealthCheck.too_slow]
 )
 settings.load_profile("usual")
+
+
+def pytest_configure(config: pytest.Config) -> None:
+    """Listen to Ctrl-C: started in the background of a script, this process and its children would be deaf to it."""
+    if signal.getsignal(signal.SIGINT) is signal.SIG_IGN:
+        signal.signal(signal.SIGINT, signal.default_int_handler)
 
 
 def pytest_sessionfinish(session: pytest.Session, exitstatus: int) -> None:
