@@ -312,7 +312,9 @@ def _check_one_sided(reactions: Sequence[Reaction], scale: float) -> None:
         "",
         f"Support {short_name(worst.support)} can only {way}, but the balance needs it to {other} with "
         f"{-worst.value:.6g} N: {fate}{also}",
-        remedy="Use slot if it holds both ways, else leave it out" if way == "push" else "",
+        remedy="Check the direction of its force; use slot if it holds both ways, else leave it out"
+        if way == "push"
+        else "Check where its anchor is",
     )
 
 

@@ -202,7 +202,14 @@ REFUSED: dict[str, tuple[Rows, tuple[str, ...]]] = {
         ("x is blank", "Type 0", "(row 2, 'a')"),
     ),
     "half a piece": ([HEADER, ["a", 1.5, "point", 1.0, 0.0, 0.0, 0.0]], ("whole numbers as qty", "1.5")),
-    "no piece": ([HEADER, ["a", 0.0, "point", 1.0, 0.0, 0.0, 0.0]], ("whole numbers as qty", "0")),
+    "no piece": (
+        [HEADER, ["a", 0.0, "point", 1.0, 0.0, 0.0, 0.0]],
+        ("whole numbers as qty, none of them 0", "got 0", "all cells of the row blank", "(row 2, 'a')"),
+    ),
+    "a weight": (
+        [["part", "shape", "weight [kg]", "x [m]", "y [m]"], ["a", "point", 1.0, 0.0, 0.0]],
+        ("'weight [kg]'", "Write 'mass'"),
+    ),
     "pieces without a pattern": (
         [HEADER, ["a", 2.0, "point", 1.0, 0.0, 0.0, 0.0]],
         ("`pattern`", "'one place'"),
@@ -297,3 +304,24 @@ def test_a_point_of_no_kind_and_a_record_about_another_point_are_refused() -> No
     rows: Rows = [HEADER, ["a", 1.0, "point", 1.0, 0.0, 0.0, 0.0]]
     refused("RB_ROLLUP", [rows, "Izz", "datum"], "`about`", "'mass center' / 'origin'", "'datum'")
     refused("RB_ROLLUP", [rows, "all", "origin"], "`what`", "a body's record is about its mass center")
+
+
+def test_a_measured_tensor_too_small_for_the_origin_is_refused_as_such() -> None:
+    """A point of 1 kg at x = 2 m has Iyy = Izz = 4 kg m^2 about the origin; 1.01 belongs to x = 1 m."""
+    table = [
+        [
+            "part",
+            "mass [kg]",
+            *(f"{k} [m]" for k in "xyz"),
+            "Ixx [kg*m^2]",
+            "Iyy [kg*m^2]",
+            "Izz [kg*m^2]",
+            "about",
+        ],
+        ["motor", 1.0, 2.0, 0.0, 0.0, 0.04, 1.01, 1.05, "origin"],
+    ]
+    refused(
+        "RB_ROLLUP", [table], "too small to be about the origin", "would be -2.9", "'motor'", error="#NUM!"
+    )
+    table[1][2] = 1.0
+    assert answer("RB_ROLLUP", table, "Iyy") == pytest.approx(0.01, rel=1e-12)

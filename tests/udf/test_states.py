@@ -336,3 +336,12 @@ NOT_HELD: dict[str, tuple[Rows, tuple[str, ...], str]] = {
 @pytest.mark.parametrize(("rows", "says", "error"), NOT_HELD.values(), ids=NOT_HELD)
 def test_supports_are_refused(rows: Rows, says: tuple[str, ...], error: str) -> None:
     not_held(rows, *says, error=error)
+
+
+def test_a_refused_support_in_space_names_the_columns_to_fill() -> None:
+    body = "mass 80 kg; center (1.2, 0, 0.6) m; Ixx 10 kg*m^2; Iyy 20 kg*m^2; Izz 30 kg*m^2"
+    motion = "omega 0; alpha 0; gravity (0, 0, -9.8) m/s^2; fixed point (0, 0, 0) m"
+    head = ["support", "type", "x [m]", "y [m]", "z [m]"]
+    for kind, says in (("bearing", "columns are along x, along y"), ("held", "`holds` must be one or more")):
+        table = [head, ["post", kind, 0.0, 0.0, 0.0]]
+        refused("RB_REACTIONS_3D", [body, motion, "none", table], says, "'post'")

@@ -239,7 +239,12 @@ FUNCTIONS = (
         group=GROUP,
         line="Moment of inertia from a flywheel moment GD2 as catalogs print it: J = GD2 / 4.",
         args=(
-            Arg("gd2", Scalar(kinds.GD2), "flywheel moment with D the diameter of gyration", NOT_NEGATIVE),
+            Arg(
+                "gd2",
+                Scalar(kinds.GD2),
+                "flywheel moment, D the diameter of gyration; WR2 or WK2 is the inertia itself, in lb*ft^2",
+                NOT_NEGATIVE,
+            ),
         ),
         result=Result((Field("inertia", kinds.INERTIA, "moment of inertia"),)),
         kernel=drives.inertia_from_gd2,

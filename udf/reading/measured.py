@@ -6,7 +6,7 @@ from typing import Final
 
 import numpy as np
 
-from ...core.errors import InputError
+from ...core.errors import InputError, PhysicsError
 from ...core.tensors import shift_to_center
 from ..units.quantities import Array, folded, shown
 from .bodies import INTEGRALS, MOMENTS, PRODUCT_WORDS, PRODUCTS, TENSOR_TERMS, products_form, tensor_of
@@ -21,6 +21,19 @@ def word_of(argument: str, table: dict[str, str], text: str, rule: str, where: s
     if found is None:
         raise InputError(argument, f"{rule}; got {shown(text)}", where=where)
     return found
+
+
+def _possible_at(tensor: Array, where: str) -> None:
+    """Refuse a tensor that has less about the origin than its mass alone gives there."""
+    worst = int(np.argmin(np.diag(tensor)))
+    if tensor[worst, worst] < -1e-3 * float(np.abs(tensor).max()):
+        raise PhysicsError(
+            "",
+            f"The measured tensor is too small to be about the origin: {MOMENTS[worst]} about the mass center "
+            f"would be {tensor[worst, worst]:.6g} kg*m^2",
+            remedy="Check `about`, the mass and x, y, z",
+            where=where,
+        )
 
 
 def fill_measured(data: TableData, i: int, masses: Array, tensors: Array) -> None:
@@ -60,4 +73,5 @@ def fill_measured(data: TableData, i: int, masses: Array, tensors: Array) -> Non
     if word_of("about", table, about, "'mass center' or 'origin'", where) == "origin":
         place = np.array([data.numbers(k)[i] for k in XYZ])
         tensor = shift_to_center(tensor, masses[i], np.where(np.isnan(place), 0.0, place))
+        _possible_at(tensor, where)
     tensors[i] = tensor

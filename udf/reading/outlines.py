@@ -31,7 +31,7 @@ LOOPS: Final = Table(
         Column("y", kinds.LENGTH, "corner, or center of a round hole", required=True),
         Column("D", kinds.LENGTH, "diameter of a round hole", also=("dia", "diameter"), limit=POSITIVE),
     ),
-    what="outline",
+    what="plate outline",
     example=(
         ("loop", "x [mm]", "y [mm]"),
         ("outline", 0.0, 0.0),

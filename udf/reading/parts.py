@@ -186,7 +186,10 @@ def _read(data: TableData, assembly: Callable[[int], RigidBody]) -> PartsList:
     qty = np.where(np.isnan(qty), 1.0, qty)
     for i in indices((qty != np.round(qty)) | (qty == 0.0)):
         raise InputError(
-            "parts", f"a parts list with whole numbers as qty; got {qty[i]:.6g}", where=data.where(i)
+            "parts",
+            f"a parts list with whole numbers as qty, none of them 0; got {qty[i]:.6g}",
+            remedy="Leave all cells of the row blank for a part that is not there" if qty[i] == 0.0 else "",
+            where=data.where(i),
         )
     masses, tensors, offsets = _own(data, assembly)
     rotation = _rotations(data)

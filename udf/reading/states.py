@@ -307,6 +307,12 @@ SUPPORTS_3D: Final = Table(
     finish=lambda argument, data: finish_supports(data, planar=False),
 )
 
+# What a refusal of the core speaks of, by the columns that were typed.
+_AS_COLUMNS: Final = {
+    "direction": ("along", "Its columns are along x, along y, along z"),
+    "components": ("holds", "Write them in a column 'holds', like fx fy fz"),
+}
+
 
 def _kind_word(data: TableData, i: int, known: Sequence[str]) -> str:
     text = folded(data.texts("type")[i])
@@ -373,8 +379,9 @@ def finish_supports(data: TableData, planar: bool) -> SupportsRead:
                     components=_components(data, i),
                 )
         except InputError as refused:
+            argument, remedy = _AS_COLUMNS.get(refused.argument, (refused.argument, ""))
             raise InputError(
-                refused.argument, refused.rule, refused.value, remedy=refused.remedy, where=data.where(i)
+                argument, refused.rule, refused.value, remedy=refused.remedy or remedy, where=data.where(i)
             ) from None
     types = map(folded, data.texts("type"))
     return SupportsRead(tuple(holds), dict(zip(data.labels, types, strict=True)))

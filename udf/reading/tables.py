@@ -206,6 +206,13 @@ class Table:
     def _lookalike(self, argument: str, head: str, label: str) -> None:
         """Refuse an unknown header that begins like a column of numbers, which must not be passed over."""
         first = folded(re.split(r"[\s,;:/(]", label.strip(), maxsplit=1)[0])
+        if first in ("weight", "wt", "wt.") and any(c.label == "mass" for c in self.columns):
+            raise InputError(
+                argument,
+                f"a {self.what} with known columns; got {shown(head)}",
+                remedy="Write 'mass', with kg or lb; a weight in N is to be divided by g first",
+                where="row 1",
+            )
         alike = [
             n
             for c in (*self.columns, *self.more.values())
