@@ -123,6 +123,8 @@ def _forces(points: Points, given: Inputs, tilt: Table, looked: Looked, phi: str
         points.arrow(name, tail, (f"({fx})*{scale}", f"({fy})*{scale}"), color=color)
         tip = (f"({tail[0]})+({fx})*{scale}", f"({tail[1]})+({fy})*{scale}")
         side = "l" if name == "hinges" else "r"
+        if name == "hinges":  # a cylinder makes this arrow short, and the table covers it
+            tip = (f"IF({cylinder},-0.08*{reach},{tip[0]})", f"IF({cylinder},-0.1*{reach},{tip[1]})")
         points.label(f'"{name} "&ROUND({amount},0)&" N"', tip, color=color, side=side)
     u, v = tilt.cell(ALONG_X, row), tilt.cell(ALONG_Y, row)  # in the table's own axes
     along = f"({u}*COS({phi})-{v}*SIN({phi}))", f"({u}*SIN({phi})+{v}*COS({phi}))"
@@ -143,5 +145,6 @@ def _forces(points: Points, given: Inputs, tilt: Table, looked: Looked, phi: str
     drive = (
         f'IF({cylinder},"cylinder "&ROUND({looked.effort},0)&" N","drive "&ROUND({looked.torque},0)&" N*m")'
     )
-    place = (f"IF({cylinder},{x},-0.5*{reach})", f"IF({cylinder},{y},-0.34*{reach})")
+    middle = f"({frame[0]}+{x})/2", f"({frame[1]}+{y})/2"
+    place = (f"IF({cylinder},{middle[0]},-0.5*{reach})", f"IF({cylinder},{middle[1]},-0.34*{reach})")
     points.label(drive, place, color=RULE)
