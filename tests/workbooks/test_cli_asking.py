@@ -8,6 +8,7 @@ import re
 import pytest
 from command_line import refused, run
 
+from rigidsheet.core.shapes import SHAPES
 from rigidsheet.udf.catalogue import FUNCTIONS, GROUPS
 from rigidsheet.udf.compiling import arguments_of
 
@@ -35,6 +36,29 @@ def test_full_help_of_every_function(name: str) -> None:
         assert argument.name in text
     for field in f.result.fields:
         assert field.name in text
+
+
+@pytest.mark.parametrize("name", list(FUNCTIONS))
+def test_full_help_lists_all_that_a_table_or_record_takes(name: str) -> None:
+    text = " ".join(run("functions", name).output.split())
+    for argument in arguments_of(FUNCTIONS[name]):
+        lines = getattr(argument.shape, "columns", None) or getattr(argument.shape, "entries", ())
+        for line in lines:
+            assert f"{line.label} " in text
+            assert " ".join(line.help.split()) in text
+            assert all(other in text for other in line.also)
+
+
+@pytest.mark.parametrize("name", ["RB_SHAPE", "RB_SHAPE_MASS"])
+def test_full_help_of_shapes_tells_sizes_datum_and_axis(name: str) -> None:
+    output = run("functions", name).output
+    text = " ".join(output.split())
+    for shape in SHAPES.values():
+        assert f" {shape.name} " in text
+        assert shape.datum in text
+        assert all(size.label in text for size in shape.sizes)
+    assert "slender rod L, [R/D]. Datum at mid-length. Length along z." in text
+    assert "thin tube D/R (mean), L, [t]." in text
 
 
 def test_functions_with_a_word() -> None:

@@ -265,14 +265,15 @@ def _load_row(
 
 _SUPPORT_PLACE = tuple(Column(k, kinds.LENGTH, f"where it holds the body, along {k}") for k in "xyz")
 _FAR = tuple(Column(f"to {k}", kinds.LENGTH, f"far end of a cable or link, along {k}") for k in "xyz")
-_NAMING = (
-    Column("support", None, "name", also=("name",), required=True),
-    Column("type", None, "kind of support", also=("kind",), required=True),
+_NAME = Column("support", None, "name", also=("name",), required=True)
+_ONE_WAY = (
+    "roller (pushes only), slot (both ways), cable (pulls only), link (tension +), fixed, drive (a couple)"
 )
 
 SUPPORTS: Final = Table(
     columns=(
-        *_NAMING,
+        _NAME,
+        Column("type", None, f"pin, {_ONE_WAY}", also=("kind",), required=True),
         *_SUPPORT_PLACE[:2],
         Column("angle", kinds.ANGLE, "direction of the force on the body, from x, ccw +"),
         *_FAR[:2],
@@ -288,7 +289,10 @@ SUPPORTS: Final = Table(
 
 SUPPORTS_3D: Final = Table(
     columns=(
-        *_NAMING,
+        _NAME,
+        Column(
+            "type", None, f"ball, bearing, thrust bearing, hinge, held, {_ONE_WAY}", ("kind",), required=True
+        ),
         *_SUPPORT_PLACE,
         *(
             Column(f"along {k}", kinds.RATIO, f"{k} part of the direction of its force or axis")

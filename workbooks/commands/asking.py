@@ -12,6 +12,7 @@ from ..printing import heading, table
 from .ending import ERROR, Refused, say
 
 if TYPE_CHECKING:
+    from rigidsheet.core.shapes.record import Shape
     from rigidsheet.udf.declaration import Arg, CellFunction, Field
 
 WIDEST: Final = 100
@@ -70,6 +71,8 @@ def _help(f: CellFunction) -> None:
         if _form(a) not in ("text", a.help):
             _wrapped(" " * width, _form(a))
     click.echo()
+    for a in arguments:
+        _details(a)
     heading("Result")
     if f.result.open:
         click.echo("  Rows of label, value and unit; among them:")
@@ -83,6 +86,45 @@ def _help(f: CellFunction) -> None:
         click.echo(f"  {example.formula}")
         _wrapped("   ", example.says)
     click.echo(f"\nA bare number is in the unit named in brackets. Group: {f.group}.")
+
+
+def _details(argument: Arg) -> None:
+    """Print what the lines of a table, of a record or of a list of shapes may be."""
+    from rigidsheet.core.shapes import SHAPES
+    from rigidsheet.udf.reading.records import Record
+    from rigidsheet.udf.reading.sizes import Sizes
+    from rigidsheet.udf.reading.tables import Table, header_of
+
+    shape = argument.shape
+    if isinstance(shape, Table):
+        heading(f"Columns of {argument.name}, in any order")
+        lines = [(header_of(c), c.help, c.also) for c in shape.columns]
+        if shape.more:
+            lines.append(("sizes by label", "as OD [mm], L [mm]: see rigidsheet functions RB_SHAPE", ()))
+    elif isinstance(shape, Record) and shape.entries:
+        heading(f"Lines of {argument.name}: label, value, unit")
+        lines = [(e.label, e.help, e.also) for e in shape.entries]
+    elif isinstance(shape, Sizes):
+        heading("Shapes, with their sizes")
+        lines = [(s.name, f"{_sizes(s)}. {s.datum}", s.aliases) for s in SHAPES.values()]
+    else:
+        return
+    width = max(len(label) for label, _, _ in lines)
+    for label, meaning, others in lines:
+        also = [word for word in others if word != meaning]
+        _wrapped(label.ljust(width), meaning + (f" (also: {', '.join(also)})" if also else ""))
+    click.echo()
+
+
+def _sizes(shape: Shape) -> str:
+    """Return the sizes of a shape by their labels, what they may be replaced by behind a slash."""
+    words = [
+        "/".join([*(o.label for o in size.alternatives), size.label])
+        + (" (mean)" if size.help.startswith("mean") else "")
+        for size in shape.sizes
+    ]
+    optional = [f"[{w}]" if s.for_density else w for w, s in zip(words, shape.sizes, strict=True)]
+    return ", ".join(optional) if optional else "No size"
 
 
 def _wrapped(lead: str, text: str) -> None:
