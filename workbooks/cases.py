@@ -15,12 +15,12 @@ from typing import Any, Final, TypeAlias
 from rigidsheet.core.errors import InputError, RigidsheetError
 from rigidsheet.udf.cells import OMITTED, CellError, Refusal, Value
 
-from . import saving
 from .addresses import row_column
-from .calls import Function
-from .engine import Sheets
 from .errors import FileRefused, InputRefused, address
-from .formulas import OMITTED_MARK
+from .evaluation.calls import Function
+from .evaluation.engine import Sheets
+from .evaluation.formulas import OMITTED_MARK
+from .files import saving
 from .inputs import Filled, input_cell, input_value
 from .quantities import converted, quantity, unit_in
 from .reading import Place

@@ -7,12 +7,12 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from .addresses import Area, cell_name, size
-from .builtins import VERIFIED_FUNCTIONS
 from .errors import address
-from .formulas import Analysis, Argument, Call
+from .evaluation.builtins import VERIFIED_FUNCTIONS
+from .evaluation.formulas import Analysis, Argument, Call
+from .files.sheetxml import FormulaCell
 from .quantities import is_si_unit, quantity
 from .reading import Reading
-from .sheetxml import FormulaCell
 
 
 @dataclass(frozen=True)

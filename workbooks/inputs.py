@@ -9,13 +9,13 @@ from collections.abc import Iterable, Mapping
 from rigidsheet.udf.cells import Value
 
 from .addresses import cell_name, row_column, size
-from .book import Book
-from .enginecopy import Prepared, sheet_of, target_of
 from .errors import InputRefused, address
+from .evaluation.enginecopy import Prepared, sheet_of, target_of
+from .files.book import Book
+from .files.sheetxml import Sheet, scan, splice
+from .files.writeback import insertions, plain_cell_edits
 from .quantities import converted, quantity, unit_in
 from .reading import Reading
-from .sheetxml import Sheet, scan, splice
-from .writeback import insertions, plain_cell_edits
 
 
 class Filled(Reading):

@@ -10,13 +10,13 @@ from typing import Final, TypeVar
 from rigidsheet.udf.cells import CellError, Value
 
 from .addresses import Area, area, cell_name, row_column
-from .book import Book
-from .cellxml import plain_text
-from .enginecopy import Prepared, sheet_of, target_of
-from .formulas import Use
-from .sheetxml import Sheet, element_end, tag_end, unescape
-from .writeback import cached_text
-from .xmlparts import elements, whole
+from .evaluation.enginecopy import Prepared, sheet_of, target_of
+from .evaluation.formulas import Use
+from .files.book import Book
+from .files.cellxml import plain_text
+from .files.sheetxml import Sheet, element_end, tag_end, unescape
+from .files.writeback import cached_text
+from .files.xmlparts import elements, whole
 
 _DATES: Final = frozenset([*range(14, 23), *range(27, 37), *range(45, 48), *range(50, 59)])
 _NOT_CODE: Final = re.compile(r'"[^"]*"|\\.|_.|\*.|\[(?!h+\]|m+\]|s+\])[^\]]*\]', re.IGNORECASE)

@@ -16,21 +16,21 @@ from typing import Any, Final, TypeAlias
 
 from rigidsheet.udf.cells import CellError, Value
 
-from . import package as packages
-from . import saving
 from .addresses import Area, size
-from .book import describe
-from .calls import TEXT_LIMIT, Calls, Function
 from .cautions import Caution, cautions, open_elsewhere
-from .engine import Engine, Formualizer, Sheets
-from .enginecopy import Preparation, Prepared, frame_cells
 from .errors import FileRefused, FormulaRefused
-from .formulas import resolver
+from .evaluation.calls import TEXT_LIMIT, Calls, Function
+from .evaluation.engine import Engine, Formualizer, Sheets
+from .evaluation.enginecopy import Preparation, Prepared, frame_cells
+from .evaluation.formulas import resolver
+from .files import package as packages
+from .files import saving
+from .files.book import describe
+from .files.sheetxml import FormulaCell, Sheet, scan
+from .files.writeback import written
 from .inputs import with_inputs
 from .reading import Reading
 from .report import CellFailure, Check, NamedResult, Report
-from .sheetxml import FormulaCell, Sheet, scan
-from .writeback import written
 
 # Returns one of the cell functions by its name.
 Finder: TypeAlias = Callable[[str], "Function | None"]

@@ -12,12 +12,12 @@ from typing import Final, TypeAlias
 from rigidsheet.udf.cells import CellError, Refusal, Value
 
 from .addresses import cell_name, row_column, size
-from .enginecopy import target_of
 from .errors import address
-from .formulas import Argument
+from .evaluation.enginecopy import target_of
+from .evaluation.formulas import Argument
+from .files.sheetxml import FormulaCell, Sheet
 from .quantities import common_unit_in, unit_in
 from .reading import Place, Reading
-from .sheetxml import FormulaCell, Sheet
 
 
 @dataclass(frozen=True)

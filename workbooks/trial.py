@@ -17,7 +17,7 @@ from rigidsheet.udf.declaration import WHAT
 
 from .addresses import cell_name
 from .errors import FileRefused
-from .formulas import Analysis, analyse, resolver
+from .evaluation.formulas import Analysis, analyse, resolver
 from .recalc import Recalculation, Run
 
 SHEET: Final = "Formula"

@@ -8,7 +8,7 @@ from decimal import ROUND_HALF_EVEN, Context, Decimal
 from hypothesis import example, given, settings
 from hypothesis import strategies as st
 
-from rigidsheet.workbooks.operators import compare
+from rigidsheet.workbooks.evaluation.operators import compare
 
 FIFTEEN = Context(prec=15, rounding=ROUND_HALF_EVEN)
 NUMBERS = st.floats(allow_nan=False, allow_infinity=False)

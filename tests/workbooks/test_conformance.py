@@ -7,9 +7,9 @@ import pytest
 import workbook_parts as parts
 
 from rigidsheet.workbooks import recalculate
-from rigidsheet.workbooks.builtins import VERIFIED_FUNCTIONS
 from rigidsheet.workbooks.errors import FormulaRefused
-from rigidsheet.workbooks.formulas import analyse, resolver
+from rigidsheet.workbooks.evaluation.builtins import VERIFIED_FUNCTIONS
+from rigidsheet.workbooks.evaluation.formulas import analyse, resolver
 
 DATA = parts.sheet(parts.rows({ref: parts.cell(ref, value) for ref, value in conformance.DATA.items()}))
 

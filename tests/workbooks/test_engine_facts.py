@@ -15,10 +15,10 @@ import workbook_parts as parts
 
 from rigidsheet.udf.cells import OMITTED, CellError, Refusal
 from rigidsheet.workbooks import recalculate
-from rigidsheet.workbooks.calls import gate
-from rigidsheet.workbooks.engine import Formualizer
 from rigidsheet.workbooks.errors import FileRefused, FormulaRefused, UnknownFunction
-from rigidsheet.workbooks.operators import compare
+from rigidsheet.workbooks.evaluation.calls import gate
+from rigidsheet.workbooks.evaluation.engine import Formualizer
+from rigidsheet.workbooks.evaluation.operators import compare
 
 VALUE = CellError("#VALUE!")
 

@@ -16,7 +16,7 @@ from hypothesis import strategies as st
 
 from rigidsheet.workbooks import recalculate
 from rigidsheet.workbooks.errors import FormulaRefused, address
-from rigidsheet.workbooks.formulas import analyse, resolver, shifted
+from rigidsheet.workbooks.evaluation.formulas import analyse, resolver, shifted
 
 FUNCTIONS: dict[str, Any] = {"RB_X": lambda x=0.0, *_: x if isinstance(x, float) else 0.5}
 SHEETS = [

@@ -16,8 +16,9 @@ from typing import Any
 import pytest
 import workbook_parts as parts
 
-from rigidsheet.workbooks import recalculate, saving
+from rigidsheet.workbooks import recalculate
 from rigidsheet.workbooks.errors import FileChanged, FileRefused
+from rigidsheet.workbooks.files import saving
 
 BOOK = parts.workbook({"S": {"A1": "=1+1", "B1": "=RB_X()"}})
 

@@ -340,7 +340,7 @@ def test_the_filled_form_has_no_warning_and_a_second_run_changes_no_byte() -> No
 
 
 def test_only_built_ins_with_check_values_and_no_array_formula_or_boolean() -> None:
-    from rigidsheet.workbooks.builtins import VERIFIED_FUNCTIONS
+    from rigidsheet.workbooks.evaluation.builtins import VERIFIED_FUNCTIONS
 
     used = set()
     for sheet in BOOK:

@@ -19,7 +19,7 @@ from openpyxl.worksheet.formula import ArrayFormula
 
 from rigidsheet.udf.cells import CellError, Refusal
 from rigidsheet.workbooks import Recalculation, recalculate
-from rigidsheet.workbooks.writeback import CALC_VERSION
+from rigidsheet.workbooks.files.writeback import CALC_VERSION
 
 FUNCTIONS: dict[str, Any] = {
     "RB_X": lambda *cells: 1.5,

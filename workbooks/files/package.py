@@ -7,7 +7,7 @@ import zipfile
 from dataclasses import dataclass
 from typing import Final
 
-from .errors import FileRefused
+from ..errors import FileRefused
 
 MEMBERS: Final = 10_000  # parts in a package; large workbooks have some hundreds
 TOTAL: Final = 600_000_000  # unpacked bytes of all parts together

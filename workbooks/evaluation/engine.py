@@ -7,7 +7,7 @@ from typing import Any, Final, Protocol, TypeAlias
 
 from rigidsheet.udf.cells import Block, Cell, CellError, Value
 
-from .errors import FileRefused
+from ..errors import FileRefused
 
 # Gets the arguments as cells; gives a value or a block. An error is a CellError.
 Callback: TypeAlias = Callable[..., "Value | Block"]

@@ -9,7 +9,7 @@ import tempfile
 from dataclasses import dataclass
 from pathlib import Path
 
-from .errors import FileChanged, FileRefused
+from ..errors import FileChanged, FileRefused
 
 
 @dataclass(frozen=True)

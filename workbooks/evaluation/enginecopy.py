@@ -11,15 +11,15 @@ from dataclasses import dataclass, field
 from typing import Final
 from xml.sax.saxutils import escape, quoteattr
 
-from .addresses import Area, area, cell_name, size
-from .book import Book, DefinedName
+from ..addresses import Area, area, cell_name, size
+from ..errors import FormulaRefused, UnknownFunction
+from ..files.book import Book, DefinedName
+from ..files.cellxml import typed_tag
+from ..files.sheetxml import FormulaCell, Sheet, splice, tag_end
 from .builtins import WEAK_FUNCTIONS
 from .calls import FIT
-from .cellxml import typed_tag
 from .engine import Engine
-from .errors import FormulaRefused, UnknownFunction
 from .formulas import CALLER_MARK, NAME_MARK, Analysis, Resolver, analyse, canonical, shifted
-from .sheetxml import FormulaCell, Sheet, splice, tag_end
 
 _ABSOLUTE: Final = re.compile(
     r"(?P<where>'(?:[^']|'')+'|[^\s'!:\[\]]+)!"

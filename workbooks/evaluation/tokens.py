@@ -6,7 +6,7 @@ import re
 from collections.abc import Callable, Iterator
 from typing import Final, TypeAlias
 
-from .addresses import COLUMNS, ROWS, column_letters, column_number
+from ..addresses import COLUMNS, ROWS, column_letters, column_number
 
 # A function name as the file spells it -> the name of one of our functions, or None.
 Resolver: TypeAlias = Callable[[str], str | None]

@@ -7,8 +7,8 @@ from collections.abc import Iterable
 from dataclasses import dataclass, field
 from typing import Final
 
-from .addresses import Area, area, cell_name, row_column
-from .errors import FileRefused
+from ..addresses import Area, area, cell_name, row_column
+from ..errors import FileRefused
 from .xmlparts import SHEET_SPACES, parse, parser, whole
 
 _TAG: Final = re.compile(rb"<[^\"'>]*(?:\"[^\"]*\"[^\"'>]*|'[^']*'[^\"'>]*)*>")

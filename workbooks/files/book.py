@@ -5,7 +5,7 @@ from __future__ import annotations
 import posixpath
 from dataclasses import dataclass, field
 
-from .errors import FileRefused
+from ..errors import FileRefused
 from .package import Package
 from .xmlparts import elements, truth
 

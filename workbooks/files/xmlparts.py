@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from xml.parsers import expat
 
-from .errors import FileRefused
+from ..errors import FileRefused
 
 SHEET_SPACES = (
     "http://schemas.openxmlformats.org/spreadsheetml/2006/main",

@@ -8,7 +8,7 @@ from typing import Final
 
 from rigidsheet.udf.cells import CellError, Value
 
-from .errors import FileRefused
+from ..errors import FileRefused
 
 _CONTROL: Final = re.compile("[\x00-\x08\x0b\x0c\x0e-\x1f\ufffe\uffff]|_(?=x[0-9A-Fa-f]{4}_)")
 _ESCAPED: Final = re.compile("_x([0-9A-Fa-f]{4})_")

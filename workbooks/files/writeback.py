@@ -9,11 +9,11 @@ from typing import Final
 
 from rigidsheet.udf.cells import CellError, Value
 
-from .addresses import row_column
+from ..addresses import row_column
+from ..errors import FileRefused
+from ..evaluation.enginecopy import Prepared, frame_cells
 from .book import Book
 from .cellxml import plain_text, typed_tag, value_xml
-from .enginecopy import Prepared, frame_cells
-from .errors import FileRefused
 from .package import write
 from .sheetxml import FormulaCell, Sheet, element_end, splice, tag_end, unescape
 from .xmlparts import elements, truth

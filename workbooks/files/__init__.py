@@ -1,0 +1,1 @@
+"""Reading a workbook file as a package of parts, and writing values back into it."""
