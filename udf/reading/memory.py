@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
+import functools
 from collections.abc import Mapping
 from itertools import chain
 from typing import Any, Final
@@ -49,6 +50,12 @@ def key_of(cell: Cell) -> Any:
     return None if bool in set(map(type, flat)) else (len(cell), flat)
 
 
+@functools.lru_cache(maxsize=256)
+def field_names(kind: type) -> tuple[str, ...]:
+    """Return the names of the fields of a record, none for what is no record."""
+    return tuple(f.name for f in dataclasses.fields(kind)) if dataclasses.is_dataclass(kind) else ()
+
+
 def locked(value: Any) -> Any:
     """Return a reading whose arrays cannot be written to, as the next call shall find it unchanged."""
     if isinstance(value, np.ndarray):
@@ -56,7 +63,7 @@ def locked(value: Any) -> Any:
     elif isinstance(value, Mapping):
         for part in value.values():
             locked(part)
-    elif dataclasses.is_dataclass(value):
-        for field in dataclasses.fields(value):
-            locked(getattr(value, field.name))
+    else:
+        for name in field_names(type(value)):
+            locked(getattr(value, name))
     return value

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import difflib
+import functools
 import re
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, field
@@ -26,6 +27,7 @@ ROUND: Final = re.compile(r"\s*(.*?)\s*\(\s*([^()]*(?:\([^()]*\)[^()]*)*?)\s*\)\
 TOTAL: Final = re.compile(r"(grand |sub)?-?\s*(total|sum)s?\b[\s:=]*\Z", re.IGNORECASE)
 
 
+@functools.lru_cache(maxsize=4096)
 def label_and_unit(text: str) -> tuple[str, str | None]:
     """Split 'mass [kg]' or 'mass (kg)' into the label and the unit text, None where there is no unit."""
     found = ROUND.match(text) or HEADER.match(text)

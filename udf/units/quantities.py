@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import functools
 import math
 from collections.abc import Sequence
 from typing import Any, Final
@@ -23,6 +24,7 @@ Array = NDArray[np.float64]
 TURN: Final = 2.0 * math.pi
 
 
+@functools.lru_cache(maxsize=4096)
 def folded(word: str) -> str:
     """Return a word as it is compared: lower case, single blanks, US spelling."""
     return " ".join(word.replace("_", " ").split()).casefold().replace("centre", "center")
