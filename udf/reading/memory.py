@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import dataclasses
-import functools
 from collections.abc import Mapping
 from itertools import chain
 from typing import Any, Final
@@ -50,10 +49,16 @@ def key_of(cell: Cell) -> Any:
     return None if bool in set(map(type, flat)) else (len(cell), flat)
 
 
-@functools.lru_cache(maxsize=256)
+_FIELDS: Final[dict[type, tuple[str, ...]]] = {}  # one entry a class of readings
+
+
 def field_names(kind: type) -> tuple[str, ...]:
     """Return the names of the fields of a record, none for what is no record."""
-    return tuple(f.name for f in dataclasses.fields(kind)) if dataclasses.is_dataclass(kind) else ()
+    names = _FIELDS.get(kind)
+    if names is None:
+        names = tuple(f.name for f in dataclasses.fields(kind)) if dataclasses.is_dataclass(kind) else ()
+        _FIELDS[kind] = names
+    return names
 
 
 def locked(value: Any) -> Any:
