@@ -4,15 +4,24 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
+from functools import cache
 from pathlib import Path
+from typing import Final
 
-from .addresses import Area, cell_name, size
+from rigidsheet.udf import catalogue
+from rigidsheet.udf.compiling import arguments_of
+from rigidsheet.udf.reading.arguments import Scalar
+from rigidsheet.udf.reading.words import AnyQuantity
+
+from .addresses import Area, cell_name, row_column, size
 from .errors import address
 from .evaluation.builtins import VERIFIED_FUNCTIONS
 from .evaluation.formulas import Analysis, Argument, Call
 from .files.sheetxml import FormulaCell
-from .quantities import is_si_unit, quantity
+from .quantities import common_unit_in, is_si_unit, quantity
 from .reading import Reading
+
+FARTHEST: Final = 10_000  # rows of a range looked at for a second number
 
 
 @dataclass(frozen=True)
@@ -61,6 +70,14 @@ def open_elsewhere(path: Path) -> tuple[Caution, ...]:
     return ()
 
 
+@cache
+def takes_columns(name: str, position: int) -> bool:
+    """Tell whether numbers below each other are so many cases of this argument, and never one vector."""
+    function = catalogue.FUNCTIONS.get(name)
+    arguments = arguments_of(function) if function is not None else ()
+    return position < len(arguments) and isinstance(arguments[position].shape, (Scalar, AnyQuantity))
+
+
 class _Search:
     def __init__(self, reading: Reading, unit_position: Callable[[str], int | None]) -> None:
         self.unit_position = unit_position
@@ -70,6 +87,7 @@ class _Search:
         self.texts: dict[int, dict[str, str]] = {}
         self.tabs = [sheet.name for sheet in reading.prepared.sheets]
         self.units: dict[tuple[int, str], str] = {}  # cells whose number is in a unit that is not SI
+        self.unit_cells: dict[int, dict[str, str]] = {}  # cells that hold such a unit, by sheet
 
     def run(self) -> Iterator[Caution]:
         self._non_si_results()
@@ -78,8 +96,10 @@ class _Search:
         for number, sheet, formula in self.prepared.formulas():
             analysis = self.prepared.analyses[number, formula.ref]
             yield from self._unverified(sheet.name, formula, analysis)
-            if analysis.calls and (self.units or dates or analysis.nested):
+            if analysis.calls:
                 yield from self._calls(number, sheet.name, formula, dates)
+            if analysis.whole is not None and formula.array is None:
+                yield from self._columns(number, sheet.name, formula, analysis.whole)
             if analysis.collected:
                 yield from self._skipped(number, sheet.name, formula, seen)
 
@@ -139,13 +159,47 @@ class _Search:
                     if cell is None:
                         continue
                     source = self.tabs[cell[0]], cell[1]
-                    unit = self.units.get(cell, "")
+                    unit = self.units.get(cell) or self._beside(*cell)
                     dated = dates and self.reading.has_date_format(*cell)
                     if dated and isinstance(self.reading.value(*cell), float):
                         yield self._date(outer, here, source)
                 if unit:
                     crossed.append((unit, argument, source))
             yield from self._crossings(outer, here, crossed)
+
+    def _beside(self, number: int, ref: str) -> str:
+        """Return the unit, not an SI one, that stands to the right of a number handed over without it."""
+        found = self.unit_cells.get(number)
+        if found is None:
+            found = self.unit_cells[number] = {
+                at: text
+                for at, text in self.reading.texts(number)
+                if common_unit_in(text) and not is_si_unit(text)
+            }
+        if not found:
+            return ""
+        row, column = row_column(ref) or (0, 0)
+        unit = found.get(cell_name(row, column + 1), "")
+        return unit if unit and isinstance(self.reading.value(number, ref), float) else ""
+
+    def _columns(self, number: int, sheet: str, formula: FormulaCell, call: Call) -> Iterator[Caution]:
+        """Warn of a cell that shows the first answer alone of a column."""
+        for position, argument in enumerate(call.arguments):
+            place = self.reading.place_of(number, argument.use) if argument.use is not None else None
+            if place is None or size(place[1])[0] == 1 or not takes_columns(call.name, position):
+                continue
+            top, left, bottom, _ = place[1]
+            rows = range(top, min(bottom, top + FARTHEST) + 1)
+            numbers = [r for r in rows if isinstance(self.reading.value(place[0], cell_name(r, left)), float)]
+            if len(numbers) > 1:
+                first = self.tabs[place[0]], cell_name(numbers[0], left)
+                yield Caution(
+                    "column",
+                    f"{address(sheet, formula.ref)} shows {call.name} of {address(*first)} alone, the first of "
+                    f"{len(numbers)} numbers it is given. Use one cell for each row, or an array formula.",
+                    ((sheet, formula.ref), first),
+                )
+                return
 
     def _crossings(
         self, outer: Call, here: tuple[str, str], crossed: list[tuple[str, Argument, tuple[str, str]]]
@@ -158,10 +212,12 @@ class _Search:
             inner = (
                 f"{argument.call.name} in the same cell" if argument.call is not None else address(*source)
             )
+            asked = argument.call is not None or self._cell(self.tabs.index(here[0]), argument) in self.units
+            remedy = "Leave the unit out there, or h" if asked else "H"
             yield Caution(
                 "unit",
                 f"{address(*here)} hands a number in {unit} from {inner} to {outer.name} as if it were SI. "
-                "Leave the unit out there, or hand over the value and its unit cell together.",
+                f"{remedy}and over the value and its unit cell together.",
                 (here, source),
             )
 

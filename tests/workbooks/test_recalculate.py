@@ -217,6 +217,9 @@ STYLES = (
 )
 
 
+NUMBER = '<c r="{0}"><v>{1}</v></c>'
+
+
 def warnings(cells: dict[str, str], **more: Any) -> list[tuple[str, tuple[str, ...]]]:
     result = recalculate(parts.workbook({"S": cells}, **more))
     assert all(len(str(w)) < 255 for w in result.warnings)
@@ -249,6 +252,36 @@ def test_a_number_in_another_unit_that_goes_on_as_a_bare_number_is_named() -> No
         ("unit", ("C8", "A1")),
         ("unit", ("C8", "A3")),
     ]
+
+
+def test_a_bare_number_with_its_unit_beside_it_is_named() -> None:
+    """The slip of a sheet with value and unit cells: the formula takes the value cell alone."""
+    cells = {
+        "A1": NUMBER.format("A1", 40), "B1": "deg/s^2", "C1": "=RB_TORQUE(85,A1)", "D1": "=RB_TORQUE(85,A1:B1)",
+        "A2": NUMBER.format("A2", 5), "B2": "kg*m^2", "C2": "=RB_TORQUE(A2,1)",
+        "A3": NUMBER.format("A3", 5), "B3": "Rod", "C3": "=RB_TORQUE(A3,1)",
+        "A4": "5 mm", "B4": "mm", "C4": "=RB_CHECK(A4,A4)",
+        "A5": NUMBER.format("A5", 6.2), "B5": "kN", "C5": "=RB_CHECK(A5,A6)",
+        "A6": NUMBER.format("A6", 15000), "B6": "N", "C6": "=RB_CHECK(A5,A5)",
+    }  # fmt: skip
+    assert warnings(cells) == [("unit", ("C1", "A1")), ("unit", ("C5", "A5"))]
+    [warning, _] = recalculate(parts.workbook({"S": cells})).warnings
+    assert "a number in deg/s^2 from S!A1 to RB_TORQUE as if it were SI. Hand over the value" in str(warning)
+
+
+def test_a_cell_that_shows_the_first_of_a_column_of_answers_is_named() -> None:
+    """A check that passes in the first row says nothing of the others."""
+    cells = {f"A{i}": NUMBER.format(f"A{i}", v) for i, v in enumerate((120, -180, 90), 1)}
+    cells |= {
+        "A4": "N", "B1": "=RB_CHECK(A1:A3,150)", "B2": "=RB_CHECK(A3:A4,\"150 N\")", "B3": "=RB_CHECK(A2,150)",
+        "B4": "=MAX(RB_TORQUE(A1:A3,2))", "B5": "=RB_MARGIN(150,A1:A3)", "B6": "=RB_SHIFT(1,1,A1:A3)",
+    }  # fmt: skip
+    found = recalculate(parts.workbook({"S": cells})).warnings
+    assert [(w.kind, w.cells) for w in found] == [
+        ("column", (("S", "B1"), ("S", "A1"))),
+        ("column", (("S", "B5"), ("S", "A1"))),
+    ]
+    assert str(found[0]).startswith("S!B1 shows RB_CHECK of S!A1 alone, the first of 3 numbers it is given.")
 
 
 def test_a_date_that_a_function_takes_as_a_number_is_named() -> None:
