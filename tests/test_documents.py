@@ -23,7 +23,8 @@ def between(mark: str) -> str:
 def row_of(name: str) -> str:
     f = FUNCTIONS[name]
     arguments = ", ".join(f"[{a.name}]" if a.optional else a.name for a in arguments_of(f))
-    return f"| `{name}({arguments})` | {f.line} |"
+    line = f.line.replace("|", r"\|")  # a bare one would end the cell of the table
+    return f"| `{name}({arguments})` | {line} |"
 
 
 def test_every_function_is_listed_with_its_arguments() -> None:
