@@ -155,6 +155,28 @@ def test_pdf_says_what_to_install(tmp_path: Path, monkeypatch: pytest.MonkeyPatc
         office.pdf(path)
 
 
+@pytest.mark.usefixtures("office_here")
+def test_the_extension_is_installed_and_taken_away_again(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    place = [*office.layer(), *office.Profile(tmp_path).options]  # the one of this test, not that of the user
+    monkeypatch.setattr(office, "layer", lambda: place)
+
+    def installed() -> bool:
+        command = [str(office.find().unopkg), "list", *place]
+        listed = subprocess.run(command, capture_output=True, text=True, check=False)
+        return office.IDENTIFIER in listed.stdout
+
+    assert not installed()
+    for _ in range(2):  # a second time replaces it
+        assert "Restart LibreOffice" in office.install()
+        assert installed()
+    assert "Restart LibreOffice" in office.uninstall()
+    assert not installed()
+    with pytest.raises(InputError, match="The extension was not changed"):
+        office.uninstall()
+
+
 def test_the_wizard_shows_every_function(calc: LiveCalc) -> None:
     from rigidsheet.udf.calc.host import host_arguments
     from rigidsheet.udf.catalogue import FUNCTIONS
