@@ -178,7 +178,9 @@ def _planar_direction(
         raise InputError(argument, rule, where=where)
     if not isfinite(angle):
         raise InputError("angle", "a finite number", angle, where=where)
-    return (cos(angle), sin(angle), 0.0)
+    # along a sheet axis the other part is a zero, not what is left of rounding pi
+    across, up = (0.0 if abs(part) < 1e-15 else part for part in (cos(angle), sin(angle)))
+    return (across, up, 0.0)
 
 
 def spatial_support(

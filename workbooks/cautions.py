@@ -16,12 +16,14 @@ from rigidsheet.udf.reading.words import AnyQuantity
 from .addresses import Area, cell_name, row_column, size
 from .errors import address
 from .evaluation.builtins import VERIFIED_FUNCTIONS
+from .evaluation.enginecopy import frame_cells
 from .evaluation.formulas import Analysis, Argument, Call
 from .files.sheetxml import FormulaCell
 from .quantities import common_unit_in, is_si_unit, quantity
 from .reading import Reading
 
 FARTHEST: Final = 10_000  # rows of a range looked at for a second number
+FEW: Final = 16  # cells of a block that are looked at one by one; a longer one has its units in a header
 
 
 @dataclass(frozen=True)
@@ -118,8 +120,11 @@ class _Search:
         for number, _, formula in self.prepared.formulas():
             whole = self.prepared.analyses[number, formula.ref].whole
             unit = self._unit(number, whole) if whole is not None else ""
-            if unit and isinstance(self.reading.results[number, formula.ref], float):
-                self.units[number, formula.ref] = unit
+            if not unit:
+                continue
+            for ref in frame_cells(formula.array) if formula.array is not None else (formula.ref,):
+                if isinstance(self.reading.results.get((number, ref)), float):
+                    self.units[number, ref] = unit
 
     def _unit(self, number: int, call: Call) -> str:
         """Return the unit that a call asks its result in, when it is not SI."""
@@ -137,12 +142,19 @@ class _Search:
 
     def _cell(self, number: int, argument: Argument) -> tuple[int, str] | None:
         """Return the single cell that an argument refers to."""
-        if argument.use is None:
-            return None
-        place = self.reading.place_of(number, argument.use)
-        if place is None or size(place[1]) != (1, 1):
-            return None
-        return place[0], cell_name(place[1][0], place[1][1])
+        cells = self._cells(number, argument)
+        return cells[0] if len(cells) == 1 else None
+
+    def _cells(self, number: int, argument: Argument) -> list[tuple[int, str]]:
+        """Return the cell or the few cells (a vector, a tensor) that an argument refers to."""
+        place = self.reading.place_of(number, argument.use) if argument.use is not None else None
+        if place is None or size(place[1])[0] * size(place[1])[1] > FEW:
+            return []
+        return [(place[0], ref) for ref in frame_cells(place[1])]
+
+    def _bare(self, cells: list[tuple[int, str]]) -> bool:
+        """Tell whether the cells of an argument go on as numbers alone: no unit stands among them."""
+        return len(cells) == 1 or not any(isinstance(self.reading.value(*cell), str) for cell in cells)
 
     def _calls(self, number: int, sheet: str, formula: FormulaCell, dates: bool) -> Iterator[Caution]:
         analysis = self.prepared.analyses[number, formula.ref]
@@ -155,14 +167,14 @@ class _Search:
                 if argument.kind == "call" and argument.call is not None:
                     unit, source = self._unit(number, argument.call), here
                 else:
-                    cell = self._cell(number, argument)
-                    if cell is None:
-                        continue
+                    cells = self._cells(number, argument)
+                    if dates:
+                        yield from self._dates(outer, here, cells)
+                    found = ((self.units.get(c) or self._beside(*c), c) for c in cells)
+                    unit, cell = next((each for each in found if each[0]), ("", (number, "")))
                     source = self.tabs[cell[0]], cell[1]
-                    unit = self.units.get(cell) or self._beside(*cell)
-                    dated = dates and self.reading.has_date_format(*cell)
-                    if dated and isinstance(self.reading.value(*cell), float):
-                        yield self._date(outer, here, source)
+                    if unit and not self._bare(cells):
+                        continue
                 if unit:
                     crossed.append((unit, argument, source))
             yield from self._crossings(outer, here, crossed)
@@ -212,7 +224,7 @@ class _Search:
             inner = (
                 f"{argument.call.name} in the same cell" if argument.call is not None else address(*source)
             )
-            asked = argument.call is not None or self._cell(self.tabs.index(here[0]), argument) in self.units
+            asked = argument.call is not None or (self.tabs.index(source[0]), source[1]) in self.units
             remedy = "Leave the unit out there, or h" if asked else "H"
             yield Caution(
                 "unit",
@@ -221,12 +233,21 @@ class _Search:
                 (here, source),
             )
 
-    def _date(self, outer: Call, here: tuple[str, str], source: tuple[str, str]) -> Caution:
-        return Caution(
-            "date",
-            f"{address(*here)} hands the date in {address(*source)} to {outer.name} as a plain number.",
-            (here, source),
-        )
+    def _dates(self, outer: Call, here: tuple[str, str], cells: list[tuple[int, str]]) -> Iterator[Caution]:
+        """Warn of the first date among the cells of one argument."""
+        for cell in cells:
+            if (
+                self.reading.has_date_format(*cell)
+                and isinstance(self.reading.value(*cell), float)
+                and self._bare(cells)
+            ):
+                source = self.tabs[cell[0]], cell[1]
+                yield Caution(
+                    "date",
+                    f"{address(*here)} hands the date in {address(*source)} to {outer.name} as a plain number.",
+                    (here, source),
+                )
+                return
 
     def _skipped(
         self, number: int, sheet: str, formula: FormulaCell, seen: set[tuple[int, Area]]

@@ -284,6 +284,27 @@ def test_a_cell_that_shows_the_first_of_a_column_of_answers_is_named() -> None:
     assert str(found[0]).startswith("S!B1 shows RB_CHECK of S!A1 alone, the first of 3 numbers it is given.")
 
 
+def test_a_vector_in_another_unit_that_goes_on_bare_is_named() -> None:
+    arm = '<c r="A1"><f t="array" ref="A1:B1">RB_ARM("(0, 0) m","(0.4, 0.2) m","mm")</f></c>'
+    take = '=RB_MOMENT("(1, 0) N",{0})'
+    number = '<c r="{0}"><v>400</v></c>'
+    cells = {
+        "A1": arm,
+        "C1": "mm",
+        "A2": '=RB_CONVERT("400 mm","mm")',
+        "B2": number.format("B2"),
+        "A3": number.format("A3"),
+        "B3": number.format("B3"),
+        "C3": "mm",
+        "E1": take.format("A1:B1"),
+        "E2": take.format("A2:B2"),
+        "E3": take.format("A3:B3"),
+        "E4": take.format("A1:C1"),
+        "E5": take.format("A3:C3"),
+    }
+    assert warnings(cells) == [("unit", ("E1", "A1")), ("unit", ("E2", "A2")), ("unit", ("E3", "B3"))]
+
+
 def test_a_date_that_a_function_takes_as_a_number_is_named() -> None:
     cells = {f"A{i}": f'<c r="A{i}" s="{i - 1}"><v>45000</v></c>' for i in range(1, 6)}
     cells |= {f"B{i}": f"=RB_SHIFT(A{i},1,2)" for i in range(1, 6)} | {"C1": "=A2+1"}
