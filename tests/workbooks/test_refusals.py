@@ -108,6 +108,10 @@ CASES = {
     "sheet missing": (parts.repacked(GOOD, {SHEET: None}), "is missing"),
     "no sheets": (parts.workbook({}), "no sheet with cells"),
     "iteration": (parts.workbook({"S": {"A1": "=A1+1"}}, calc='<calcPr iterate="1"/>'), "iterative calculation"),
+    "date as text": (
+        parts.workbook({"S": {"A1": '<c r="A1" t="d"><v>2026-04-01</v></c>', "A2": "=SUM(A1:A1)"}}),
+        "a date is kept as text",
+    ),
     "as displayed": (parts.workbook({"S": {"A1": "=1/3"}}, calc='<calcPr fullPrecision="0"/>'), "as displayed"),
     "data table": (
         parts.workbook({"S": {"A1": '<c r="A1"><f t="dataTable" ref="A1:A2" r1="B1"/><v>1</v></c>'}}),

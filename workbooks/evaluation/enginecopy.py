@@ -12,7 +12,7 @@ from typing import Final
 from xml.sax.saxutils import escape, quoteattr
 
 from ..addresses import Area, area, cell_name, size
-from ..errors import FormulaRefused, UnknownFunction
+from ..errors import FileRefused, FormulaRefused, UnknownFunction, address
 from ..files.book import Book, DefinedName
 from ..files.cellxml import typed_tag
 from ..files.sheetxml import FormulaCell, Sheet, splice, tag_end
@@ -68,6 +68,19 @@ def target_of(name: DefinedName) -> tuple[str, Area] | None:
     return (sheet_of(found["where"]), block) if found and block else None
 
 
+def _refuse_text_dates(sheet: Sheet) -> None:
+    """Refuse dates kept as ISO text, as strict files may have them: SUM would pass over them in silence."""
+    if b't="d"' not in sheet.data and b"t='d'" not in sheet.data:
+        return
+    for _, attributes in sheet.cells:
+        if attributes.get("t") == "d":
+            raise FileRefused(
+                "a date is kept as text, which formulas would pass over",
+                remedy="Save the file as an ordinary .xlsx workbook, not a strict one",
+                where=address(sheet.name, attributes["r"]),
+            )
+
+
 class Preparation:
     """Checks every formula of a workbook and writes the engine's copy."""
 
@@ -88,6 +101,7 @@ class Preparation:
         parts = []
         for number, sheet in enumerate(self.prepared.sheets):
             edits: list[tuple[int, int, bytes]] = []
+            _refuse_text_dates(sheet)
             for formula in sheet.formulas:
                 edits.extend(self._formula(number, sheet, formula))
             parts.append(splice(sheet.data, edits) if edits else sheet.data)
