@@ -359,3 +359,65 @@ NO_SIZES: dict[str, tuple[Any, tuple[str, ...]]] = {
 @pytest.mark.parametrize(("sizes", "says"), NO_SIZES.values(), ids=NO_SIZES)
 def test_sizes_are_refused(sizes: Any, says: tuple[str, ...]) -> None:
     refused("RB_SHAPE_MASS", ["tube", STEEL, sizes], *says)
+
+
+SUPPORTS = [["support", "type", "x [m]", "y [m]"], ["post", "fixed", 0.0, 0.0]]
+LOADS = [["load", "x [m]", "y [m]", "Fx [N]"], ["wind", 0.0, 0.0, 5.0]]
+
+
+def with_column(table: list[list[Any]], head: str, value: Any) -> list[list[Any]]:
+    return [[*table[0], head], *([*row, value] for row in table[1:])]
+
+
+@pytest.mark.parametrize(
+    ("head", "value", "says"),
+    [
+        *((head, 4.0, None) for head in ("number", "Pieces", "n")),  # there is a qty beside it
+        ("factor", 4.0, "'qty'"),
+        *((head, -1.0, "-1 for a cut-out") for head in ("sign", "cut-out", "hole")),
+        *(
+            (head, 30.0, "turn z")
+            for head in ("rotation z [deg]", "rot z", "tilt z [rad]", "inclination [deg]")
+        ),
+        ("Jzz [kg*m^2]", 3.0, "Ixx, Iyy, Izz"),
+        ("pull [N*m]", None, None),
+        ("drawing length [mm]", 3.0, None),
+        ("total mass [kg]", 3.0, None),
+        ("datum", "yes", "'at'"),
+    ],
+)
+def test_an_unknown_column_that_would_count_is_not_passed_over(
+    head: str, value: Any, says: str | None
+) -> None:
+    table = with_column([HEADER, A, B], head, value)
+    if says is None:
+        assert center(*table) == pytest.approx(0.75, rel=1e-14)
+    else:
+        no_table(table, "known columns", repr(head), says)
+
+
+@pytest.mark.parametrize("head", ["number", "Pieces", "amount", "n", "off", "no. off", "Nos."])
+def test_a_count_under_an_unknown_header_is_not_taken_as_one(head: str) -> None:
+    no_table([["part", head, "shape", "mass [kg]", "x [m]"], ["a", 4.0, "point", 1.0, 0.0]], "write 'qty'")
+
+
+def test_a_place_under_an_unknown_header_is_not_taken_as_zero() -> None:
+    no_table(
+        [["part", "shape", "mass [kg]", "cx [mm]", "cy [mm]"], ["a", "point", 1.0, 30.0, 40.0]], "x, y, z"
+    )
+
+
+@pytest.mark.parametrize(
+    "head", ["Fh [N]", "P [kN]", "torque [N*m]", "direction [deg]", "load factor", "qty"]
+)
+def test_an_unknown_column_of_loads_that_would_count_is_not_passed_over(head: str) -> None:
+    refused("RB_RESULTANT", [with_column(LOADS, head, 2.0)], "known columns", repr(head))
+
+
+def test_friction_of_a_support_is_not_passed_over() -> None:
+    body, motion = (
+        "mass 8 kg; center (1, 0) m; Izz 3 kg*m^2",
+        "omega 0; alpha 0; gravity down; fixed point (0, 0) m",
+    )
+    table = with_column(SUPPORTS, "mu", 0.3)
+    refused("RB_REACTIONS", [body, motion, "none", table], "'mu'", "Friction is not counted")

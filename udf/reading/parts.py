@@ -23,6 +23,7 @@ from .bodies import MOMENTS, PRODUCTS
 from .measured import CENTER, fill_measured, word_of
 from .patterns import XYZ, pattern_of
 from .sizes import SIZE_COLUMNS, size_texts
+from .slips import OF_PARTS
 from .tables import Column, Table, TableData
 
 Array = NDArray[np.float64]
@@ -85,6 +86,7 @@ PARTS: Final = Table(
         ("bin", 1.0, "box", 38.0, 1000.0, 700.0, 900.0, 650.0, 430.0, 0.0),
     ),
     more=SIZE_COLUMNS,
+    slips=OF_PARTS,
     finish=lambda argument, data: read_parts(argument, data),
 )
 

@@ -17,6 +17,7 @@ from ..units import kinds
 from ..units.quantities import folded, shown
 from .arguments import Spin, Vector
 from .records import Entry, Record
+from .slips import AS_COLUMNS, OF_LOADS, OF_SUPPORTS
 from .tables import Column, Table, TableData
 
 Array = NDArray[np.float64]
@@ -194,6 +195,7 @@ LOADS: Final = Table(
     what="table of loads",
     example=(("load", "Fx [N]", "Fy [N]", "x [mm]", "y [mm]"), ("wind", 120.0, 0.0, 400.0, 900.0)),
     none_word=True,
+    slips=OF_LOADS,
     finish=lambda argument, data: finish_loads(data),
 )
 
@@ -284,6 +286,7 @@ SUPPORTS: Final = Table(
         ("hinge", "pin", 0.0, 0.0, None),
         ("stop", "roller", 900.0, 0.0, 90.0),
     ),
+    slips=OF_SUPPORTS,
     finish=lambda argument, data: finish_supports(data, planar=True),
 )
 
@@ -308,14 +311,9 @@ SUPPORTS_3D: Final = Table(
         ("upper hinge", "bearing", 0.0, 0.0, 1100.0, 0.0, 0.0, 1.0),
         ("stop", "slot", 2400.0, 0.0, 550.0, 0.0, 1.0, 0.0),
     ),
+    slips=OF_SUPPORTS,
     finish=lambda argument, data: finish_supports(data, planar=False),
 )
-
-# What a refusal of the core speaks of, by the columns that were typed.
-_AS_COLUMNS: Final = {
-    "direction": ("along", "Its columns are along x, along y, along z"),
-    "components": ("holds", "Write them in a column 'holds', like fx fy fz"),
-}
 
 
 def _kind_word(data: TableData, i: int, known: Sequence[str]) -> str:
@@ -383,7 +381,7 @@ def finish_supports(data: TableData, planar: bool) -> SupportsRead:
                     components=_components(data, i),
                 )
         except InputError as refused:
-            argument, remedy = _AS_COLUMNS.get(refused.argument, (refused.argument, ""))
+            argument, remedy = AS_COLUMNS.get(refused.argument, (refused.argument, ""))
             raise InputError(
                 argument, refused.rule, refused.value, remedy=refused.remedy or remedy, where=data.where(i)
             ) from None

@@ -20,6 +20,7 @@ from ..limits import Limit
 from ..units.kinds import Kind
 from ..units.quantities import asked, check_limit, folded, is_unit_text, quantity, shown, unit_factor, wrong
 from .memory import remembered
+from .slips import DECISIVE, kinds_of
 from .words import hint, nearest
 
 HEADER: Final = re.compile(r"\s*(.*?)\s*(?:\[\s*(.*?)\s*\])?\s*\Z")
@@ -103,6 +104,8 @@ class Table:
     example: tuple[tuple[Value, ...], ...]
     none_word: bool = False  # the word 'none' stands for no rows
     more: Mapping[str, Column] = field(default_factory=dict)  # further columns by their exact label
+    # Folded headers that must not be passed over: the column that makes them harmless, and the remedy.
+    slips: Mapping[str, tuple[str, str]] = field(default_factory=dict)
     finish: Callable[[str, TableData], Any] | None = None
     role: Role = Role.OTHER
 
@@ -165,6 +168,7 @@ class Table:
     ) -> dict[int, tuple[Column, str | None]]:
         heads: dict[int, tuple[Column, str | None]] = {}
         taken: dict[str, str] = {}
+        passed: list[str] = []
         for j, head in enumerate(header):
             if head is None or head == "":
                 continue
@@ -186,6 +190,7 @@ class Table:
                         remedy=f"Did you mean '{close}'?",
                         where="row 1",
                     )
+                passed.append(head)
                 continue
             if c.label in taken:
                 raise InputError(
@@ -203,7 +208,30 @@ class Table:
                 remedy=hint("?", [header_of(c) for c in self.columns]),
                 where="row 1",
             )
+        for head in passed:
+            self._counts(argument, head, taken)
         return heads
+
+    def _counts(self, argument: str, head: str, taken: Mapping[str, str]) -> None:
+        """Refuse an unknown header of what would change the result: a count, an angle, a force, a place."""
+        label, unit = label_and_unit(head)
+        known, meant = self.slips.get(folded(label).rstrip("."), ("", ""))
+        if known in taken:
+            return
+        if meant:
+            meant += ". Rename a column that is only a remark"
+        elif unit:
+            asked_for = [c for c in self.columns if c.kind in kinds_of(unit) and c.label not in taken]
+            unplaced = not any(k in taken for k in "xyz")
+            if any(c.kind in DECISIVE or (unplaced and c.label in ("x", "y", "z")) for c in asked_for):
+                meant = hint("?", [c.label for c in asked_for]) + ". A remark stands without a unit"
+        if meant:
+            raise InputError(
+                argument,
+                f"a {self.what} with known columns; got {shown(head)}",
+                remedy=meant,
+                where="row 1",
+            )
 
     def _lookalike(self, argument: str, head: str, label: str) -> None:
         """Refuse an unknown header that begins like a column of numbers, which must not be passed over."""
