@@ -321,6 +321,35 @@ def test_a_check_fails_when_its_capacity_does_not_suffice(changes: dict[str, Any
     assert re.search(r"\d of 8 checks fail", str(named(run(changes))["verdict"][0]))
 
 
+@pytest.mark.parametrize(
+    ("sheet", "cell", "change"),
+    [
+        ("Arm", "AB10", "+0.001"),  # a part of the sensor's acceleration along the arm: 1 mm of offset
+        ("Arm", "AE15", "+0.001"),  # across
+        ("Arm", "AG20", "+0.001"),  # of the pusher's
+        ("Arm", "AH25", "+0.001"),
+        ("Tray", "E30", "*1.0001"),  # the acceleration of G itself where a stop begins
+        ("Tray", "J65", "*1.0001"),
+        ("Arm", "F74", "*1.0001"),  # the position looked at: angular acceleration of the arm
+        ("Arm", "J74", "*1.0001"),  # what the sensor reads
+        ("Tray", "M74", "*1.0001"),
+        ("Tray", "R74", "*1.0001"),
+    ],
+)
+def test_a_table_that_is_not_what_the_functions_give_fails_its_check(
+    sheet: str, cell: str, change: str
+) -> None:
+    book = openpyxl.load_workbook(BytesIO(written()))
+    formula = book[sheet][cell].value
+    assert formula.startswith("=IF(")
+    assert formula.endswith(',"")')
+    book[sheet][cell].value = f'{formula[:-4]}{change},"")'
+    out = BytesIO()
+    book.save(out)
+    result = recalculate(out.getvalue())
+    assert {one.name: one.verdict for one in result.checks}["check_agreement"] == "FAIL"
+
+
 def test_a_foot_without_weight_at_rest_and_a_flying_tray_fail() -> None:
     """With G beyond both feet one foot carries nothing at rest; at 250 rpm the tray leaves the arm."""
     assert table(run({"foot_1": 250}), "lift").min() == 99.0

@@ -2,15 +2,18 @@
 
 from __future__ import annotations
 
+from functools import partial
 from typing import Final
 
 from rigidsheet.udf.units import kinds
 
+from . import shaker_arm_parts as parts
 from .kit import Book
 from .kit_look import LEFT
-from .shaker_arm import Given
-from .shaker_arm_tables import LOST, Table
-from .shaker_arm_working import BESIDE, Looked, Position, Work
+from .shaker_arm import CASES, Given
+from .shaker_arm_parts import LOST
+from .shaker_arm_tables import Table
+from .shaker_arm_working import BESIDE, NOTES, Looked, Position, Work
 
 VECTOR_WORDS: Final = {4: "size", 5: "unit", 6: "x", 7: "y", 8: "unit"}
 HELD: Final = "arm held at this crank angle"
@@ -286,7 +289,23 @@ def _compare(at: Position, arm: Table, tray: Table, functions: dict[str, str]) -
         gap = f"ABS({page.at(4)}-{page.at(6)})/MAX(1E-6,ABS({page.at(6)}))"
         page.put(7, at.book.guarded(gap), "RS value", form="0.0000%")
         page.row += 1
+    _over_the_turn(at, arm, tray)
     at.looked.gaps = page.span((top, 7), (page.row - 1, 7))
+
+
+def _over_the_turn(at: Position, arm: Table, tray: Table) -> None:
+    """Write how far the accelerations that the tables rest on are from the functions over the turn."""
+    page, k = at.page, parts.COMPARED
+    cells = {way: partial(tray.cell, way, k) for way in parts.WAYS}
+    rows = range(arm.first, arm.last + 1)
+    ours, theirs, gap = parts.compare(arm.page, at.given, at.work, rows, cells)
+    page.put(2, f"S, P, G over the turn, {CASES[k]}", "RS label")
+    for column, formula in ((4, ours), (6, theirs)):
+        page.put(column, at.book.guarded(formula), "RS value")
+    page.put(5, "m/s^2", "RS unit fixed")
+    page.put(7, at.book.guarded(f"{gap}/MAX(1E-6,{page.at(4)})"), "RS value", form="0.0000%")
+    page.put(NOTES, "each 30°: r.m.s.; largest gap", "RS note")
+    page.row += 1
 
 
 def _steps(at: Position, calls: tuple[tuple[str, int], ...]) -> None:

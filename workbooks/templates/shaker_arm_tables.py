@@ -7,16 +7,15 @@ from typing import Final
 
 from openpyxl.utils import get_column_letter
 
+from . import shaker_arm_parts as parts
 from .kit import Book, Page
 from .kit_look import rich
-from .shaker_arm import CASES, Given, block
+from .shaker_arm import CASES, Given
+from .shaker_arm_parts import LOST
 from .shaker_arm_working import Work
 
 STEP: Final = 6  # deg: a peak between two rows is next to nothing higher
 ROWS: Final = 360 // STEP + 1
-LOST: Final = (
-    99  # stands where a foot carries nothing even at rest, or the tray has left the arm; and at most
-)
 ANGLE, ARM_ANGLE, CRANK_ALONG, CRANK_ACROSS, TURN, BEND, WEIGHT_ALONG, WEIGHT_ACROSS = range(1, 9)
 HEADS: Final = tuple(case.replace("overspeed", "over- speed") for case in CASES)
 COUNT: Final = len(CASES)
@@ -42,6 +41,10 @@ class Table:
         """Return the column of a case."""
         return self.column(self.starts[key] + k)
 
+    def cell(self, key: str, k: int, row: int) -> str:
+        """Return the cell of a case in a row."""
+        return f"{self.page.name}!${get_column_letter(self.starts[key] + k)}{row}"
+
     def looked(self, key: str) -> str:
         """Return the cells of all cases for the position looked at."""
         start = self.starts[key]
@@ -55,9 +58,10 @@ def tables(book: Book, given: Given, work: Work) -> tuple[Table, Table]:
     _head(
         arm,
         (
-            "r along, r across: the crank as seen from the arm. ω_a = (ω_a/ω) ω; α_a = (ω_a/ω) α + (α_a/ω²) ω².",
-            "Accelerations along and across the arm by RB_ACCELERATION_AT, and g as weight adds it. Pusher: side "
-            "m_P (|across| + 2 |ω_a w|), thrust m_P (|along| + b), the worse of out and back.",
+            "r: crank as seen from the arm. ω_a = (ω_a/ω) ω; α_a = (ω_a/ω) α + (α_a/ω²) ω². Pusher: "
+            "side m_P (|across| + 2 |ω_a w|), thrust m_P (|along| + b).",
+            "Acceleration at (u, v): along −ω² r_{along} − α r_{across} − α_a v − ω_a² u, across "
+            "α r_{along} − ω² r_{across} + α_a u − ω_a² v; g adds as weight does.",
         ),
         ("crank angle", "arm angle", "r along", "r across", "ω_a/ω", "α_a/ω²", "g along", "g across"),
         ("deg", "deg", "m", "m", "-", "-", "m/s²", "m/s²"),
@@ -70,7 +74,7 @@ def tables(book: Book, given: Given, work: Work) -> tuple[Table, Table]:
     _head(
         tray,
         (
-            "Acceleration a of the mass center G along and across the arm by RB_ACCELERATION_AT. Foot load / m_T: "
+            "Acceleration a of the mass center G along and across the arm: formula on sheet Arm. Foot load / m_T: "
             "foot 1 s_1 a_{across} + h a_{along} − j α_a, foot 2 s_2 a_{across} − h a_{along} + j α_a;",
             "the share taken off is minus this, over the same with g for a and no α_a; the worse foot lifts off at 1. "
             f"{LOST}: no load to take.",
@@ -84,6 +88,7 @@ def tables(book: Book, given: Given, work: Work) -> tuple[Table, Table]:
             ("Friction coefficient needed", "slip", "-"),
         ),
     )
+    parts.heads(arm.page, arm.first - 1)
     for row, angle in ((row, (row - arm.first) * STEP) for row in range(arm.first, arm.last + 1)):
         _rows(book, given, work, arm, tray, row, str(angle))
     _rows(book, given, work, arm, tray, arm.look, f"DEGREES({given['look_angle'].si})")
@@ -144,19 +149,19 @@ def _rows(book: Book, given: Given, work: Work, arm: Table, tray: Table, row: in
         table.page.put(ANGLE, text, "RS number", row=row, form="0" if constant else "0.0")
     for column, formula, form in _linkage(given, work, row):
         arm.page.put(column, book.guarded(formula), "RS number", row=row, form=form)
-    center = block(given["tray_u"], given["tray_v"])
     for k in range(COUNT):
         cells = {
-            "sensor": (arm, _sensor(given, work, row, k), "0.000"),
+            "sensor": (arm, _sensor(work, row, k), "0.000"),
             "side": (arm, _side(given, work, row, k), "0.0"),
             "thrust": (arm, _thrust(given, work, row, k), "0.0"),
-            "along": (tray, _point(work, center, "Arm!", row, k, 1), "0.000"),
-            "across": (tray, _point(work, center, "Arm!", row, k, 2), "0.000"),
-            "lift": (tray, _lift(work, tray, row, k), "0.000"),
+            "along": (tray, parts.scaled(work, k, "G along", row), "0.000"),
+            "across": (tray, parts.scaled(work, k, "G across", row), "0.000"),
+            "lift": (tray, _lift(work, row, k), "0.000"),
             "slip": (tray, _slip(tray, row, k), "0.000"),
         }
         for key, (table, formula, form) in cells.items():
             table.page.put(table.starts[key] + k, book.guarded(formula), "RS number", row=row, form=form)
+    parts.write(arm.page, given, work, row)
 
 
 def _linkage(given: Given, work: Work, row: int) -> tuple[tuple[int, str, str], ...]:
@@ -173,50 +178,32 @@ def _linkage(given: Given, work: Work, row: int) -> tuple[tuple[int, str, str], 
     )
 
 
-def _point(work: Work, place: str, arm: str, row: int, k: int, component: int) -> str:
-    """Return the acceleration of a point of the arm in a case: along (1) or across (2) the arm."""
-    omega, alpha = work.speeds[k], work.accelerations[k]
-    crank = f'RB_ACCELERATION_AT("(0, 0) m/s^2",{omega},{alpha},{arm}$C{row}:$D{row})'
-    spin = f"{arm}$E{row}*{omega},{_rise(work, arm, row, k)}"
-    return f"INDEX(RB_ACCELERATION_AT({crank},{spin},{place}),1,{component})"
-
-
-def _rise(work: Work, arm: str, row: int, k: int) -> str:
-    """Return the angular acceleration of the arm in a case."""
-    return f"{arm}$E{row}*{work.accelerations[k]}+{arm}$F{row}*{work.speeds[k]}^2"
-
-
-def _sensor(given: Given, work: Work, row: int, k: int) -> str:
-    place, felt = block(given["sensor_u"], given["sensor_v"]), f"IF({given['sensor_reads'].si}=1,1,0)"
-    along, across = (_point(work, place, "", row, k, i) for i in (1, 2))
-    return f"SQRT(({along}+{felt}*$G{row})^2+({across}+{felt}*$H{row})^2)/{work.gravity.si}"
+def _sensor(work: Work, row: int, k: int) -> str:
+    along, across = (
+        f"({parts.scaled(work, k, f'S {way}', row)}+{work.felt}*${g}{row})"
+        for way, g in zip(parts.WAYS, "GH", strict=True)
+    )
+    return f"SQRT({along}^2+{across}^2)/{work.gravity.si}"
 
 
 def _side(given: Given, work: Work, row: int, k: int) -> str:
     """Return the side load of the pusher: the Coriolis part counts in the worse direction of sliding."""
-    place = block(given["pusher_u"], given["pusher_v"])
     coriolis = f"ABS(2*$E{row}*{work.speeds[k]}*{given['slide_speed'].si})"
-    return f"{given['pusher_mass'].si}*(ABS({_point(work, place, '', row, k, 2)}+$H{row})+{coriolis})"
+    return f"{given['pusher_mass'].si}*(ABS({parts.scaled(work, k, 'P across', row)}+$H{row})+{coriolis})"
 
 
 def _thrust(given: Given, work: Work, row: int, k: int) -> str:
-    place = block(given["pusher_u"], given["pusher_v"])
     slide = f"ABS({given['slide_rise'].si})"
-    return f"{given['pusher_mass'].si}*(ABS({_point(work, place, '', row, k, 1)}+$G{row})+{slide})"
+    return f"{given['pusher_mass'].si}*(ABS({parts.scaled(work, k, 'P along', row)}+$G{row})+{slide})"
 
 
-def _lift(work: Work, tray: Table, row: int, k: int) -> str:
-    """Return the larger share of a foot's weight that the motion takes off, from moments about the feet."""
-    along, across = (f"{get_column_letter(tray.starts[key] + k)}{row}" for key in ("along", "across"))
-    shares, bend = [], f"{work.spin.si}*({_rise(work, 'Arm!', row, k)})"
-    for share, sign, other in ((work.share_1.si, "+", "-"), (work.share_2.si, "-", "+")):
-        moved = f"({share}*{across}{sign}{work.lever.si}*{along}{other}{bend})"
-        rests = f"({share}*Arm!$H{row}{sign}{work.lever.si}*Arm!$G{row})"
-        shares.append(f"IF({rests}>0,MIN(-{moved}/{rests},{LOST}),{LOST})")
-    return f"MAX({','.join(shares)})"
+def _lift(work: Work, row: int, k: int) -> str:
+    """Return the larger share of a foot's weight that the motion takes off."""
+    shares = ",".join(parts.scaled(work, k, f"foot {foot}", row) for foot in (1, 2))
+    return f"MIN({LOST},MAX({shares})+{parts.cell('no load', row)})"
 
 
 def _slip(tray: Table, row: int, k: int) -> str:
     along, across = (f"{get_column_letter(tray.starts[key] + k)}{row}" for key in ("along", "across"))
     press = f"({across}+Arm!$H{row})"
-    return f"IF({press}>0,MIN(ABS({along}+Arm!$G{row})/{press},{LOST}),{LOST})"
+    return f"IF({parts.positive(press)},MIN(ABS({along}+Arm!$G{row})/{press},{LOST}),{LOST})"

@@ -27,6 +27,8 @@ class Work:
     inertia: Place
     speeds: tuple[str, ...]  # of the crank for each load case, in SI
     accelerations: tuple[str, ...]
+    squares: tuple[str, ...]  # of the speeds
+    felt: str  # 1 when the sensor reads gravity, else 0
     share_1: Place  # of the pressing force that foot 1 takes
     share_2: Place
     lever: Place  # mass center above the mat, over the distance of the feet
@@ -52,14 +54,19 @@ def working(book: Book, given: Given) -> Work:
         cells[6] = book.guarded(stop if case in STOPPING else "0")
         for column in range(2, 8):
             page.put(column, cells.get(column), "RS number" if column in (4, 6) else "RS text")
+        page.put(BESIDE[0], book.guarded(f"{page.at(4)}^2"), "RS si")
         if case == STOPPING[0]:
             page.put(NOTES, rich("α = −ω² / (2 θ_s)", 8, italic=True, color=SOFT), "RS note")
         page.row += 1
     gravity = page.derived("Standard gravity", "g", f"{STANDARD_GRAVITY}", kinds.ACCELERATION, "m/s^2")
+    page.put(BESIDE[0], book.guarded(f"IF({given['sensor_reads'].si}=1,1,0)"), "RS si", row=gravity.row)
+    felt = page.at(BESIDE[0], gravity.row)
     inertia = _inertia(page, given)
     rows = range(first, first + len(CASES))
-    speeds, accelerations = (tuple(page.at(column, row) for row in rows) for column in (4, 6))
-    return Work(page, gravity, inertia, speeds, accelerations, *_feet(page, given, inertia))
+    speeds, accelerations, squares = (
+        tuple(page.at(column, row) for row in rows) for column in (4, 6, BESIDE[0])
+    )
+    return Work(page, gravity, inertia, speeds, accelerations, squares, felt, *_feet(page, given, inertia))
 
 
 def _feet(page: Page, given: Given, inertia: Place) -> tuple[Place, Place, Place, Place]:
