@@ -72,8 +72,9 @@ def _refuse_text_dates(sheet: Sheet) -> None:
     """Refuse dates kept as ISO text, as strict files may have them: SUM would pass over them in silence."""
     if b't="d"' not in sheet.data and b"t='d'" not in sheet.data:
         return
+    worked_out = {formula.ref for formula in sheet.formulas}
     for _, attributes in sheet.cells:
-        if attributes.get("t") == "d":
+        if attributes.get("t") == "d" and attributes["r"] not in worked_out:
             raise FileRefused(
                 "a date is kept as text, which formulas would pass over",
                 remedy="Save the file as an ordinary .xlsx workbook, not a strict one",
