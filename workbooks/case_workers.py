@@ -8,9 +8,9 @@ import os
 import signal
 import time
 from collections.abc import Iterator, Mapping
-from concurrent.futures import ProcessPoolExecutor
-from concurrent.futures.process import BrokenProcessPool
 from contextlib import contextmanager
+from multiprocessing.connection import Connection
+from multiprocessing.context import SpawnProcess
 from typing import Final
 
 from .cases import Answer, Cases, Row, Table
@@ -20,8 +20,6 @@ TRIAL: Final = 1.0  # seconds after which the rest is estimated
 WORTH: Final = 4.0  # seconds of remaining work for which starting processes pays
 MOST: Final = 16  # processes
 SHARE: Final = 20  # load cases that a process takes at a time
-
-_mine: Cases | None = None
 
 
 def answers(cases: Cases) -> Iterator[Answer]:
@@ -44,24 +42,46 @@ def processors() -> int:
 
 
 def _shared(cases: Cases, rows: tuple[Row, ...]) -> Iterator[Answer]:
+    """Yield the answers of rows that several processes work out, each its own shares in turn."""
     shares = [rows[i : i + SHARE] for i in range(0, len(rows), SHARE)]
-    pool = ProcessPoolExecutor(
-        min(processors(), MOST, len(shares)),
-        multiprocessing.get_context("spawn"),  # the engine must not be copied in the middle of its work
-        _begin,
-        (cases.data, cases.table, dict(cases.inputs)),
-    )
+    count = min(processors(), MOST, len(shares))
+    workers: list[tuple[SpawnProcess, Connection]] = []
     try:
         with _started_deaf():
-            found = pool.map(_work, shares)
-        for share in found:
-            yield from share
-    except BrokenProcessPool:
+            for k in range(count):
+                workers.append(_started(cases, shares[k::count]))
+        for i in range(len(shares)):
+            yield from _received(workers[i % count][1])
+    finally:
+        # Whatever happened, nobody is waited for: a killed process holds nothing that could be half done.
+        for process, answered in workers:
+            process.kill()
+            process.join()
+            answered.close()
+
+
+def _started(cases: Cases, shares: list[tuple[Row, ...]]) -> tuple[SpawnProcess, Connection]:
+    # The engine must not be copied in the middle of its work: a new process, not a fork.
+    context = multiprocessing.get_context("spawn")
+    answered, told = context.Pipe(duplex=False)
+    arguments = (told, cases.data, cases.table, dict(cases.inputs), shares)
+    process = context.Process(target=_work, args=arguments, daemon=True)
+    process.start()
+    told.close()
+    return process, answered
+
+
+def _received(answered: Connection) -> list[Answer]:
+    """Return the answers of the next share, or raise what went wrong in the process that owes it."""
+    try:
+        found: list[Answer] | Exception = answered.recv()
+    except EOFError:
         raise FileRefused(
             "a process ended before its load cases were worked out", remedy="Run it again with fewer cases"
         ) from None
-    finally:
-        pool.shutdown(wait=True, cancel_futures=True)
+    if isinstance(found, Exception):
+        raise found
+    return found
 
 
 @contextmanager
@@ -77,14 +97,15 @@ def _started_deaf() -> Iterator[None]:
         signal.pthread_sigmask(signal.SIG_SETMASK, before)
 
 
-def _begin(data: bytes, table: Table, inputs: Mapping[str, object]) -> None:
-    """Load the workbook in a process of its own, which leaves Ctrl-C to the one that started it."""
-    global _mine
+def _work(
+    told: Connection, data: bytes, table: Table, inputs: Mapping[str, object], shares: list[tuple[Row, ...]]
+) -> None:
+    """Work shares out in a process of its own, which leaves Ctrl-C to the one that started it."""
     signal.signal(signal.SIGINT, signal.SIG_IGN)
     gc.disable()  # as in the process that started it: there are no cycles to find
-    _mine = Cases(data, table, inputs)
-
-
-def _work(rows: tuple[Row, ...]) -> list[Answer]:
-    assert _mine is not None
-    return [_mine.answer(row) for row in rows]
+    try:
+        mine = Cases(data, table, inputs)
+        for rows in shares:
+            told.send([mine.answer(row) for row in rows])
+    except Exception as problem:  # worded and raised by the process that asked
+        told.send(problem)
