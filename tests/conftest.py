@@ -8,6 +8,7 @@ import sys
 import pytest
 from hypothesis import HealthCheck, settings
 
+pytest.register_assert_rewrite("template_checks")  # its assertions tell their values, too
 settings.register_profile(
     "usual", deadline=None, max_examples=60, suppress_health_check=[HealthCheck.too_slow]
 )

@@ -3,9 +3,7 @@
 from __future__ import annotations
 
 import re
-import shutil
-import subprocess
-from collections.abc import Iterator, Mapping
+from collections.abc import Mapping
 from functools import cache
 from io import BytesIO
 from pathlib import Path
@@ -15,23 +13,13 @@ import numpy as np
 import openpyxl
 import pytest
 import shaker_first_principles as first
+import template_checks as checks
+from template_checks import FACTORS, agrees, shown
+from template_checks import quantities as named
 from text_room import cut_off
 
 from rigidsheet.workbooks import Recalculation, cases, recalculate
-from rigidsheet.workbooks.templates import TEMPLATES
 
-# Exact or defined factors to SI (NIST SP 811, appendix B; from memory).
-FOOT, POUND = 0.3048, 0.45359237
-FACTORS: dict[str, float] = {
-    "mm": 1e-3, "m": 1.0, "in": FOOT / 12, "kg": 1.0, "lb": POUND, "deg": np.pi / 180, "rad": 1.0, "N": 1.0,
-    "lbf": POUND * first.G, "rpm": np.pi / 30, "rad/s": 1.0, "deg/s": np.pi / 180, "m/s": 1.0, "ft/s": FOOT,
-    "m/s^2": 1.0, "ft/s^2": FOOT, "g": first.G, "rad/s^2": 1.0, "deg/s^2": np.pi / 180, "kg*m^2": 1.0,
-    "lb*ft^2": POUND * FOOT**2, "N*m": 1.0, "lbf*ft": POUND * first.G * FOOT, "": 1.0, "%": 0.01,
-}  # fmt: skip
-OTHER = {
-    "mm": "in", "kg": "lb", "deg": "rad", "N": "lbf", "rpm": "rad/s", "rad/s": "deg/s", "m/s": "ft/s",
-    "m/s^2": "ft/s^2", "g": "m/s^2", "rad/s^2": "deg/s^2", "kg*m^2": "lb*ft^2", "N*m": "lbf*ft",
-}  # fmt: skip
 KEYS = {
     "sensor": ("Arm", 9),
     "side": ("Arm", 14),
@@ -42,61 +30,18 @@ KEYS = {
 SI = {"sensor": first.G}  # the tables hold g
 
 
-@cache
-def written(blank: bool = False) -> bytes:
-    import tempfile
-
-    with tempfile.TemporaryDirectory() as folder:
-        path = Path(folder) / "shaker-arm.xlsx"
-        TEMPLATES["shaker-arm"].write(path, blank)
-        return path.read_bytes()
-
-
-BOOK = openpyxl.load_workbook(BytesIO(written()))
-SHEET = BOOK["Inputs"]
-NAMED = {
-    name: defined.attr_text.split("!")[1].replace("$", "")
-    for name, defined in BOOK.defined_names.items()
-    if defined.attr_text.startswith("Inputs!") and not name.startswith(("sheet_", "inputs_"))
-}
-VALUES = {name: SHEET[cell].value for name, cell in NAMED.items()}
-UNITS = {name: SHEET[cell].offset(0, 1).value or "" for name, cell in NAMED.items()}
-NUMBERS = [name for name, value in VALUES.items() if not isinstance(value, str)]
-
-
-def si_inputs(changes: Mapping[str, Any]) -> dict[str, Any]:
-    """Return every input in SI, words as they stand, with changes in the unit of the form."""
-    out = {}
-    for name, value in {**VALUES, **changes}.items():
-        out[name] = value if isinstance(value, str) else value * FACTORS[UNITS[name]]
-    return out
+FORM = checks.Form("shaker-arm")
+NUMBERS = FORM.numbers
+run = FORM.run
 
 
 @cache
 def _model(changes: tuple[tuple[str, Any], ...]) -> first.Expected:
-    return first.expected(si_inputs(dict(changes)))
+    return first.expected(FORM.si_inputs(dict(changes)))
 
 
 def model(changes: Mapping[str, Any]) -> first.Expected:
     return _model(tuple(sorted(changes.items())))
-
-
-@cache
-def _run(inputs: tuple[tuple[str, Any], ...]) -> Recalculation:
-    result = recalculate(written(), inputs=dict(inputs))
-    assert not result.errors, result.errors[:3]
-    return result
-
-
-def run(inputs: Mapping[str, Any]) -> Recalculation:
-    return _run(tuple(sorted(inputs.items())))
-
-
-Quantities = Mapping[str, tuple[Any, str]]
-
-
-def named(result: Recalculation) -> dict[str, tuple[Any, str]]:
-    return {one.name: (one.value, one.unit) for one in result.results}
 
 
 def table(result: Recalculation, key: str) -> np.ndarray[Any, Any]:
@@ -105,13 +50,7 @@ def table(result: Recalculation, key: str) -> np.ndarray[Any, Any]:
     return np.array([[result.values[sheet, f"{letter}{row}"] for letter in letters] for row in range(10, 71)])
 
 
-def agrees(found: Any, wanted: Any, scale: float = 0.0, relative: float = 1e-9) -> bool:
-    """Compare with the scale of the wanted numbers, or a larger one."""
-    wanted = np.asarray(wanted, dtype=float)
-    return bool(np.max(np.abs(np.asarray(found) - wanted)) <= relative * max(scale, np.max(np.abs(wanted))))
-
-
-def compare(results: Quantities, wanted: first.Expected) -> None:
+def compare(results: checks.Quantities, wanted: first.Expected) -> None:
     """Compare demands, and the position looked at, with first principles."""
     for name, value in wanted.demands.items():
         number, unit = results[f"demand_{name}"]
@@ -197,29 +136,22 @@ def test_an_arm_that_does_not_turn_has_no_instant_center(changes: dict[str, Any]
 # one input after the other: the workbook is loaded once, and each row of a table of load cases is worked out
 
 
-def other_unit(name: str) -> str:
-    """Return the number of an input in another unit, as a text without a unit."""
-    unit = UNITS[name]
-    return repr(VALUES[name] * FACTORS[unit] / FACTORS[OTHER[unit]])
-
-
 @pytest.fixture(scope="module")
 def answers() -> Mapping[str, cases.Answer]:
     """Each number raised by a tenth ("more crank"), and each unit cell switched ("unit crank")."""
-    united = [name for name in NUMBERS if UNITS[name]]
-    units = {name: f"Inputs!{SHEET[NAMED[name]].offset(0, 1).coordinate}" for name in united}
+    units = {name: f"Inputs!{FORM.unit_cell(name).coordinate}" for name in FORM.with_unit}
     columns = tuple(cases.Column(name, "") for name in (*NUMBERS, *units.values()))
-    plain = [repr(VALUES[name]) for name in NUMBERS]
+    plain = {name: repr(FORM.value(name)) for name in NUMBERS}
+    plain |= {cell: FORM.unit(name) for name, cell in units.items()}
     rows = []
-    for i, name in enumerate(NUMBERS):
-        texts = [*plain, *(UNITS[one] for one in united)]
-        rows.append((f"more {name}", (*texts[:i], repr(VALUES[name] * 1.1), *texts[i + 1 :])))
-        if name in united:
-            k = len(NUMBERS) + united.index(name)
-            texts[i], texts[k] = other_unit(name), OTHER[UNITS[name]]
-            rows.append((f"unit {name}", tuple(texts)))
-    table = cases.Table(columns, tuple(rows))
-    return {one.case: one for one in cases.Cases(written(), table, {"look_case": "jam stop begins"})}
+    for name in NUMBERS:
+        rows.append((f"more {name}", {**plain, name: repr(FORM.value(name) * 1.1)}))
+        if name in units:
+            switched = FORM.in_other_unit(name)
+            rows.append((f"unit {name}", {**plain, **switched, name: repr(switched[name])}))
+    texts = tuple((case, tuple(row.values())) for case, row in rows)
+    table = cases.Table(columns, texts)
+    return {one.case: one for one in cases.Cases(FORM.written(), table, {"look_case": "jam stop begins"})}
 
 
 @pytest.mark.parametrize("name", NUMBERS)
@@ -228,10 +160,10 @@ def test_each_input_changed_by_a_tenth_still_gives_first_principles(
 ) -> None:
     answer = answers[f"more {name}"]
     assert not answer.error
-    compare(answer.results, model({"look_case": "jam stop begins", name: VALUES[name] * 1.1}))
+    compare(answer.results, model({"look_case": "jam stop begins", name: FORM.value(name) * 1.1}))
 
 
-def same_physics(results: Quantities, wanted: Quantities) -> None:
+def same_physics(results: checks.Quantities, wanted: checks.Quantities) -> None:
     """Every named result is the same quantity, and every verdict the same word, whatever unit it stands in."""
     wanted = {name: one for name, one in wanted.items() if not name.startswith("check_")}
     assert set(wanted) <= set(results)
@@ -246,7 +178,7 @@ def same_physics(results: Quantities, wanted: Quantities) -> None:
             assert abs(results[name][0] * FACTORS[results[name][1]] - number) <= 1e-9 * scale, name
 
 
-@pytest.mark.parametrize("name", [name for name in NUMBERS if UNITS[name]])
+@pytest.mark.parametrize("name", FORM.with_unit)
 def test_each_unit_cell_can_be_switched_without_changing_the_physics(
     answers: Mapping[str, cases.Answer], name: str
 ) -> None:
@@ -257,9 +189,9 @@ def test_each_unit_cell_can_be_switched_without_changing_the_physics(
 
 
 def test_the_units_of_all_results_can_be_switched_at_once() -> None:
-    boxed = [row[4] for row in BOOK["Working"].iter_rows(max_col=5) if row[4].style == "RS unit"]
-    assert len(boxed) > 30
-    result = run({f"Working!{cell.coordinate}": OTHER[cell.value] for cell in boxed})
+    switched = FORM.results_in_other_units()
+    assert len(switched) > 30
+    result = run(switched)
     found, wanted = named(result), named(run({}))
     assert found["look_sensor_acceleration"][1] == "ft/s^2"
     components = {name for name in wanted if re.search("_[xy]$", name)}  # their unit stands with the size
@@ -277,7 +209,7 @@ def test_the_units_of_all_results_can_be_switched_at_once() -> None:
 
 def test_no_peak_is_lost_between_two_rows_or_within_a_stop() -> None:
     """Every quarter degree, and at speeds within the stop too, nothing is above the table by more than 0.3 %."""
-    v = si_inputs({})
+    v = FORM.si_inputs({})
     fine = first.over_the_turn(v, np.arange(0.0, 360.0, 0.25), first.motions(v))
     coarse = model({}).tables
     within = [(share**0.5 * v["speed_jam"], first.stop(v)) for share in np.linspace(0.0, 1.0, 9)]
@@ -288,7 +220,7 @@ def test_no_peak_is_lost_between_two_rows_or_within_a_stop() -> None:
 
 
 def test_the_governing_case_is_named() -> None:
-    book = openpyxl.load_workbook(BytesIO(run({}).package), data_only=True)["Checks"]
+    book = shown(run({}))["Checks"]
     rows = {book.cell(r, 2).value: r for r in range(1, 60)}
     for label, key in (
         ("Sensor: acceleration within its range", "sensor"),
@@ -339,7 +271,7 @@ def test_a_check_fails_when_its_capacity_does_not_suffice(changes: dict[str, Any
 def test_a_table_that_is_not_what_the_functions_give_fails_its_check(
     sheet: str, cell: str, change: str
 ) -> None:
-    book = openpyxl.load_workbook(BytesIO(written()))
+    book = openpyxl.load_workbook(BytesIO(FORM.written()))
     formula = book[sheet][cell].value
     assert formula.startswith("=IF(")
     assert formula.endswith(',"")')
@@ -360,58 +292,34 @@ def test_a_foot_without_weight_at_rest_and_a_flying_tray_fail() -> None:
 
 
 def test_the_filled_form_has_no_warning_and_a_second_run_changes_no_byte() -> None:
-    result = run({})
-    assert result.warnings == ()
-    assert result.holds
-    again = recalculate(result.package)
-    assert not again.changed
-    assert again.package == result.package
+    checks.check_second_run(FORM)
 
 
 def test_only_built_ins_with_check_values_and_no_array_formula_or_boolean() -> None:
-    from rigidsheet.workbooks.evaluation.builtins import VERIFIED_FUNCTIONS
-
-    used = set()
-    for sheet in BOOK:
-        for row in sheet.iter_rows():
-            for cell in row:
-                assert not isinstance(cell.value, bool)
-                assert cell.data_type != "a"
-                if cell.data_type == "f":
-                    used |= set(re.findall(r"([A-Z][A-Z0-9_.]*)\(", re.sub(r'"[^"]*"', "", str(cell.value))))
-    assert {name for name in used if not name.startswith("RB_")} <= VERIFIED_FUNCTIONS
+    used = checks.check_built_ins(FORM)
     assert {"RB_VELOCITY_SLIDING", "RB_ACCELERATION_SLIDING", "RB_INSTANT_CENTER", "RB_REACTIONS"} <= used
-    assert not any(isinstance(value, bool) for value in run({}).values.values())
 
 
 def test_inputs_have_names_and_limits() -> None:
     rules = {}
-    for rule in SHEET.data_validations.dataValidation:
+    for rule in FORM.sheet.data_validations.dataValidation:
         for cell in str(rule.sqref).split():
             rules.setdefault(cell, rule)
-    for row in SHEET.iter_rows(max_col=4):
+    checks.check_inputs_named(FORM)
+    for row in FORM.sheet.iter_rows(max_col=4):
         if row[3].style in ("RS input", "RS input text"):
-            assert row[3].coordinate in NAMED.values(), row[3].coordinate
             assert row[3].coordinate in rules, row[3].coordinate
-    assert (rules[NAMED["crank"]].operator, rules[NAMED["crank"]].formula1) == ("greaterThan", "0")
-    words = rules[NAMED["look_case"]].formula1.strip('"').split(",")
+    assert (rules[FORM.named["crank"]].operator, rules[FORM.named["crank"]].formula1) == ("greaterThan", "0")
+    words = rules[FORM.named["look_case"]].formula1.strip('"').split(",")
     assert words == list(first.CASES)
 
 
 def test_the_blank_form_refuses_input_by_input_and_nowhere_else() -> None:
-    result = recalculate(written(True))
-    assert all(failure.source is None and failure.reason for failure in result.errors)
-    beside = {("Inputs", SHEET[cell].offset(0, 2).coordinate) for cell in NAMED.values()}
-    assert {(failure.sheet, failure.cell) for failure in result.errors} == beside
-    assert "missing" in str(named(result)["verdict"][0])
-    assert not result.checks
+    checks.check_blank(FORM, FORM.named, working=0)
 
 
 def test_the_blank_form_filled_in_again_gives_the_same_sheet() -> None:
-    inputs = {f"Inputs!{cell}": VALUES[name] for name, cell in NAMED.items()}
-    result = recalculate(written(True), inputs=inputs)
-    assert not result.errors
-    assert dict(result.values) == dict(run({}).values)
+    checks.check_filled_in_again(FORM)
 
 
 @pytest.mark.parametrize(
@@ -419,20 +327,20 @@ def test_the_blank_form_filled_in_again_gives_the_same_sheet() -> None:
     [
         ({"arm": 45}, "too short"),
         ({"foot_2": 50}, "farther"),
-        ({f"Inputs!{SHEET[NAMED['crank']].offset(0, 1).coordinate}": "kg"}, ""),
+        ({f"Inputs!{FORM.unit_cell('crank').coordinate}": "kg"}, ""),
         ({"sensor_reads": "both"}, ""),
         ({"tray_mass": -1}, ""),
     ],
     ids=str,
 )
 def test_a_wrong_input_stops_the_sheet_without_a_wall_of_errors(inputs: dict[str, Any], words: str) -> None:
-    result = recalculate(written(), inputs=inputs)
+    result = recalculate(FORM.written(), inputs=inputs)
     assert len([failure for failure in result.errors if failure.source is None]) == 1
     assert {failure.sheet for failure in result.errors} == {"Inputs"}
     assert not result.checks
-    shown = [str(value) for (sheet, _), value in result.values.items() if sheet == "Inputs"]
-    assert any(words in text for text in shown)
-    assert any("1 inputs are missing or refused" in text for text in shown)
+    texts = [str(value) for (sheet, _), value in result.values.items() if sheet == "Inputs"]
+    assert any(words in text for text in texts)
+    assert any("1 inputs are missing or refused" in text for text in texts)
 
 
 # pages
@@ -441,81 +349,15 @@ def test_a_wrong_input_stops_the_sheet_without_a_wall_of_errors(inputs: dict[str
 @pytest.mark.parametrize("form", ["filled", "far", "blank"])
 def test_every_text_has_the_room_that_it_needs(form: str) -> None:
     far = {"look_case": "jam stop begins", "look_angle": 222, "crank": 145.5, "sensor_u": -180}
-    package = (
-        recalculate(written(True)).package if form == "blank" else run(far if form == "far" else {}).package
-    )
-    assert list(cut_off(package)) == []
+    result = FORM.blank() if form == "blank" else run(far if form == "far" else {})
+    assert list(cut_off(result.package)) == []
 
 
 @pytest.fixture(scope="module")
-def office(tmp_path_factory: pytest.TempPathFactory) -> tuple[str, Path]:
-    program = shutil.which("soffice") or shutil.which("libreoffice")
-    if program is None or shutil.which("pdftotext") is None:
-        pytest.skip("LibreOffice and pdftotext are not both on this machine")
-    return program, tmp_path_factory.mktemp("office")
-
-
-def pdf_pages(office: tuple[str, Path], package: bytes, name: str) -> list[str]:
-    """Return the text of each page that LibreOffice prints."""
-    program, folder = office
-    book = folder / f"{name}.xlsx"
-    book.write_bytes(package)
-    profile = f"-env:UserInstallation={(folder / 'profile').as_uri()}"
-    command = [program, profile, "--headless", "--convert-to", "pdf", "--outdir", str(folder), str(book)]
-    for _ in range(2):  # a fresh profile may end its first start without work
-        subprocess.run(command, capture_output=True, timeout=180, check=False)
-        if book.with_suffix(".pdf").exists():
-            break
-    done = subprocess.run(
-        ["pdftotext", "-layout", str(book.with_suffix(".pdf")), "-"],
-        capture_output=True,
-        check=True,
-        timeout=60,
-    )
-    return done.stdout.decode().split("\f")[:-1]
+def folder(tmp_path_factory: pytest.TempPathFactory) -> Path:
+    return tmp_path_factory.mktemp("pages")
 
 
 @pytest.mark.parametrize("paper", ["A4", "Letter"])
-def test_the_printed_pages_are_eight_and_nothing_is_cut_off(office: tuple[str, Path], paper: str) -> None:
-    package = run({}).package if paper == "A4" else on_letter(run({}).package)
-    pages = pdf_pages(office, package, paper)
-    assert len(pages) == 8
-    whole = squeezed("\n".join(pages))
-    assert "###" not in whole
-    assert "#NAME" not in whole
-    for i, page in enumerate(pages, 1):
-        assert f"Page {i} of 8" in page
-        assert "Shaker arm" in page
-        assert "Drawing" in page
-    for text in printed_texts(package):
-        assert squeezed(text) in whole, text
-
-
-def on_letter(package: bytes) -> bytes:
-    """Return the workbook with its sheets set to Letter, every other part as it is."""
-    import zipfile
-
-    out = BytesIO()
-    with zipfile.ZipFile(BytesIO(package)) as source, zipfile.ZipFile(out, "w") as target:
-        for item in source.infolist():
-            data = source.read(item)
-            if item.filename.startswith("xl/worksheets/sheet"):
-                assert b'paperSize="9"' in data
-                data = data.replace(b'paperSize="9"', b'paperSize="1"')
-            target.writestr(item, data)
-    return out.getvalue()
-
-
-def squeezed(text: str) -> str:
-    """Return a text without blanks, in which columns that part do not matter."""
-    return re.sub(r"\s+", "", text)
-
-
-def printed_texts(package: bytes) -> Iterator[str]:
-    """Yield every text that stands in one line in the printed part of a sheet."""
-    for sheet in openpyxl.load_workbook(BytesIO(package), data_only=True):
-        for row in sheet[sheet.print_area.split("!")[-1].replace("$", "")]:
-            for cell in row:
-                words = isinstance(cell.value, str) and cell.value.strip()
-                if words and not cell.alignment.wrap_text and cell.style != "RS symbol":
-                    yield str(cell.value)
+def test_the_printed_pages_are_eight_and_nothing_is_cut_off(folder: Path, paper: str) -> None:
+    checks.check_pages(run({}).package, paper, folder, "Shaker arm", 8)
