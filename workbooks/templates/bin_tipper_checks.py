@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Final
 
-from .bin_tipper import CASES, Inputs
+from .bin_tipper_inputs import CASES, Inputs
 from .bin_tipper_tables import (
     ARM,
     EFFORT,

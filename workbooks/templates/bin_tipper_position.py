@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from .bin_tipper import CASES, WHOLE, Inputs
+from .bin_tipper_inputs import CASES, WHOLE, Inputs
 from .bin_tipper_tables import ACCELERATION, EFFORT, HINGE_1, HINGE_2, SPEED, TILT, TORQUE, Table
 from .bin_tipper_working import Work
 from .kit import Book, Page

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from math import cos, pi, sin
 
-from .bin_tipper import Inputs
+from .bin_tipper_inputs import Inputs
 from .bin_tipper_position import Looked
 from .bin_tipper_tables import ALONG_X, ALONG_Y, Table
 from .bin_tipper_working import Work

@@ -10,7 +10,7 @@ from openpyxl.styles.differential import DifferentialStyle
 from openpyxl.styles.numbers import NumberFormat
 from openpyxl.utils import get_column_letter
 
-from .bin_tipper import CASES, Case, Inputs
+from .bin_tipper_inputs import CASES, Case, Inputs
 from .bin_tipper_working import Work
 from .kit import Book, Page
 from .kit_look import rich

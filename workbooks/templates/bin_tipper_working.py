@@ -8,7 +8,7 @@ from typing import Any, Final, TypeAlias
 from rigidsheet.udf.reading.states import STANDARD_GRAVITY
 from rigidsheet.udf.units import kinds
 
-from .bin_tipper import Inputs
+from .bin_tipper_inputs import Inputs
 from .kit import Book, Page, Place
 from .kit_look import SOFT, rich
 

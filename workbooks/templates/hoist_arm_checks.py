@@ -6,7 +6,7 @@ from collections.abc import Callable
 from copy import copy
 from typing import Final
 
-from .hoist_arm import BACKWARD, BY_MOTOR, CASES, FORWARD, HOLD, NAMES, STOP_LOWERING, Inputs
+from .hoist_arm_inputs import BACKWARD, BY_MOTOR, CASES, FORWARD, HOLD, NAMES, STOP_LOWERING, Inputs
 from .hoist_arm_position import FIXED_PIVOT, Looked
 from .hoist_arm_working import (
     A_X,

@@ -8,7 +8,7 @@ from typing import Final, NamedTuple
 
 from rigidsheet.udf.units import kinds
 
-from .hoist_arm import CASES, Inputs
+from .hoist_arm_inputs import CASES, Inputs
 from .hoist_arm_working import A_X, A_Y, ALPHA, EFFORT, OMEGA, PIN, TORQUE, Table, Work
 from .kit import Book, Page, Place
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 
-from .hoist_arm import SKETCH_COLUMN, Inputs
+from .hoist_arm_inputs import SKETCH_COLUMN, Inputs
 from .hoist_arm_position import Looked
 from .hoist_arm_working import Work
 from .kit import Book, Page

@@ -11,7 +11,7 @@ from openpyxl.utils import get_column_letter
 from rigidsheet.udf.reading.states import STANDARD_GRAVITY
 from rigidsheet.udf.units import kinds
 
-from .hoist_arm import CASES, LOWER, NAMES, STOP_LOWERING, Case, Inputs
+from .hoist_arm_inputs import CASES, LOWER, NAMES, STOP_LOWERING, Case, Inputs
 from .kit import Book, Page, Place
 from .kit_look import HAIR, INDENT, INK, SANS
 

@@ -8,7 +8,7 @@ from .kit import Book, Page
 from .kit_charts import LINES, Curve, line_chart
 from .kit_checks import COLUMNS as CHECK_COLUMNS
 from .kit_checks import CaseTable, Check, Checks
-from .shaker_arm import CASES, Given
+from .shaker_arm_inputs import CASES, Given
 from .shaker_arm_tables import ANGLE, Table
 from .shaker_arm_working import Looked, Work
 

@@ -11,7 +11,7 @@ from typing import Final
 from openpyxl.utils import get_column_letter
 
 from .kit import Page
-from .shaker_arm import CASES, STOPPING, Given, block
+from .shaker_arm_inputs import CASES, STOPPING, Given, block
 from .shaker_arm_working import Work
 
 LOST: Final = (

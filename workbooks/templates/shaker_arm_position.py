@@ -10,7 +10,7 @@ from rigidsheet.udf.units import kinds
 from . import shaker_arm_parts as parts
 from .kit import Book
 from .kit_look import LEFT
-from .shaker_arm import CASES, Given
+from .shaker_arm_inputs import CASES, Given
 from .shaker_arm_parts import LOST
 from .shaker_arm_tables import Table
 from .shaker_arm_working import BESIDE, NOTES, Looked, Position, Work

@@ -8,7 +8,7 @@ from .kit import Page
 from .kit_charts import sketch_chart
 from .kit_look import INK, RULE, SOFT
 from .kit_sketch import Points
-from .shaker_arm import Given
+from .shaker_arm_inputs import Given
 from .shaker_arm_working import Looked, Vector
 
 WARM: Final = "A5622A"

@@ -10,7 +10,7 @@ from openpyxl.utils import get_column_letter
 from . import shaker_arm_parts as parts
 from .kit import Book, Page
 from .kit_look import rich
-from .shaker_arm import CASES, Given
+from .shaker_arm_inputs import CASES, Given
 from .shaker_arm_parts import LOST
 from .shaker_arm_working import Work
 

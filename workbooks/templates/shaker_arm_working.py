@@ -11,7 +11,7 @@ from rigidsheet.udf.units.kinds import Kind
 
 from .kit import Book, Page, Place
 from .kit_look import SOFT, rich
-from .shaker_arm import CASES, STOPPING, Given
+from .shaker_arm_inputs import CASES, STOPPING, Given
 
 COLUMNS: Final = (2.5, 37.0, 9.0, 12.0, 9.0, 12.0, 12.0, 8.5, 13.0, 13.0)
 NOTES: Final = 9

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING, Final
 
 from .kit import Book, Page
-from .swing_gate import CASES, LOWER, UPPER, Case, Inputs
+from .swing_gate_inputs import CASES, LOWER, UPPER, Case, Inputs
 
 if TYPE_CHECKING:
     from .swing_gate_working import Work

@@ -8,8 +8,8 @@ from .kit import Book
 from .kit_charts import bar_chart
 from .kit_checks import CAPACITY, DEMAND, Check, Checks
 from .kit_checks import COLUMNS as CHECK_COLUMNS
-from .swing_gate import CASES, Inputs
 from .swing_gate_cases import COLUMN_OF, Cases
+from .swing_gate_inputs import CASES, Inputs
 from .swing_gate_working import Work
 
 AGREEMENT: Final = 1e-6  # of the leaf's weight: function and pocket calculator

@@ -6,7 +6,7 @@ from .kit import Page
 from .kit_charts import sketch_chart
 from .kit_look import INK, RULE, SOFT
 from .kit_sketch import Points
-from .swing_gate import Inputs
+from .swing_gate_inputs import Inputs
 from .swing_gate_working import Looked, Work
 
 WARM = "A5622A"

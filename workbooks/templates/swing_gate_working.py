@@ -9,8 +9,8 @@ from rigidsheet.udf.reading.states import STANDARD_GRAVITY
 from rigidsheet.udf.units import kinds
 
 from .kit import Book, Page, Place
-from .swing_gate import RAMPS, Inputs
 from .swing_gate_cases import Card, Cases
+from .swing_gate_inputs import RAMPS, Inputs
 
 WORK_COLUMNS: Final = (2.5, 36.0, 7.0, 12.0, 9.0, 11.5, 8.5, *([9.5] * 4), 11.0, 12.0, 8.0)
 RECORD_AT: Final = 12  # first column of the body's record
