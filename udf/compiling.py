@@ -15,7 +15,7 @@ from . import frame, results
 from .cells import Answer, Cell, CellError, Omitted, Refusal
 from .declaration import UNIT, WHAT, Arg, CellFunction, Reader
 from .reading.words import Choice, Rest, Text
-from .working import NOT_FINITE
+from .working import NOT_FINITE, for_rows
 
 # One table from error class to what the cell shows.
 CELL_ERRORS: Final = MappingProxyType(
@@ -130,9 +130,7 @@ class Compiled:
         if unit is not None:
             what = values[self._what] if self._what is not None else None
             lines += united(self.express(answer, what, unit, planar), unit)
-        if rows > 1:
-            lines.append(f"Row 1 of {rows}; the other rows go the same way.")
-        return lines
+        return for_rows(lines, rows)
 
 
 def left_out(a: Arg) -> Any:

@@ -34,6 +34,11 @@ def vec(vector: Any, flat: bool = False) -> str:
     return "(" + ", ".join(num(c) for c in vector[: 2 if flat else 3]) + ")"
 
 
+def for_rows(lines: list[str], rows: int) -> list[str]:
+    """Return the working of the first row, with the remark that it stands for all rows of a column."""
+    return lines if rows == 1 else [*lines, f"Row 1 of {rows}; the other rows go the same way."]
+
+
 def tensor_rows(tensor: Any, unit: str = "kg*m^2") -> list[str]:
     """Return the three lines of a tensor."""
     rows = ["  [" + ", ".join(num(c) for c in row) + "]" for row in tensor]

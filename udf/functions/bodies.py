@@ -16,16 +16,13 @@ from ..body_terms import BodyTerms, body_fields
 from ..declaration import WHAT, Arg, CellFunction, Example, Field, Form, Result
 from ..limits import POSITIVE
 from ..reading.arguments import Scalar, Vector
-from ..reading.bodies import BODY, MOMENTS, needs_space
+from ..reading.bodies import AT_CENTER, AT_ORIGIN, BODY, MOMENTS, needs_space
 from ..reading.outlines import Outline
 from ..reading.parts import PARTS, PartsList
 from ..units import kinds
 from ..working import num, tensor_rows, vec
 from .axes import axis_text, direction_of
-
-GROUP = "Mass"
-DYNAMICS = "Meriam, Kraige: Dynamics, appendix B (mass moments of inertia)"
-AT_CENTER, AT_ORIGIN = "mass center", "origin"
+from .tensors import DYNAMICS, GROUP
 
 
 def is_center(about: Any) -> bool:

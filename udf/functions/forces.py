@@ -14,6 +14,7 @@ from ..reading.arguments import Scalar, Spin, Tensor, Vector
 from ..reading.states import LOADS, LoadsRead
 from ..units import kinds
 from ..working import is_flat, num, signed, tensor_rows, total, vec
+from .tensors import is_tensor
 
 GROUP = "Forces"
 ANY_POINT = (
@@ -35,10 +36,6 @@ def acceleration_working(values: tuple[Any, ...], answer: Any) -> list[str]:
         "Angular acceleration about a fixed axis or the mass center, ccw +",
         f"alpha = T / I = {num(torque)} N*m / {num(inertia)} kg*m^2 = {num(answer)} rad/s^2",
     ]
-
-
-def is_tensor(inertia: Any) -> bool:
-    return type(inertia) is np.ndarray and inertia.shape == (3, 3)
 
 
 def moment_sum(inertia: Any, mass: Any, center_arm: Any, omega: Any, alpha: Any, acceleration_b: Any) -> Any:

@@ -10,14 +10,13 @@ from ...core import balance, motion
 from ...core.errors import InputError
 from ..declaration import Arg, CellFunction, Example, Field, Form, Result
 from ..reading.arguments import Spin, Tensor, Vector
-from ..reading.bodies import BodyRead
+from ..reading.bodies import AT_CENTER, AT_ORIGIN, BodyRead
 from ..reading.states import MotionRead
 from ..units import kinds
 from ..working import num, tensor_rows, vec
 from .reactions import BODY_ARG, MOTION_ARG
 
 GROUP = "Forces"
-AT_CENTER, AT_ORIGIN = "mass center", "origin"
 SPACE = "Meriam, Kraige: Dynamics, three-dimensional kinetics (momentum and energy equations)"
 
 

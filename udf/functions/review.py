@@ -15,7 +15,7 @@ from ..reading.cases import Cases, CaseValues
 from ..reading.words import Amount, AnyQuantity, Choice
 from ..units import kinds
 from ..units.amounts import pair
-from ..working import num
+from ..working import for_rows, num
 
 GROUP = "Review"
 AT_MOST, AT_LEAST = "at most", "at least"
@@ -58,7 +58,7 @@ def margin_working(values: tuple[Any, ...], answer: Margin) -> list[str]:
         f"margin = factor / required - 1 = {num(factor)} / {num(np.ravel(required)[0])} - 1 = {num(rest)}",
         f"utilization = required / factor = {num(used)}",
     ]
-    return lines if rows == 1 else [*lines, f"Row 1 of {rows}; the other rows go the same way."]
+    return for_rows(lines, rows)
 
 
 def holds(demand: Amount, limit: Amount, sense: str, required_factor: Any) -> Any:
@@ -100,11 +100,7 @@ def check_working(values: tuple[Any, ...], answer: Any) -> list[str]:
         f"Check: {'demand' if signed else '|demand|'} {sense.removeprefix('signed ')} the limit",
         f"{text} {unit}: {verdict}".replace(" :", ":"),
     ]
-    return (
-        lines
-        if isinstance(answer, str)
-        else [*lines, f"Row 1 of {len(answer)}; the other rows go the same way."]
-    )
+    return for_rows(lines, 1 if isinstance(answer, str) else len(answer))
 
 
 @dataclass(frozen=True, slots=True)

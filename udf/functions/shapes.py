@@ -14,10 +14,8 @@ from ..reading.arguments import Scalar
 from ..reading.sizes import Sizes
 from ..reading.words import Text
 from ..units import kinds
-from ..working import num, tensor_rows, vec
-
-GROUP = "Mass"
-DYNAMICS = "Meriam, Kraige: Dynamics, appendix B (mass moments of inertia)"
+from ..working import for_rows, num, tensor_rows, vec
+from .tensors import DYNAMICS, GROUP
 
 
 def shape_terms(shape: str, mass: Any, sizes: dict[str, Any]) -> BodyTerms:
@@ -43,7 +41,7 @@ def shape_working(values: tuple[Any, ...], answer: BodyTerms) -> list[str]:
         "Tensor about the mass center, along the shape's axes:",
         *tensor_rows(inertia),
     ]
-    return lines if rows == 1 else [*lines, f"Row 1 of {rows}; the other rows go the same way."]
+    return for_rows(lines, rows)
 
 
 def mass_working(values: tuple[Any, ...], answer: Any) -> list[str]:
@@ -54,7 +52,7 @@ def mass_working(values: tuple[Any, ...], answer: Any) -> list[str]:
         *shape_text(shape, sizes)[:3],
         f"m = density * volume = {num(rho)} kg/m^3 * {num(first / rho)} m^3 = {num(first)} kg",
     ]
-    return lines if rows == 1 else [*lines, f"Row 1 of {rows}; the other rows go the same way."]
+    return for_rows(lines, rows)
 
 
 SHAPE = Arg("shape", Text(example="tube"), "name of the shape, like tube, box, solid cylinder, disk, cone")

@@ -18,6 +18,7 @@ from .records import Entry, Record
 
 TENSOR_TERMS: Final = "tensor terms"
 INTEGRALS: Final = "integrals"
+AT_CENTER, AT_ORIGIN = "mass center", "origin"  # words for the point that a result is about
 PRODUCT_WORDS: Final = {
     "as tensor terms": TENSOR_TERMS,
     "tensor": TENSOR_TERMS,
